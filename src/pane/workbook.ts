@@ -1,0 +1,85 @@
+/**
+ * What the pane needs from a host. Fixed: later work adds methods and changes none.
+ * Rows and columns count from 0. Every method may take a round trip to the host, hence the promises.
+ */
+
+/** A value as a cell shows it to a program: "" is a blank cell; errors are their code, such as "#DIV/0!". */
+export type HostValue = number | string | boolean;
+
+export interface RangeAddress {
+  readonly sheet: string;
+  readonly row: number;
+  readonly column: number;
+  readonly rows: number;
+  readonly columns: number;
+}
+
+/** A fact about the sheet that a host may be unable to give. */
+export type Fact<T> = T | "unknown";
+
+export interface RangeFacts {
+  /** Hidden or filtered-out rows and columns inside the range, as sheet row / column numbers. */
+  readonly hiddenRows: Fact<readonly number[]>;
+  readonly hiddenColumns: Fact<readonly number[]>;
+  /** Merged areas that touch the range. */
+  readonly merged: Fact<readonly RangeAddress[]>;
+  /** Values in the ring of cells just outside the range, "" where blank or off the sheet. */
+  readonly neighbours: Fact<{
+    readonly above: readonly HostValue[];
+    readonly below: readonly HostValue[];
+    readonly left: readonly HostValue[];
+    readonly right: readonly HostValue[];
+  }>;
+  readonly calculation: Fact<"automatic" | "manual">;
+}
+
+export interface RangeReading {
+  readonly address: RangeAddress;
+  readonly values: readonly (readonly HostValue[])[];
+  /** The cell's content as typed: "=…" for a formula, the typed text or number otherwise, "" when blank or spilled into. */
+  readonly formulas: readonly (readonly string[])[];
+  /** Number format codes, "General" by default. */
+  readonly formats: readonly (readonly string[])[];
+  /** The text each cell displays. */
+  readonly texts: readonly (readonly string[])[];
+  readonly facts: RangeFacts;
+}
+
+/** One rectangle to write. Each entry is what a person would type: "=…" a formula, a string kept as text, null clears, undefined leaves the cell alone. */
+export interface Write {
+  readonly sheet: string;
+  readonly row: number;
+  readonly column: number;
+  readonly cells: readonly (readonly (HostValue | null | undefined)[])[];
+  /** Optional number formats for the same rectangle. */
+  readonly formats?: readonly (readonly (string | undefined)[])[];
+}
+
+export interface SheetInfo {
+  readonly name: string;
+  readonly hidden: Fact<boolean>;
+  /** Smallest range that holds every filled cell; null when the sheet is empty. */
+  readonly used: RangeAddress | null;
+}
+
+export type WorkbookEvent = "selection" | "change" | "sheets";
+
+export interface Workbook {
+  readonly host: "practice" | "excel";
+  sheets(): Promise<readonly SheetInfo[]>;
+  selection(): Promise<RangeAddress>;
+  read(range: RangeAddress): Promise<RangeReading>;
+  /** Writes all rectangles as one undo step, named by `label`. Rejects with a sentence when the sheet is protected. */
+  write(batch: readonly Write[], label: string): Promise<void>;
+  /** Adds a sheet; never over an existing one: the name is made free by a number. Resolves to the name used. */
+  addSheet(name: string, cells: Write["cells"], formats?: Write["formats"]): Promise<string>;
+  /** Selects and scrolls to the range, changing sheet if need be. */
+  select(range: RangeAddress): Promise<void>;
+  undo(): Promise<void>;
+  on(event: WorkbookEvent, listener: () => void): () => void;
+  /** JSON kept with the workbook. */
+  readonly store: {
+    get(key: string): Promise<unknown>;
+    set(key: string, value: unknown): Promise<void>;
+  };
+}
