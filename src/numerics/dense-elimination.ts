@@ -1,0 +1,149 @@
+import type { Elimination, LeakSystem, Pausable } from "./leak-system";
+import { scaledShares } from "./scaled-flow";
+
+/** Multiply-adds between two pauses, some 10 ms. */
+const SLICE = 8e6;
+/** Beyond these the plain balance is repeated with separate exponents. */
+const SMALL = 1e-280;
+const LARGE = 1e280;
+
+/**
+ * State reduction on a full matrix, with a leak.
+ *
+ * States are taken out in the order 0, 1, …: what is left is the chain watched only while it is in the later states.
+ * Taking out k adds rate(i→k) · P(k's next later state is j) to rate(i→j) and rate(i→k) · P(k leaks) to i's leak. The
+ * exit rate of k is then the *sum* of its remaining rates and leak, never a diagonal entry from which something was
+ * subtracted; so every entry of every answer keeps its relative accuracy, whatever the spread of the rates.
+ *
+ * *Method*: Grassmann, Taksar & Heyman, Oper. Res. 33 (1985) 1107–1116 for the chain without leak; Alfa, Xue & Ye,
+ * Math. Comp. 71 (2002) 217–236 with the leak as a column of its own. Ours works row by row and takes four eliminated
+ * states at a time, which halves the memory traffic. *Cost*: n³/3 multiply-adds, n² numbers.
+ * *Accuracy*: `test/reference/battery-chain.test.ts`.
+ */
+export function* eliminateDense(system: LeakSystem): Pausable<Elimination> {
+  const n = system.size;
+  const a = new Float64Array(n * n);
+  for (let i = 0; i < n; i++)
+    for (let p = system.rowStart[i]; p < system.rowStart[i + 1]; p++) a[i * n + system.toState[p]] = system.rate[p];
+  const exit = new Float64Array(n);
+  const leakShare = new Float64Array(n);
+  const total = (n * n * n) / 3 || 1;
+  let done = 0;
+  let since = 0;
+  let sound = true;
+  for (let i = 0; i < n; i++) {
+    exit[i] = reduceRow(a, n, i, system.leak[i], leakShare);
+    if (!(exit[i] > 0 && exit[i] < Infinity) && (i < n - 1 || exit[i] !== 0)) sound = false;
+    since += i * (n - i / 2);
+    if (since > SLICE) {
+      done += since;
+      since = 0;
+      yield Math.min(1, done / total);
+    }
+  }
+  return new DenseElimination(n, a, exit, sound);
+}
+
+/** Takes the earlier states out of row i and turns its later part into probabilities; returns its exit rate. */
+function reduceRow(a: Float64Array, n: number, i: number, ownLeak: number, leakShare: Float64Array): number {
+  const row = i * n;
+  let leak = ownLeak;
+  let k = 0;
+  for (; k + 3 < i; k += 4) {
+    const r0 = k * n;
+    const r1 = r0 + n;
+    const r2 = r1 + n;
+    const r3 = r2 + n;
+    const c0 = a[row + k];
+    const c1 = a[row + k + 1] + c0 * a[r0 + k + 1];
+    const c2 = a[row + k + 2] + c0 * a[r0 + k + 2] + c1 * a[r1 + k + 2];
+    const c3 = a[row + k + 3] + c0 * a[r0 + k + 3] + c1 * a[r1 + k + 3] + c2 * a[r2 + k + 3];
+    if (c0 === 0 && c1 === 0 && c2 === 0 && c3 === 0) continue;
+    a[row + k + 1] = c1;
+    a[row + k + 2] = c2;
+    a[row + k + 3] = c3;
+    leak += c0 * leakShare[k] + c1 * leakShare[k + 1] + c2 * leakShare[k + 2] + c3 * leakShare[k + 3];
+    for (let j = k + 4; j < n; j++)
+      a[row + j] += c0 * a[r0 + j] + c1 * a[r1 + j] + (c2 * a[r2 + j] + c3 * a[r3 + j]);
+  }
+  for (; k < i; k++) {
+    const c = a[row + k];
+    if (c === 0) continue;
+    const from = k * n;
+    leak += c * leakShare[k];
+    for (let j = k + 1; j < n; j++) a[row + j] += c * a[from + j];
+  }
+  let exit = leak;
+  for (let j = i + 1; j < n; j++) exit += a[row + j];
+  if (exit > 0) {
+    leakShare[i] = leak / exit;
+    for (let j = i + 1; j < n; j++) a[row + j] /= exit;
+  }
+  return exit;
+}
+
+/** Below the diagonal rates to states eliminated before, above it probabilities of the next later state. */
+class DenseElimination implements Elimination {
+  constructor(
+    readonly size: number,
+    private readonly a: Float64Array,
+    private readonly exit: Float64Array,
+    readonly sound: boolean,
+  ) {}
+
+  solve(w: Float64Array): Float64Array {
+    const { size: n, a, exit } = this;
+    const x = new Float64Array(n);
+    for (let i = 0; i < n; i++) {
+      let sum = w[i];
+      for (let k = 0; k < i; k++) sum += a[i * n + k] * x[k];
+      x[i] = sum / exit[i];
+    }
+    for (let i = n - 2; i >= 0; i--) {
+      let sum = x[i];
+      for (let j = i + 1; j < n; j++) sum += a[i * n + j] * x[j];
+      x[i] = sum;
+    }
+    return x;
+  }
+
+  solveTransposed(w: Float64Array): Float64Array {
+    const { size: n, a } = this;
+    const x = w.slice();
+    for (let k = 0; k < n; k++) {
+      const flow = x[k];
+      if (flow !== 0) for (let j = k + 1; j < n; j++) x[j] += flow * a[k * n + j];
+    }
+    this.pushBack(x, n - 1);
+    return x;
+  }
+
+  shares(): Float64Array {
+    const { size: n, a, exit } = this;
+    const x = new Float64Array(n);
+    x[n - 1] = 1;
+    this.pushBack(x, n - 2);
+    let sum = 0;
+    let smallest = Infinity;
+    for (let i = 0; i < n; i++) {
+      sum += x[i];
+      if (x[i] < smallest) smallest = x[i];
+    }
+    if (!(smallest > SMALL && sum < LARGE))
+      return scaledShares({ size: n, exit, each: (i, use) => {
+        for (let k = 0; k < i; k++) if (a[i * n + k] > 0) use(k, a[i * n + k]);
+      } });
+    for (let i = 0; i < n; i++) x[i] /= sum;
+    return x;
+  }
+
+  /** Balance from the last state down; rows beyond `divideFrom` are taken as they stand. */
+  private pushBack(x: Float64Array, divideFrom: number): void {
+    const { size: n, a, exit } = this;
+    for (let i = n - 1; i >= 0; i--) {
+      if (i <= divideFrom) x[i] /= exit[i];
+      const flow = x[i];
+      if (flow !== 0) for (let k = 0; k < i; k++) x[k] += flow * a[i * n + k];
+    }
+  }
+}
