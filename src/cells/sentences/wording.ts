@@ -1,0 +1,78 @@
+import type { Detail } from "../../chain/problem";
+
+/** Host limit for an error's text, as the contract of the formulas promises it. */
+export const LONGEST_SENTENCE = 120;
+
+/** The words of a sentence that may be shortened: how many characters of a name or a typed text are shown. */
+export class Words {
+  constructor(
+    private readonly details: Readonly<Record<string, Detail>>,
+    private readonly longest: number,
+  ) {}
+
+  has(key: string): boolean {
+    return this.details[key] !== undefined && this.details[key] !== null;
+  }
+
+  /** A count or a value, in as few digits as tell it. */
+  number(key: string): string {
+    return formatNumber(Number(this.details[key]));
+  }
+
+  /** A position that counts from 0, as people count. */
+  ordinal(key: string): string {
+    return String(Number(this.details[key]) + 1);
+  }
+
+  text(key: string): string {
+    return this.shorten(String(this.details[key] ?? ""));
+  }
+
+  /** What was found, in quotes; "nothing" for a blank. */
+  quoted(key: string): string {
+    return this.has(key) ? `"${this.text(key)}"` : "blank";
+  }
+
+  /** "3 (Degraded)" where the state has a name, "3" where not. */
+  state(key: string, nameKey: string): string {
+    return this.has(nameKey) ? `${this.ordinal(key)} (${this.text(nameKey)})` : this.ordinal(key);
+  }
+
+  /** At most three entries of a list, and how many more. */
+  list(key: string, entry: (value: Detail) => string): string {
+    const values = (this.details[key] as readonly Detail[] | undefined) ?? [];
+    const shown = values.slice(0, 3).map((value) => this.shorten(entry(value)));
+    return values.length > 3 ? `${shown.join(", ")} and ${values.length - 3} more` : shown.join(", ");
+  }
+
+  /** Where a rate stands: "Row 3 (Degraded), column 1" in a square, "Row 5" of the range in a list. */
+  place(): string {
+    if (this.has("block")) return `Table ${this.ordinal("block")}, row ${this.ordinal("row")}, column ${this.ordinal("column")}`;
+    if (this.has("listRow")) return `Row ${this.ordinal("listRow")}`;
+    if (this.has("row")) return `Row ${this.state("row", "rowName")}, column ${this.ordinal("column")}`;
+    if (this.has("from")) return `Row ${this.state("from", "fromName")}, column ${this.ordinal("to")}`;
+    return "The table";
+  }
+
+  private shorten(text: string): string {
+    const flat = text.replace(/\s+/g, " ");
+    return flat.length <= this.longest ? flat : `${[...flat].slice(0, this.longest - 1).join("")}…`;
+  }
+}
+
+export function formatNumber(value: number): string {
+  const shortest = String(value);
+  if (shortest.length <= 12) return shortest;
+  const rounded = Number(value.toPrecision(6));
+  return String(rounded).length <= 14 ? String(rounded) : value.toExponential(4);
+}
+
+/** A sentence within the limit: names give way first, and only what is still too long is cut. */
+export function fit(details: Readonly<Record<string, Detail>>, sentence: (words: Words) => string): string {
+  let text = "";
+  for (const longest of [60, 40, 30, 24, 18, 14, 10, 7]) {
+    text = sentence(new Words(details, longest));
+    if (text.length <= LONGEST_SENTENCE) return text;
+  }
+  return `${text.slice(0, LONGEST_SENTENCE - 1)}…`;
+}
