@@ -9,27 +9,27 @@ interface KnownUnit {
   readonly word: string;
   readonly article: "a" | "an";
   readonly seconds: number;
-  readonly spellings: readonly string[];
+  readonly short: readonly string[];
 }
 
 /** A year is 365.25 days here: it only serves the rounded figure in brackets. */
 const KNOWN_UNITS: readonly KnownUnit[] = [
-  { word: "second", article: "a", seconds: 1, spellings: ["s", "sec", "secs", "second", "seconds"] },
-  { word: "minute", article: "a", seconds: 60, spellings: ["min", "mins", "minute", "minutes"] },
-  { word: "hour", article: "an", seconds: 3600, spellings: ["h", "hr", "hrs", "hour", "hours"] },
-  { word: "day", article: "a", seconds: 86400, spellings: ["d", "day", "days"] },
-  { word: "week", article: "a", seconds: 604800, spellings: ["wk", "wks", "week", "weeks"] },
-  { word: "month", article: "a", seconds: 2629800, spellings: ["mo", "mon", "month", "months"] },
-  { word: "quarter", article: "a", seconds: 7889400, spellings: ["quarter", "quarters"] },
-  { word: "year", article: "a", seconds: 31557600, spellings: ["y", "yr", "yrs", "a", "year", "years", "annum"] },
+  { word: "second", article: "a", seconds: 1, short: ["s", "sec"] },
+  { word: "minute", article: "a", seconds: 60, short: ["min"] },
+  { word: "hour", article: "an", seconds: 3600, short: ["h", "hr"] },
+  { word: "day", article: "a", seconds: 86400, short: ["d"] },
+  { word: "week", article: "a", seconds: 604800, short: ["wk"] },
+  { word: "month", article: "a", seconds: 2629800, short: ["mo"] },
+  { word: "quarter", article: "a", seconds: 7889400, short: [] },
+  { word: "year", article: "a", seconds: 31557600, short: ["a", "y", "yr"] },
 ];
 
 const BRACKET_UNITS = ["second", "minute", "hour", "day", "year"];
 
-/** The unit word as kept: outer spaces, a leading "per", "/" or "1/" dropped, common spellings made one. "" when nothing is left. */
+/** The unit word as kept: outer spaces, a leading "per", "/" or "1/" dropped, "hours" made "hour"; else the user's own word. */
 export function plainUnit(typed: string): string {
   const bare = typed.trim().replace(/\s+/g, " ").replace(/^(per\b ?|1?\/ ?)/i, "").trim();
-  return known(bare)?.word ?? bare;
+  return KNOWN_UNITS.find((unit) => `${unit.word}s` === bare.toLowerCase())?.word ?? bare;
 }
 
 /** "per day"; "" without a unit. */
@@ -37,25 +37,22 @@ export function perUnit(unit: string): string {
   return unit === "" ? "" : `per ${unit}`;
 }
 
-/** "0.02 a day", "0.02 per 1e6 h", "0.02 per time unit". */
+/** "0.02 a day", "0.02 per h", "0.02 per 1e6 h", "0.02 per time unit". */
 export function rateWords(rate: number, unit: string): string {
-  const found = known(unit);
-  if (found) return `${shortFigure(rate)} ${found.article} ${found.word}`;
-  return `${shortFigure(rate)} per ${unit === "" ? "time unit" : unit}`;
+  const article = KNOWN_UNITS.find(({ word }) => word === unit.toLowerCase())?.article;
+  return article ? `${shortFigure(rate)} ${article} ${unit}` : `${shortFigure(rate)} per ${unit === "" ? "time unit" : unit}`;
 }
 
-/** "50 days", "1 day", "100 000 hours (about 11 years)", "50 time units". */
+/** "50 days", "1 day", "50 h", "100 000 hours (about 11 years)", "50 time units". */
 export function durationWords(duration: number, unit: string): string {
   const figure = roundFigure(duration);
-  const text = shortFigure(figure);
+  const inOwn = `${shortFigure(figure)} ${plural(unit === "" ? "time unit" : unit, figure)}`;
   const found = known(unit);
-  if (!found) return unit === "" ? `${text} ${figure === 1 ? "time unit" : "time units"}` : `${text} ${plural(unit, figure)}`;
-  const inOwn = `${text} ${figure === 1 ? found.word : `${found.word}s`}`;
-  if (duration >= 0.1 && duration < 1000) return inOwn;
+  if (!found || (duration >= 0.1 && duration < 1000)) return inOwn;
   const felt = feltUnit(duration * found.seconds);
   if (felt.word === found.word) return inOwn;
   const rounded = roundFigure((duration * found.seconds) / felt.seconds);
-  return `${inOwn} (about ${shortFigure(rounded)} ${rounded === 1 ? felt.word : `${felt.word}s`})`;
+  return `${inOwn} (about ${shortFigure(rounded)} ${plural(felt.word, rounded)})`;
 }
 
 /** What one arrow claims: "0.02 a day, about once in 50 days". */
@@ -85,7 +82,7 @@ function roundFigure(value: number): number {
 
 function known(unit: string): KnownUnit | undefined {
   const lower = unit.toLowerCase();
-  return KNOWN_UNITS.find((candidate) => candidate.spellings.includes(lower));
+  return KNOWN_UNITS.find(({ word, short }) => word === lower || short.includes(lower));
 }
 
 function feltUnit(seconds: number): KnownUnit {
@@ -93,8 +90,9 @@ function feltUnit(seconds: number): KnownUnit {
   return candidates.filter((candidate) => seconds >= candidate.seconds).pop() ?? candidates[0];
 }
 
-/** Words get an "s"; a unit with a figure in it ("1e6 h") is kept and multiplied. */
+/** Words get an "s", abbreviations do not; a unit with a figure in it ("1e6 h") is kept and multiplied. */
 function plural(unit: string, figure: number): string {
   if (/^[^\p{L}]|\d/u.test(unit)) return `× ${unit}`;
-  return figure === 1 || unit.length < 3 || /s$/i.test(unit) ? unit : `${unit}s`;
+  const abbreviation = unit.length < 4 && unit.toLowerCase() !== "day";
+  return figure === 1 || abbreviation || /s$/i.test(unit) ? unit : `${unit}s`;
 }

@@ -5,6 +5,8 @@ describe("what an arrow claims", () => {
   it.each([
     [0.02, "day", "0.02 a day, about once in 50 days"],
     [0.12, "day", "0.12 a day, about once in 8.3 days"],
+    [0.02, "h", "0.02 per h, about once in 50 h"],
+    [0.00001, "h", "0.00001 per h, about once in 100 000 h (about 11 years)"],
     [1, "hour", "1 an hour, about once in 1 hour"],
     [0.00001, "hour", "0.00001 an hour, about once in 100 000 hours (about 11 years)"],
     [12, "day", "12 a day, about once in 0.083 days (about 2 hours)"],
@@ -22,7 +24,7 @@ describe("what an arrow claims", () => {
 });
 
 describe("units", () => {
-  it.each([["per day", "day"], [" h ", "hour"], ["/yr", "year"], ["1/h", "hour"], ["per  1e6 h", "1e6 h"], ["Schicht", "Schicht"], ["per ", ""], ["percent", "percent"], ["", ""]])(
+  it.each([["per day", "day"], [" h ", "h"], ["/yr", "yr"], ["1/h", "h"], ["Hours", "hour"], ["per  1e6 h", "1e6 h"], ["Schicht", "Schicht"], ["per ", ""], ["percent", "percent"], ["", ""]])(
     "%s is kept as %s",
     (typed, kept) => expect(plainUnit(typed)).toBe(kept),
   );
