@@ -2,7 +2,7 @@ import officeAddins from "eslint-plugin-office-addins";
 import tseslint from "typescript-eslint";
 
 export default tseslint.config(
-  { ignores: ["dist/", ".cache/", "coverage/", "node_modules/"] },
+  { ignores: ["dist/", "package/", ".cache/", "coverage/", "node_modules/"] },
   ...tseslint.configs.recommended,
   {
     rules: {

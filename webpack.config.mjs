@@ -119,8 +119,8 @@ const pages = {
     new DropScriptOf("text"),
     new CopyPlugin({
       patterns: [
-        { from: "manifest.xml", noErrorOnMissing: true },
-        { from: "assets/icons/*.png", to: "icons/[name][ext]", noErrorOnMissing: true },
+        "manifest.xml",
+        { from: "assets/icons/*.png", to: "icons/[name][ext]" },
       ],
     }),
   ],
