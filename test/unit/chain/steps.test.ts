@@ -10,7 +10,7 @@ function* countTo(limit: number, done: number[] = []): Steps<number> {
   return limit;
 }
 
-// eslint-disable-next-line require-yield -- a computation that refuses before its first pause
+ 
 function* refuse(): Steps<number> {
   throw new Problem("horizonTooLong", { time: 1 });
 }

@@ -1,0 +1,44 @@
+import type { StateSet } from "./classes";
+import { Generator, type Arrow } from "./generator";
+
+/**
+ * The chain that stops when it meets a target: the states outside the targets, then one last state for all targets, without
+ * exits. What is asked of a first passage is asked of this chain.
+ */
+export interface Passage {
+  readonly generator: Generator;
+  /** Probabilities of the stopped chain's states at time 0. */
+  readonly start: Float64Array;
+  /** Number of the last state, "a target has been met". */
+  readonly met: number;
+  /** Rate into the targets from each state of the stopped chain. */
+  readonly rateIn: Float64Array;
+  /** States of the original chain that stand for themselves, by new number. */
+  readonly outside: Int32Array;
+}
+
+/** Builds the stopped chain. Rates into several targets from one state are added. */
+export function passage(generator: Generator, start: Float64Array, targets: StateSet): Passage {
+  const number = new Int32Array(generator.size);
+  let met = 0;
+  for (let i = 0; i < generator.size; i++) if (!targets[i]) number[i] = met++;
+  const outside = new Int32Array(met);
+  const begin = new Float64Array(met + 1);
+  const rateIn = new Float64Array(met + 1);
+  const arrows: Arrow[] = [];
+  for (let i = 0; i < generator.size; i++) {
+    if (targets[i]) {
+      begin[met] += start[i];
+      continue;
+    }
+    outside[number[i]] = i;
+    begin[number[i]] = start[i];
+    for (let k = generator.rowStart[i]; k < generator.rowStart[i + 1]; k++) {
+      const to = generator.toState[k];
+      if (targets[to]) rateIn[number[i]] += generator.rate[k];
+      else arrows.push([number[i], number[to], generator.rate[k]]);
+    }
+    if (rateIn[number[i]] > 0) arrows.push([number[i], met, rateIn[number[i]]]);
+  }
+  return { generator: Generator.fromArrows(met + 1, arrows), start: begin, met, rateIn, outside };
+}

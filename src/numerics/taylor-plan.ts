@@ -1,0 +1,82 @@
+/**
+ * How far to expand and how often to square: the cheapest (m, s) for which the truncated series is exact to rounding in
+ * every entry, the smallest included.
+ *
+ * P(t) = (e^(-x) T_m(N))^(2^s), N = (Q + ΛI)h, h = t/2^s, x = Λh, T_m the Taylor polynomial of degree m.
+ */
+export interface TaylorPlan {
+  readonly degree: number;
+  readonly squarings: number;
+}
+
+/** Degree and number of matrix products of each evaluation scheme in `taylor-start.ts`. */
+export const SCHEMES: readonly { readonly degree: number; readonly products: number }[] = [
+  { degree: 4, products: 2 },
+  { degree: 6, products: 3 },
+  { degree: 9, products: 4 },
+  { degree: 12, products: 5 },
+  { degree: 16, products: 6 },
+  { degree: 20, products: 7 },
+  { degree: 25, products: 8 },
+];
+
+/** Truncation is kept below this many bits, a quarter of the rounding error of one operation. */
+const TRUNCATION_BITS = 55;
+
+/**
+ * @param size number of states
+ * @param jumps Λt, the expected number of jumps of the uniformized chain
+ * @param spread Λ ÷ smallest rate where every rate off the diagonal is positive, else Infinity
+ *
+ * Two limits hold together. (a) x^m/(m+1)! ≤ 2^-55: the first omitted term against the diagonal.
+ * (b) for entries reached by k jumps: of the ways to place k jumps into 2^s steps, those with more than m in one step are
+ * the omitted part, at most C(k, m+1)/2^(sm) of the whole. A path has at most n − 1 jumps without loops and r in loops,
+ * whose weight against the loop-free path is at most X^r/r!, X = Λt. Where X is beyond 4n, (a) asks for more squarings
+ * than (b) and X = 4n serves. The graph's distance must not stand for n − 1: a slow direct arrow beside a fast detour gave
+ * errors of 1e-9. Where every pair has an arrow, the milder x^m/(m+1)! · Λ/q_min ≤ 2^-55 replaces (b): nothing is
+ * smaller than its own arrow's term.
+ */
+export function planTaylor(size: number, jumps: number, spread: number): TaylorPlan {
+  let best: TaylorPlan = { degree: 0, squarings: 0 };
+  let bestCost = Infinity;
+  for (const { degree, products } of SCHEMES) {
+    const byNorm = Math.ceil(Math.log2(jumps) - xLimitBits(degree, 0));
+    const byPaths = Math.ceil((TRUNCATION_BITS + pathBits(size, jumps, degree)) / degree);
+    const bySpread = Math.ceil(Math.log2(jumps) - xLimitBits(degree, Math.log2(spread)));
+    const squarings = Math.max(0, byNorm, Math.min(byPaths, bySpread));
+    if (products + squarings <= bestCost) {
+      bestCost = products + squarings;
+      best = { degree, squarings };
+    }
+  }
+  return best;
+}
+
+/** log2 of the largest x with x^m/(m+1)! ≤ 2^-(55 + extraBits). */
+function xLimitBits(degree: number, extraBits: number): number {
+  return (log2Factorial(degree + 1) - TRUNCATION_BITS - extraBits) / degree;
+}
+
+/** log2 of the largest C(n − 1 + r, m + 1) · min(1, X^r/r!) over r; −Infinity when no path exceeds m jumps. */
+function pathBits(size: number, jumps: number, degree: number): number {
+  const loops = Math.min(jumps, 4 * size);
+  let largest = -Infinity;
+  for (let r = 0, weight = 0; ; r++) {
+    if (r > 0) weight += Math.log2(loops / r);
+    const ways = log2Binomial(size - 1 + r, degree + 1);
+    const bits = ways + Math.min(0, weight);
+    if (bits > largest) largest = bits;
+    else if (weight < 0 && (bits < largest - 4 || weight < -1100)) return largest;
+  }
+}
+
+function log2Binomial(k: number, m: number): number {
+  return k < m ? -Infinity : log2Factorial(k) - log2Factorial(m) - log2Factorial(k - m);
+}
+
+const log2Factorials: number[] = [0];
+
+function log2Factorial(k: number): number {
+  for (let j = log2Factorials.length; j <= k; j++) log2Factorials.push(log2Factorials[j - 1] + Math.log2(j));
+  return log2Factorials[k];
+}
