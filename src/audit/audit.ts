@@ -1,0 +1,138 @@
+import { Problem } from "../chain/problem";
+import { read } from "../table/read";
+import type { Cells, Layout, Reading } from "../table/rate-table";
+import { contextOf, type AuditOptions, type Rule } from "./context";
+import { findingsFrom } from "./from-problem";
+import type { Finding, Severity, Span, Whereabouts } from "./finding";
+import { recognise, type Aside, type Recognised } from "./recognise";
+import { closedClasses } from "./rules/closed-classes";
+import { columnsSum } from "./rules/columns-sum";
+import { diagonalBlank } from "./rules/diagonal-blank";
+import { largestArrow } from "./rules/largest-arrow";
+import { layoutAsides } from "./rules/layout-asides";
+import { meanTimes } from "./rules/mean-times";
+import { noExit } from "./rules/no-exit";
+import { noTarget } from "./rules/no-target";
+import { percent } from "./rules/percent";
+import { probabilityLabel } from "./rules/probability-label";
+import { probabilityTable } from "./rules/probability-table";
+import { totalsSelected } from "./rules/totals";
+import { unreachable } from "./rules/unreachable";
+import { meansTotal } from "./words";
+
+export type { AuditOptions, AskedQuestion, OtherTable } from "./context";
+
+/** In the order in which findings of one severity are listed: what spoils every answer first. */
+const RULES: readonly Rule[] = [
+  columnsSum,
+  probabilityTable,
+  percent,
+  closedClasses,
+  noTarget,
+  meanTimes,
+  probabilityLabel,
+  unreachable,
+  noExit,
+  diagonalBlank,
+  largestArrow,
+];
+
+const RANK: Readonly<Record<Severity, number>> = { stop: 0, warning: 1, note: 2 };
+
+/**
+ * What is wrong with this range as a rate table, in the order in which it matters?
+ *
+ * Findings: first everything for which a formula refuses the range, as stops in the reader's order with the refusing problem itself;
+ * then the rules' stops, warnings, notes, and questions. A kind of mistake is one finding with all its places. Where the range
+ * holds a table with more around it (totals, units, notes), the table inside is audited too.
+ *
+ * @param cells - values of the range, headings and margins included
+ * @param options - a start; what only the pane sees; the person's answers
+ * @returns findings; none for a table in which nothing was found
+ */
+export function audit(cells: Cells, options: AuditOptions = {}): Finding[] {
+  return auditReading(cells, read(cells), options);
+}
+
+/** As `audit`, for a range that was read already. */
+export function auditReading(cells: Cells, reading: Reading, options: AuditOptions = {}): Finding[] {
+  const refusals = [...findingsFrom(reading.problems), ...startRefusal(options)].map((finding) => placed(finding, reading.layout));
+  const inner = mayHoldMore(reading) ? recognise(cells) : null;
+  const found = inner && inner.asides.length > 0
+    ? insideOf(cells, inner, options, refusals)
+    : reading.layout
+      ? rulesOn(cells, reading, reading.layout, options)
+      : [];
+  const order = (finding: Finding): number => RANK[finding.severity] + (finding.asks ? 0.5 : 0);
+  return [...refusals, ...found.sort((a, b) => order(a) - order(b))];
+}
+
+function rulesOn(cells: Cells, reading: Reading, layout: Layout, options: AuditOptions, aside: readonly string[] = []): Finding[] {
+  const context = contextOf(cells, reading, layout, options, aside);
+  return RULES.flatMap((rule) => rule(context)).map((finding) => placed(finding, layout));
+}
+
+function startRefusal({ start }: AuditOptions): Finding[] {
+  return start instanceof Problem ? findingsFrom([start]).map((finding) => ({ ...finding, span: null })) : [];
+}
+
+/** Refused, or taken with a state that is called Total. */
+function mayHoldMore(reading: Reading): boolean {
+  return reading.table === null || (reading.layout?.names?.some(meansTotal) ?? false);
+}
+
+/** The table inside a wider range: what to leave out, then its own findings, at their places in the given range. */
+function insideOf(cells: Cells, inner: Recognised, options: AuditOptions, refusals: readonly Finding[]): Finding[] {
+  const width = Math.max(...cells.map((row) => row.length));
+  const spanOf = (aside: Aside): Span =>
+    aside.line === "row" ? { row: aside.index, column: 0, rows: 1, columns: width } : { row: 0, column: aside.index, rows: cells.length, columns: 1 };
+  const about = [...totalsSelected(inner, spanOf), ...layoutAsides(inner, spanOf)].map((finding) => placed(finding, null));
+  if (inner.amount === "counts" || !inner.reading.layout) return about;
+  const facts = undefined; // facts are about the given range; after narrowing they are about the table
+  const aside = inner.asides.flatMap(({ label, texts, role }) => (role === "total" ? [] : [label, ...texts]));
+  const own = [
+    ...findingsFrom(inner.reading.problems).map((finding) => placed(finding, inner.reading.layout)),
+    ...rulesOn(inner.cells, inner.reading, inner.reading.layout, { ...options, facts }, aside),
+  ].filter((finding) => !refusals.some((refusal) => refusal.code === finding.code));
+  return [...about, ...own.map((finding) => outward(finding, inner))];
+}
+
+function outward(finding: Finding, { rows, columns }: Recognised): Finding {
+  const move = (span: Span): Span => {
+    const row = rows[span.row] ?? span.row;
+    const column = columns[span.column] ?? span.column;
+    const lastRow = rows[span.row + span.rows - 1] ?? row;
+    const lastColumn = columns[span.column + span.columns - 1] ?? column;
+    return { row, column, rows: lastRow - row + 1, columns: Math.max(1, lastColumn - column + 1) };
+  };
+  return { ...finding, span: finding.span && move(finding.span), also: finding.also?.map(move) };
+}
+
+/** Adds where the finding is, in states where it lies among the rates. */
+function placed(finding: Finding, layout: Layout | null): Finding {
+  const { span } = finding;
+  if (!span || finding.where) return finding;
+  return { ...finding, where: whereaboutsOf(span, layout) };
+}
+
+function whereaboutsOf(span: Span, layout: Layout | null): Whereabouts | undefined {
+  const whole = layout && span.rows === layout.body.rows && span.columns === layout.body.columns;
+  if (whole && span.rows * span.columns > 1) return undefined;
+  if (!layout || layout.form === "list") return linesOf(span);
+  const row = span.row - layout.body.row;
+  const column = span.column - layout.body.column;
+  if (row < 0 || column < 0 || row >= layout.size || column >= layout.size) return linesOf(span);
+  const name = (state: number): string | undefined => layout.names?.[state];
+  return {
+    ...(span.rows === 1 ? { row: row + 1, rowName: name(row) } : {}),
+    ...(span.columns === 1 ? { column: column + 1, columnName: name(column) } : {}),
+  };
+}
+
+function linesOf(span: Span): Whereabouts {
+  return {
+    inRange: true,
+    ...(span.rows === 1 ? { row: span.row + 1 } : {}),
+    ...(span.columns === 1 ? { column: span.column + 1 } : {}),
+  };
+}

@@ -1,0 +1,26 @@
+import { communicatingClasses } from "../../chain/classes";
+import { rowSpan, stateName, type Rule } from "../context";
+import { meansFinal } from "../words";
+
+/**
+ * Two or more groups that are never left (mistake 18): long-run shares then depend on the start. A stop without a start; a note
+ * where every such group is a single state under a final name (cured and dead: competing ends are no mistake). Silent with a start.
+ */
+export const closedClasses: Rule = (context) => {
+  const { chain, body, kind, start, reading } = context;
+  if (start || chain.arrowCount === 0 || kind === "columnsSum" || kind === "complement") return [];
+  if (reading.problems.some((problem) => problem.code.startsWith("rate") || problem.code === "cellFault")) return [];
+  const { classes, closed } = communicatingClasses(chain);
+  const ends = classes.filter((_, k) => closed[k]);
+  if (ends.length < 2) return [];
+  const final = ends.every((members) => members.length === 1 && meansFinal(body.nameOf(members[0])));
+  return [
+    {
+      code: "closedClasses",
+      severity: final ? "note" : "stop",
+      span: rowSpan(context, ends[1][0]),
+      also: ends.slice(2).map((members) => rowSpan(context, members[0])),
+      details: { classes: ends.map((members) => [...members].map((state) => stateName(context, state))), final },
+    },
+  ];
+};

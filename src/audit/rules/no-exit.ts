@@ -1,0 +1,48 @@
+import { rowSpan, stateName, type Rule } from "../context";
+import { meansFinal, unitsIn } from "../words";
+
+/**
+ * A row without exits whose label does not sound final (mistake 16): a forgotten repair, or a final state under a name that the
+ * audit does not know. Without names nothing can be told from a single such row: a note. A table without any arrow is one finding.
+ */
+export const noExit: Rule = (context) => {
+  const { chain, body, kind, layout } = context;
+  if (kind === "columnsSum" || kind === "complement") return [];
+  const entered = new Uint8Array(chain.size);
+  for (const [, to] of chain.arrows()) entered[to] = 1;
+  if (chain.arrowCount === 0) {
+    if (context.reading.problems.length > 0) return [];
+    return [{ code: "noArrows", severity: "warning", span: layout.body, details: { states: chain.size } }];
+  }
+  const ends: number[] = [];
+  for (let i = 0; i < chain.size; i++)
+    if (chain.rowStart[i] === chain.rowStart[i + 1] && !unreadableRow(context, i) && entered[i]) ends.push(i);
+  const named = layout.names !== null;
+  const doubtful = named ? ends.filter((state) => !meansFinal(body.nameOf(state)) && !allDown(context, state)) : ends;
+  if (doubtful.length === 0) return [];
+  const [span, ...also] = doubtful.map((state) => rowSpan(context, state));
+  return [
+    {
+      code: "noExit",
+      severity: named ? "warning" : "note",
+      span,
+      also,
+      details: { states: doubtful, names: doubtful.map((state) => stateName(context, state)), named },
+    },
+  ];
+};
+
+/** "3 down" of three units in a group without any repair is final by design, such as a group with no crew. */
+function allDown(context: Parameters<Rule>[0], state: number): boolean {
+  const counts = Array.from({ length: context.body.size }, (_, i) => unitsIn(context.body.nameOf(i)));
+  if (counts.some((count) => count === null)) return false;
+  const down = counts.map((count) => (count!.down ? count!.count : -count!.count));
+  if (down[state] !== Math.max(...down)) return false;
+  for (const [from, to] of context.chain.arrows()) if (down[to] < down[from]) return false;
+  return true;
+}
+
+function unreadableRow({ body }: Parameters<Rule>[0], state: number): boolean {
+  for (let j = 0; j < body.size; j++) if (Number.isNaN(body.values[state * body.size + j]) || body.values[state * body.size + j] < 0) return true;
+  return false;
+}
