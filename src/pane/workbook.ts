@@ -62,6 +62,67 @@ export interface SheetInfo {
   readonly used: RangeAddress | null;
 }
 
+/** A cell of a sheet. */
+export interface Place {
+  readonly sheet: string;
+  readonly row: number;
+  readonly column: number;
+}
+
+export interface Picture {
+  /** PNG in base64, without a prefix. */
+  readonly png: string;
+  /** Size in the sheet, in points. */
+  readonly width: number;
+  readonly height: number;
+  readonly name: string;
+  /** What it shows, for people who do not see it. */
+  readonly description: string;
+}
+
+export interface ChartWish {
+  readonly kind: "line" | "columns" | "stackedAreas";
+  readonly title: string;
+  readonly seriesIn: "rows" | "columns";
+}
+
+/** A formula of ours, spelled as people know it, and its cell. */
+export interface FormulaPlace extends Place {
+  readonly formula: string;
+}
+
+/** A formula whose result stands in the workbook as plain values, and the block that these fill. */
+export interface FrozenFormula extends FormulaPlace {
+  readonly rows: number;
+  readonly columns: number;
+  /** ISO date and time. */
+  readonly date: string;
+  /** Of the rate table that the formula read; null where it read none that could be found. */
+  readonly fingerprint: string | null;
+}
+
+/** How many were done, and a sentence for each that could not be. */
+export interface Outcome {
+  readonly done: number;
+  readonly refused: readonly string[];
+}
+
+/** Life in workbooks that travel between people with and without the add-in. */
+export interface SharedWorkbook {
+  /** Formulas of ours that show #NAME? or carry the prefix of functions that were not registered. */
+  unlinked(): Promise<readonly FormulaPlace[]>;
+  /** Rewrites each of them to itself. */
+  relink(): Promise<Outcome>;
+  /** What is frozen now. */
+  frozen(): Promise<readonly FrozenFormula[]>;
+  /** Replaces every formula of ours by the values it shows, keeps the formulas in the workbook and lists them on a sheet. */
+  freeze(now: Date): Promise<Outcome & { readonly sheet: string | null }>;
+  /** Puts the formulas back where the values are still as they were frozen. */
+  thaw(): Promise<Outcome>;
+  calculation(): Promise<"automatic" | "manual">;
+  recalculate(): Promise<void>;
+}
+
 export type WorkbookEvent = "selection" | "change" | "sheets";
 
 export interface Workbook {
@@ -82,4 +143,12 @@ export interface Workbook {
     get(key: string): Promise<unknown>;
     set(key: string, value: unknown): Promise<void>;
   };
+
+  /** Puts one formula into an empty place; `size` is what its answer needs. A filled place is refused with a sentence. One undo step. */
+  placeFormula?(place: Place, formula: string, size: { readonly rows: number; readonly columns: number }, label: string): Promise<void>;
+  /** Puts a picture into the sheet, its upper left corner at the place. */
+  addPicture?(place: Place, picture: Picture): Promise<void>;
+  /** Draws the block that the formula at the place fills, as a chart of the host's own. */
+  addChart?(place: Place, chart: ChartWish): Promise<void>;
+  readonly shared?: SharedWorkbook;
 }
