@@ -15,7 +15,7 @@ export interface SettleOptions {
   /** How long each later slice may hold the thread, in milliseconds. */
   readonly sliceMs: number;
   /** Stops the work between two slices; the promise then rejects with the signal's reason. */
-  readonly signal?: AbortSignal;
+  readonly signal?: Pick<AbortSignal, "aborted" | "reason">;
   /** Told the progress, 0 to 1, at the end of each slice. */
   readonly onProgress?: (progress: number) => void;
 }
@@ -87,7 +87,7 @@ function now(): number {
   return typeof performance === "object" ? performance.now() : Date.now();
 }
 
-function reasonOf(signal: AbortSignal): Error {
+function reasonOf(signal: Pick<AbortSignal, "aborted" | "reason">): Error {
   if (signal.reason instanceof Error) return signal.reason;
   const error = new Error("The computation was cancelled.");
   error.name = "AbortError";
