@@ -24,7 +24,7 @@ export function refusal(problem: Problem): Refusal {
 /** Refuses a spill that the host cannot show. Called before the work is done. @throws spillTooLarge */
 export function checkSpill(rows: number, columns: number): void {
   if (rows * columns > MOST_CELLS || columns > MOST_COLUMNS)
-    throw new Problem("spillTooLarge", { rows, columns, cells: rows * columns, most: columns > MOST_COLUMNS ? MOST_COLUMNS : MOST_CELLS, wide: columns > MOST_COLUMNS });
+    throw new Problem("spillTooLarge", { rows, columns, cells: rows * columns, most: columns > MOST_COLUMNS ? MOST_COLUMNS : MOST_CELLS, wide: columns > MOST_COLUMNS || null });
 }
 
 /**

@@ -39,7 +39,56 @@ export const PROBLEM_SENTENCES: Readonly<Record<string, Sentence>> = {
       ? `Rows ${w.ordinal("firstRow")} and ${w.ordinal("listRow")}: the arrow ${w.text("fromName")} to ${w.text("toName")} stands twice. Keep one row.`
       : `The arrow from state ${w.ordinal("from")} to state ${w.ordinal("to")} stands twice. Keep one.`,
   arrowOutside: (w) => `An arrow joins states ${w.ordinal("from")} and ${w.ordinal("to")}, but there are ${w.number("size")} states.`,
+
+  // arguments
+  argumentMissing: (w) => `${w.argument()}: nothing was given. This argument is needed.`,
+  argumentFault: (w) => `${w.argument()}: the cell holds the error ${w.text("fault")}. Correct it first.`,
+  oneValueNeeded: (w) => `${w.argument()}: ${w.number("rows")} × ${w.number("columns")} cells were given. Give one value.`,
+  flagUnknown: (w) => `${w.argument()}: ${w.quoted("found")} is neither TRUE nor FALSE. Enter TRUE, FALSE, 1 or 0.`,
+  numberNeeded: (w) => `${w.argument()}: ${w.quoted("found")} is not a number. Enter ${domain(w)}.`,
+  numberOutside: (w) => `${w.argument()}: ${w.number("value")} cannot be used. Enter ${domain(w)}.`,
+  oneForEachState: (w) =>
+    `${w.argument()}: ${w.number("rows")} × ${w.number("columns")} cells were given. Give one row or column of ${w.number("size")}, one a state.`,
+  oneStateNeeded: (w) => `${w.argument()}: ${w.number("rows")} × ${w.number("columns")} cells were given. Give one state by name or number.`,
+  stateMissing: (w) => `${w.argument()}: no state is given. Give at least one state by name or number.`,
+  stateUnknown: (w) => `${w.argument()}: there is no state ${w.quoted("found")}. Give a name from the headings or a number from 1 to ${w.number("size")}.`,
+  stateNumberOutside: (w) => `${w.argument()}: there is no state ${w.number("value")}. Give a number from 1 to ${w.number("size")}, or a name.`,
+  stateAmbiguous: (w) =>
+    `${w.argument()}: ${w.number("number")} heads state ${w.ordinal("named")}, but state ${w.number("number")} is "${w.text("other")}". Give the name as text.`,
+  startShape: (w) => `start: ${w.number("rows")} × ${w.number("columns")} cells were given. Give one state, or ${w.number("size")} probabilities in one row or column.`,
+  startProbability: (w) => `${w.argument()}: ${w.quoted("found")} is not a probability. Enter 0 to 1.`,
+  startSum: (w) => `start: the probabilities sum to ${w.number("sum")}. Make them sum to 1.`,
+
+  // times
+  timeNegative: (w) => `A time of ${w.number("time")} is negative. Enter 0 or more.`,
+  timeNotFinite: () => "A time is not a finite number. Enter 0 or more.",
+  horizonTooLong: (w) => `Time ${w.number("time")} × largest exit rate ${w.number("rate")} is over ${w.number("limit")}. Shorten it, or ask for the long run.`,
+  discountNegative: (w) => `discount: ${w.number("discount")} is negative. Enter 0 or more.`,
+
+  // questions without an answer
+  noTargets: () => "targets: none are given and no state is absorbing. Name the states that end the wait.",
+  severalClosedClasses: (w) => `The long run depends on the start: ${w.groups("classes")} are each never left. Give a start.`,
+  meanInfinite: (w) => `From ${w.stateOf("state")} a target is not met with certainty: the mean time is infinite.`,
+  survivalGone: (w) => `At time ${w.number("time")} a target has been met with certainty, or as good as: there is no hazard.`,
+  timeInfinite: (w) => `The time in ${w.stateOf("state")} before a target is infinite: it can be entered and no target met from it.`,
+  ratesTooFarApart: () => "The rates are so far apart that products leave the number range. Use a time unit nearer to the rates.",
+  tooManyStates: (w) => `The answer needs ${w.number("states")} states worked out at once, more than memory holds. Use fewer states.`,
+  valueLost: () => "This value cannot be computed within the number range.",
+  cancelled: () => "The calculation was cancelled. Recalculate to start it again.",
+  beyondMemory: () => "The question is too large for the memory at hand. Use fewer states or times.",
+  unexpected: (w) => `The calculation failed (${w.text("found")}). Run CTMC.CHECK on the table.`,
+  spillTooLarge: (w) =>
+    `The result has ${w.number("rows")} × ${w.number("columns")} cells, over the limit of ${w.number("most")} ${w.has("wide") ? "columns" : "cells"}. Ask for less at once.`,
 };
+
+/** What numbers an argument takes. */
+function domain(w: Words): string {
+  const kind = w.has("whole") ? "a whole number" : "a number";
+  const low = w.has("least") ? `${w.number("least")} or more` : w.has("above") ? `above ${w.number("above")}` : "";
+  const high = w.has("most") ? `at most ${w.number("most")}` : w.has("below") ? `below ${w.number("below")}` : "";
+  if (!low && !high) return kind;
+  return `${kind}, ${[low, high].filter(Boolean).join(" and ")}`;
+}
 
 function capital(word: string): string {
   return word.charAt(0).toUpperCase() + word.slice(1);

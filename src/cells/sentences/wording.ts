@@ -38,6 +38,29 @@ export class Words {
     return this.has(nameKey) ? `${this.ordinal(key)} (${this.text(nameKey)})` : this.ordinal(key);
   }
 
+  /** "Degraded" where the chain's problem was given the states' names, "state 3" where not. */
+  stateOf(key: string): string {
+    return this.stateNumbered(Number(this.details[key]));
+  }
+
+  /** Groups of states: "{Up, Worn} and {Scrapped}". */
+  groups(key: string): string {
+    const groups = (this.details[key] as readonly (readonly number[])[] | undefined) ?? [];
+    const shown = groups.slice(0, 3).map((group) => `{${group.slice(0, 2).map((state) => this.stateNumbered(state)).join(", ")}${group.length > 2 ? ", …" : ""}}`);
+    return `${shown.join(", ")}${groups.length > 3 ? ` and ${groups.length - 3} more` : ""}`;
+  }
+
+  /** Where a value of an argument stands: "times, row 2, column 1", "start". */
+  argument(): string {
+    const name = this.text("argument");
+    return this.has("row") ? `${name}, row ${this.ordinal("row")}, column ${this.ordinal("column")}` : name;
+  }
+
+  private stateNumbered(state: number): string {
+    const names = this.details.names as readonly string[] | undefined;
+    return names ? this.shorten(names[state]) : `state ${state + 1}`;
+  }
+
   /** At most three entries of a list, and how many more. */
   list(key: string, entry: (value: Detail) => string): string {
     const values = (this.details[key] as readonly Detail[] | undefined) ?? [];
