@@ -41,7 +41,7 @@ export function* eliminateDense(system: LeakSystem): Pausable<Elimination> {
       yield Math.min(1, done / total);
     }
   }
-  return new DenseElimination(n, a, exit, sound);
+  return new DenseElimination(system, a, exit, leakShare, sound);
 }
 
 /** Takes the earlier states out of row i and turns its later part into probabilities; returns its exit rate. */
@@ -84,27 +84,65 @@ function reduceRow(a: Float64Array, n: number, i: number, ownLeak: number, leakS
 
 /** Below the diagonal rates to states eliminated before, above it probabilities of the next later state. */
 class DenseElimination implements Elimination {
+  readonly size: number;
+
   constructor(
-    readonly size: number,
+    private readonly system: LeakSystem,
     private readonly a: Float64Array,
     private readonly exit: Float64Array,
+    private readonly leakShare: Float64Array,
     readonly sound: boolean,
-  ) {}
+  ) {
+    this.size = system.size;
+  }
 
   solve(w: Float64Array): Float64Array {
+    return this.substituteBack(this.reduce(w));
+  }
+
+  /** What each state collects per visit, visits to the states taken out before it included. */
+  private reduce(w: Float64Array): Float64Array {
     const { size: n, a, exit } = this;
-    const x = new Float64Array(n);
+    const z = new Float64Array(n);
     for (let i = 0; i < n; i++) {
       let sum = w[i];
-      for (let k = 0; k < i; k++) sum += a[i * n + k] * x[k];
-      x[i] = sum / exit[i];
+      for (let k = 0; k < i; k++) sum += a[i * n + k] * z[k];
+      z[i] = sum / exit[i];
     }
+    return z;
+  }
+
+  private substituteBack(z: Float64Array): Float64Array {
+    const { size: n, a } = this;
+    const x = z.slice();
     for (let i = n - 2; i >= 0; i--) {
       let sum = x[i];
       for (let j = i + 1; j < n; j++) sum += a[i * n + j] * x[j];
       x[i] = sum;
     }
     return x;
+  }
+
+  differences(gain: Float64Array, loss?: Float64Array): Float64Array {
+    const { size: n, a, exit, leakShare, system } = this;
+    const z = this.reduce(gain);
+    if (loss) this.reduce(loss).forEach((l, k) => (z[k] -= l));
+    if (exit[n - 1] === 0) z[n - 1] = 0;
+    const x = this.substituteBack(z);
+    const ahead = new Float64Array(n * n); // [k][j] = x_k − x_j
+    for (let k = n - 2; k >= 0; k--) {
+      const row = k * n;
+      for (let j = k + 1; j < n; j++) ahead[row + j] = z[k] - leakShare[k] * x[j];
+      for (let l = k + 1; l < n; l++) {
+        const share = a[row + l];
+        if (share !== 0) for (let j = k + 1; j < n; j++) ahead[row + j] += share * ahead[l * n + j];
+      }
+      for (let j = k + 1; j < n; j++) ahead[j * n + k] = -ahead[row + j];
+    }
+    const result = new Float64Array(system.rate.length);
+    for (let i = 0; i < n; i++)
+      for (let p = system.rowStart[i]; p < system.rowStart[i + 1]; p++) result[p] = ahead[system.toState[p] * n + i];
+    return result;
   }
 
   solveTransposed(w: Float64Array): Float64Array {
