@@ -1,59 +1,56 @@
+import { valuesAt } from "../numerics/rows";
 import { meanAbsorptionSteps } from "./absorption";
 import { communicatingClasses, type StateSet } from "./classes";
-import { distributionsSteps } from "./distribution";
 import type { Generator } from "./generator";
+import { checkTimes } from "./horizon";
 import { failuresAlong } from "./jumps";
 import { occupanciesSteps } from "./occupancy";
 import { stationarySharesSteps } from "./stationary";
 import { finish, type Steps } from "./steps";
 
 /**
- * What share of the time is it up in the long run?
+ * How likely is it to be up: in the long run, or at each of these times?
  *
- * Σ_{i∈up} π_i. Parameters and problems as `stationaryShares`. A small unavailability is asked for with the down states as
- * `up`: it is then a sum of small shares and keeps all its digits, as 1 − availability would not.
+ * Σ_{i∈up} π_i, or Σ_{i∈up} P(in i at time t). A small unavailability is asked for with the down states as `up`: it is then
+ * a sum of small shares and keeps all its digits, as 1 − availability would not.
  *
- * @example longRunAvailability(Generator.fromArrows(2, [[0, 1, 1], [1, 0, 3]]), Uint8Array.of(1, 0)) // 0.75
+ * @param generator - the chain, n states
+ * @param up - the states that count as up
+ * @param start - distribution at time 0; not needed in the long run with a single closed class, else the first state
+ * @param times - each ≥ 0, in any order; omitted: the long run
+ * @returns the long-run share, or one probability a time
+ * @throws as `stationaryShares`; as `distributions` with times
+ *
+ * *Cost, accuracy*: those of `stationaryShares` and `distributions`.
+ *
+ * @example availability(Generator.fromArrows(2, [[0, 1, 1], [1, 0, 3]]), Uint8Array.of(1, 0)) // 0.75
  */
-export function longRunAvailability(generator: Generator, up: StateSet, start?: Float64Array): number {
-  return finish(longRunAvailabilitySteps(generator, up, start));
+export function availability(generator: Generator, up: StateSet, start?: Float64Array): number;
+export function availability(
+  generator: Generator, up: StateSet, start: Float64Array | undefined, times: ArrayLike<number>,
+): Float64Array;
+export function availability(
+  generator: Generator, up: StateSet, start?: Float64Array, times?: ArrayLike<number>,
+): number | Float64Array {
+  return times ? finish(availabilityAtSteps(generator, up, start, times)) : finish(longRunAvailabilitySteps(generator, up, start));
 }
 
 export function* longRunAvailabilitySteps(generator: Generator, up: StateSet, start?: Float64Array): Steps<number> {
   return sumOver(up, yield* stationarySharesSteps(generator, start));
 }
 
-/**
- * How likely is it to be up at each of these times?
- *
- * Σ_{i∈up} P(in i at time t).
- *
- * @param up - the states that count as up
- * @param start - distribution at time 0
- * @param times - each ≥ 0, in any order
- * @returns one probability a time
- *
- * *Cost, accuracy*: those of `distributions`.
- *
- * @example availabilityAt(Generator.fromArrows(2, [[0, 1, 1]]), Uint8Array.of(1, 0), Float64Array.of(1, 0), [0]) // [1]
- */
-export function availabilityAt(
-  generator: Generator, up: StateSet, start: Float64Array, times: ArrayLike<number>,
-): Float64Array {
-  return finish(availabilityAtSteps(generator, up, start, times));
-}
-
 export function* availabilityAtSteps(
-  generator: Generator, up: StateSet, start: Float64Array, times: ArrayLike<number>,
+  generator: Generator, up: StateSet, start: Float64Array | undefined, times: ArrayLike<number>,
 ): Steps<Float64Array> {
-  const shares = yield* distributionsSteps(generator, start, times);
-  return Float64Array.from(shares, (share) => sumOver(up, share));
+  checkTimes(generator, times);
+  const begin = start ?? Float64Array.from(up, (_, i) => (i === 0 ? 1 : 0));
+  return (yield* valuesAt(generator, begin, times, [Float64Array.from(up)]))[0];
 }
 
 /**
  * What share of the next so many time units will it be up, on average?
  *
- * Σ_{i∈up} E[time in i over [0, horizon]] / horizon; at horizon 0 the start's share in `up`. Parameters as `availabilityAt`.
+ * Σ_{i∈up} E[time in i over [0, horizon]] / horizon; at horizon 0 the start's share in `up`. Parameters as `availability`.
  *
  * @example intervalAvailability(Generator.fromArrows(1, []), Uint8Array.of(1), Float64Array.of(1), [10]) // [1]
  */
