@@ -1,0 +1,2 @@
+import type { Definition } from "./define";
+export const mathematics: readonly Definition[] = [];
