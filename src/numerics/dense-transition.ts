@@ -1,5 +1,5 @@
 import { agree, multiplySteps, unpadded, type MatrixBlock, type MatrixKernel } from "./matrix-kernel";
-import { planTaylor, type TaylorPlan } from "./taylor-plan";
+import { planTaylor } from "./taylor-plan";
 import { TAYLOR_SLOTS, taylorStart } from "./taylor-start";
 
 /** A chain for the dense methods: rates off the diagonal (row-major, zero diagonal) and their row sums. */
@@ -36,9 +36,11 @@ export function* denseTransition(
   const jumps = chain.largestExit * time;
   if (jumps === 0) return identity(n);
   const plan = planTaylor(n, jumps, rateSpread(chain));
-  const block = kernel.open(n, TAYLOR_SLOTS + 1);
+  const block = kernel.open(n, TAYLOR_SLOTS);
   try {
-    let now = yield* startingMatrix(block, chain, time / 2 ** plan.squarings, plan.degree);
+    fillUniformized(block, chain, time / 2 ** plan.squarings);
+    let now = yield* taylorStart(block, plan.degree, jumps / 2 ** plan.squarings);
+    block.repair(now);
     const tolerance = unchangedTolerance(n);
     for (let s = 1; s <= plan.squarings; s++) {
       const next = now === 0 ? 1 : 0;
@@ -54,21 +56,8 @@ export function* denseTransition(
   }
 }
 
-/** Writes P(h), repaired, into the slot that is returned. All slots of the block are used. */
-export function* startingMatrix(
-  block: MatrixBlock,
-  chain: DenseRates,
-  step: number,
-  degree: number,
-): globalThis.Generator<number, number, void> {
-  fillUniformized(block, chain, step);
-  const slot = yield* taylorStart(block, degree, chain.largestExit * step);
-  block.repair(slot);
-  return slot;
-}
-
 /** Slot 0 = (Q + ΛI)h. */
-function fillUniformized(block: MatrixBlock, chain: DenseRates, step: number): void {
+export function fillUniformized(block: MatrixBlock, chain: DenseRates, step: number): void {
   const { size: n, rates, exits, largestExit } = chain;
   const { stride } = block;
   const slot = block.slots[0];
@@ -78,12 +67,8 @@ function fillUniformized(block: MatrixBlock, chain: DenseRates, step: number): v
   }
 }
 
-export function planFor(chain: DenseRates, time: number): TaylorPlan {
-  return planTaylor(chain.size, chain.largestExit * time, rateSpread(chain));
-}
-
 /** Λ ÷ smallest rate where every pair of states has an arrow, else Infinity. */
-function rateSpread(chain: DenseRates): number {
+export function rateSpread(chain: DenseRates): number {
   const n = chain.size;
   let smallest = Infinity;
   for (let i = 0; i < n; i++)

@@ -100,3 +100,9 @@ export function unpadded(block: MatrixBlock, slot: number): Float64Array {
   for (let i = 0; i < n; i++) values.set(block.slots[slot].subarray(i * stride, i * stride + n), i * n);
   return values;
 }
+
+/** Fills a slot from unpadded rows. */
+export function load(block: MatrixBlock, slot: number, values: Float64Array): void {
+  const { size: n, stride } = block;
+  for (let i = 0; i < n; i++) block.slots[slot].set(values.subarray(i * n, i * n + n), i * stride);
+}

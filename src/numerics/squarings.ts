@@ -1,41 +1,34 @@
-import { planFor, startingMatrix, unchangedTolerance, type DenseRates } from "./dense-transition";
-import { agree, multiplySteps, repairRow, unpadded, type MatrixBlock, type MatrixKernel } from "./matrix-kernel";
-import { TAYLOR_SLOTS } from "./taylor-start";
+import { denseTransition, unchangedTolerance, type DenseRates } from "./dense-transition";
+import { agree, load, multiplySteps, repairRow, unpadded, type MatrixKernel } from "./matrix-kernel";
 
 /**
  * P(h), P(2h), P(4h), …, kept, so that a row can be taken to any time by its binary digits. Grows on demand; once a
  * squaring changes nothing, the last matrix stands for all longer times.
+ *
+ * P(h) itself is exact for every entry (it has squarings of its own behind it): a row moved by a few steps of a merely
+ * truncated series would miss the entries that many jumps in one step lead to.
  */
 export class Squarings {
   readonly size: number;
   readonly step: number;
-  private readonly matrices: Float64Array[] = [];
+  private readonly matrices: Float64Array[];
   private settled = false;
-  private readonly chain: DenseRates;
   private readonly kernel: MatrixKernel;
   private readonly scratch: Float64Array;
 
-  /** `step` is h; the expansion at h has the degree that planning for `horizon` = h·2^squarings chose. */
-  private constructor(chain: DenseRates, kernel: MatrixKernel, step: number) {
-    this.chain = chain;
+  private constructor(size: number, kernel: MatrixKernel, step: number, first: Float64Array) {
+    this.size = size;
     this.kernel = kernel;
-    this.size = chain.size;
     this.step = step;
-    this.scratch = new Float64Array(chain.size);
+    this.matrices = [first];
+    this.scratch = new Float64Array(size);
   }
 
-  /** Starts the list for times up to `horizon`: h = horizon/2^s with the cheapest exact s. */
+  /** Starts the list with h = horizon/2^k, Λh ≤ 1: below one step a row is moved jump by jump. */
   static *open(chain: DenseRates, kernel: MatrixKernel, horizon: number): globalThis.Generator<number, Squarings, void> {
-    const plan = planFor(chain, horizon);
-    const squarings = new Squarings(chain, kernel, horizon / 2 ** plan.squarings);
-    const block = kernel.open(chain.size, TAYLOR_SLOTS + 1);
-    try {
-      const slot = yield* startingMatrix(block, chain, squarings.step, plan.degree);
-      squarings.matrices.push(unpadded(block, slot));
-    } finally {
-      block.close();
-    }
-    return squarings;
+    const halvings = Math.max(0, Math.ceil(Math.log2(chain.largestExit * horizon)));
+    const step = horizon / 2 ** halvings;
+    return new Squarings(chain.size, kernel, step, yield* denseTransition(chain, step, kernel));
   }
 
   /** Highest power kept that differs from the one before it; a settled list needs no higher one. */
@@ -73,10 +66,6 @@ export class Squarings {
     row.set(this.scratch);
     repairRow(row, 0, this.size);
   }
-
-  get largestExit(): number {
-    return this.chain.largestExit;
-  }
 }
 
 /** out = row · matrix. */
@@ -88,11 +77,6 @@ export function rowTimesMatrix(row: Float64Array, matrix: Float64Array, out: Flo
     if (weight === 0) continue;
     for (let j = 0, at = i * n; j < n; j++, at++) out[j] += weight * matrix[at];
   }
-}
-
-function load(block: MatrixBlock, slot: number, values: Float64Array): void {
-  const { size: n, stride } = block;
-  for (let i = 0; i < n; i++) block.slots[slot].set(values.subarray(i * n, i * n + n), i * stride);
 }
 
 /**

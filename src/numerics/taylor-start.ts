@@ -1,7 +1,7 @@
 import { multiplySteps, type MatrixBlock } from "./matrix-kernel";
 
-/** Slots that `taylorStart` needs beside the result's. */
-export const TAYLOR_SLOTS = 6;
+/** Slots that `taylorStart` needs: five powers and two accumulators. */
+export const TAYLOR_SLOTS = 7;
 
 /**
  * P(h) = e^(-x) T_m(N) by Paterson and Stockmeyer's scheme (SIAM J. Comput. 2 (1973) 60–66): powers up to p, then

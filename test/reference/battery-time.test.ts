@@ -2,7 +2,13 @@ import { afterAll, describe, expect, it } from "vitest";
 import { distributions } from "../../src/chain/distribution";
 import { density, hazard, reached, survival } from "../../src/chain/first-passage";
 import { discountedOccupancy, occupancies } from "../../src/chain/occupancy";
+import { percentiles } from "../../src/chain/percentile";
+import { finish } from "../../src/chain/steps";
 import { transitionMatrix } from "../../src/chain/transition";
+import { shareElasticityAt } from "../../src/chain/transition-derivative";
+import { kernelFor } from "../../src/numerics/method-choice";
+import { denseOf } from "../../src/numerics/rows";
+import { TransitionDerivative } from "../../src/numerics/transition-derivative";
 import { battery, generatorOf, maskOf, referenceValue, startOf, Worst } from "./battery";
 
 /** Below this no accuracy is promised: products leave the double range. */
@@ -56,6 +62,38 @@ describe.each(battery.map((c) => [c.id, c] as const))("battery %s", (id, c) => {
     if (referenceValue(e.hit_sf_t) > 1e-280)
       expect(compare("hazard", hazard(generator, start, targets, at)[0], e.hit_hazard_t, id, true)).toBeLessThan(4e-15);
   });
+
+  it("percentiles", () => {
+    const { times } = percentiles(generator, start, targets, c.levels);
+    expect(compareRow("percentile", times, e.hit_quantiles, id, false)).toBeLessThan(5e-14);
+  });
+
+  const [from, to] = c.deriv;
+  if (from !== to && c.t > 0)
+    it("derivative of P(t)", () => {
+      const { n } = c;
+      const derivative = finish(TransitionDerivative.open(denseOf(generator), c.t, kernelFor(n)));
+      const p = derivative.transition;
+      const d = finish(derivative.along(from, to));
+      derivative.close();
+      const rate = generator.rateOf(from, to);
+      const elasticity = (value: number, probability: number): number => (probability > FLOOR ? (rate * value) / probability : 0);
+      const near = (found: number, probability: number, expected: number, at: string): void => {
+        const scale = (1 + Math.abs(Math.log(probability))) * (1 + Math.abs(expected));
+        if (probability > FLOOR) expect(worstOf("elasticity").absolute(found, expected, at, scale)).toBeLessThan(2e-14);
+      };
+      if (e.dP)
+        for (let i = 0; i < n; i++)
+          for (let j = 0; j < n; j++)
+            near(elasticity(d[i * n + j], p[i * n + j]), p[i * n + j], elasticity(Number(e.dP[i][j]), Number(e.P[i][j])), `${id} ${i},${j}`);
+      if (e.ddist_t)
+        for (let j = 0; j < n; j++) {
+          const up = maskOf(n, [j]);
+          const found = shareElasticityAt(generator, up, start, c.t)[from * n + to];
+          const probability = Number(e.dist_t[j]);
+          near(probability > FLOOR ? found : 0, probability, elasticity(Number(e.ddist_t[j]), probability), `${id} ${j}`);
+        }
+    });
 
   it("occupancy", () => {
     expect(compareRow("occupancy", occupancies(generator, start, [c.t])[0], e.occupancy_t, id, false)).toBeLessThan(1e-13);

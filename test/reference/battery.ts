@@ -60,6 +60,17 @@ export class Worst {
     }
   }
 
+  /** The same for a value whose size says nothing about it: |found − expected| / scale. Returns this one's error. */
+  absolute(found: number, expected: number, at: string, scale: number): number {
+    const error = Math.abs(found - expected) / scale;
+    this.compared++;
+    if (!(error <= this.error)) {
+      this.error = error;
+      this.at = at;
+    }
+    return error;
+  }
+
   toString(): string {
     return `${this.error.toExponential(1)} (${this.at || "exact"}; ${this.compared} values)`;
   }

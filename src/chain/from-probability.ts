@@ -1,0 +1,94 @@
+import { projectOntoGeneratorRow } from "../numerics/nearest-generator";
+import { principalLogarithm } from "../numerics/principal-logarithm";
+import { Generator, SMALLEST_RATE } from "./generator";
+import { Problem } from "./problem";
+import { finish, within, type Steps } from "./steps";
+import { transitionMatrixSteps } from "./transition";
+
+export interface FromProbability {
+  readonly generator: Generator;
+  /** True when exp(Q · period) is the given table to rounding; false when Q is the nearest generator only. */
+  readonly exact: boolean;
+}
+
+/** A negative entry of the logarithm above this share of its largest one counts as rounding. */
+const ROUNDING_SHARE = 1e-10;
+
+/**
+ * Which rates stand behind a table of one-period transition probabilities?
+ *
+ * Q = log(P) / period when that is a generator, else the generator nearest to it, row by row in least squares.
+ *
+ * @param size - number of states n
+ * @param p - n × n, row-major; rows from, columns to; entries in [0, 1], rows sum to 1
+ * @param period - the table's period, finite, above 0, in the time unit that the rates shall have
+ * @throws `periodNotPositive` {period}; `noRealLogarithm` {} (no answer) when no real principal logarithm exists
+ *
+ * *Method*: inverse scaling and squaring, `numerics/principal-logarithm.ts`; quasi-optimisation, Kreinin & Sidelnikova 2001,
+ * `numerics/nearest-generator.ts`. An entry is exactly 0 where the to-state cannot be reached. Israel, Rosenthal & Wei,
+ * Math. Finance 11 (2001) 245–265, discuss when a generator exists at all.
+ * *Cost*: some 10 inverses of order n a square root. *Accuracy*: exp(Q · period) agrees with p to 1e-12 where exact,
+ * `test/unit/chain/from-probability.test.ts`.
+ *
+ * @example generatorFromProbability(2, Float64Array.of(0.8, 0.2, 0, 1), 1).generator.rateOf(0, 1) // −ln 0.8
+ */
+export function generatorFromProbability(size: number, p: Float64Array, period: number): FromProbability {
+  return finish(generatorFromProbabilitySteps(size, p, period));
+}
+
+export function* generatorFromProbabilitySteps(size: number, p: Float64Array, period: number): Steps<FromProbability> {
+  if (!(period > 0 && period < Infinity)) throw new Problem("periodNotPositive", { period });
+  const logarithm = yield* principalLogarithm(size, p);
+  if (!logarithm || !logarithm.every(Number.isFinite)) throw new Problem("noRealLogarithm", {}, "noAnswer");
+  const reachable = reachability(size, p);
+  let largest = 0;
+  for (const value of logarithm) largest = Math.max(largest, Math.abs(value));
+  let exact = true;
+  for (let i = 0; i < size; i++)
+    for (let j = 0; j < size; j++) {
+      const at = i * size + j;
+      if (i === j) continue;
+      if (!reachable[at]) logarithm[at] = 0;
+      else if (logarithm[at] < 0) {
+        if (logarithm[at] < -ROUNDING_SHARE * largest) exact = false;
+        else logarithm[at] = 0;
+      }
+    }
+  if (!exact) for (let i = 0; i < size; i++) projectOntoGeneratorRow(logarithm.subarray(i * size, (i + 1) * size), i);
+  const rates = logarithm.map((value) => (value / period < SMALLEST_RATE ? 0 : value / period));
+  return { generator: Generator.fromDense(size, rates), exact };
+}
+
+/**
+ * How far is that table from the nearest one that rates can explain?
+ *
+ * max_ij |p_ij − exp(Q · period)_ij| with the Q of `generatorFromProbability`; 0 to rounding when a valid generator exists.
+ *
+ * Parameters, problems, method and cost as there.
+ *
+ * @example embeddingGap(2, Float64Array.of(0.8, 0.2, 0, 1), 1) // 0 to rounding
+ */
+export function embeddingGap(size: number, p: Float64Array, period: number): number {
+  return finish(embeddingGapSteps(size, p, period));
+}
+
+export function* embeddingGapSteps(size: number, p: Float64Array, period: number): Steps<number> {
+  const { generator } = yield* within(generatorFromProbabilitySteps(size, p, period), 0, 0.8);
+  const back = yield* within(transitionMatrixSteps(generator, period), 0.8, 1);
+  return p.reduce((gap, value, k) => Math.max(gap, Math.abs(value - back[k])), 0);
+}
+
+/** For each pair, 1 where the to-state can be reached from the from-state through positive entries. */
+function reachability(n: number, p: Float64Array): Uint8Array {
+  const reachable = new Uint8Array(n * n);
+  for (let i = 0; i < n; i++) {
+    const open = [i];
+    for (let k = open.pop(); k !== undefined; k = open.pop())
+      for (let j = 0; j < n; j++)
+        if (p[k * n + j] > 0 && !reachable[i * n + j]) {
+          reachable[i * n + j] = 1;
+          open.push(j);
+        }
+  }
+  return reachable;
+}
