@@ -1,3 +1,4 @@
+import { potentialDifferences } from "../numerics/potential-differences";
 import { communicatingClasses, type StateSet } from "./classes";
 import { effectiveCosts, type JumpCosts } from "./cost";
 import { certainty } from "./absorption";
@@ -5,7 +6,7 @@ import type { Generator } from "./generator";
 import { Problem } from "./problem";
 import { classShares, classWeights } from "./stationary";
 import { finish, type Steps } from "./steps";
-import { eliminated, membersOf, subchain } from "./subchain";
+import { eliminated, membersOf, subchain, type Subchain } from "./subchain";
 
 /**
  * By how many percent does the long-run share in `up` change for one percent more of each rate?
@@ -20,7 +21,7 @@ import { eliminated, membersOf, subchain } from "./subchain";
  *
  * *Method*: ∂A/∂q_ij = π_i (h_j − h_i), h the solution of Poisson's equation −Qh = 1_up − A (Schweitzer, J. Appl. Prob. 5
  * (1968) 401–413; Golub & Meyer, SIAM J. Alg. Disc. Meth. 7 (1986) 273–281). Ours: the right-hand side as sums of π over the
- * other side, the differences h_j − h_i by state reduction (`Elimination.differences`). Arrows of transient states move the
+ * other side, the differences h_j − h_i by state reduction, rare states first (`numerics/potential-differences.ts`). Arrows of transient states move the
  * probabilities of the closed classes: their time from the start × the difference of the long-run shares.
  * *Cost*: two eliminations. *Accuracy*: `test/reference/battery-elasticity.test.ts`.
  *
@@ -94,8 +95,8 @@ export function* meanTimeElasticitySteps(
   const elimination = yield* eliminated(part);
   const ones = new Float64Array(part.members.length).fill(1);
   const mean = elimination.solve(ones);
-  const ahead = elimination.differences(ones);
   const stay = elimination.solveTransposed(startInside);
+  const ahead = yield* differencesOf(part, stay, ones);
   let value = 0;
   startInside.forEach((p, a) => (value += p * mean[a]));
   const derivatives = new Float64Array(generator.arrowCount);
@@ -131,7 +132,7 @@ function* rewardDerivatives(
     value += weights[c] * rates[c];
     if (weights[c] === 0 || part.members.length === 1) continue;
     const { gain, loss } = deviations(rewards, shares);
-    const ahead = (yield* eliminated(part)).differences(gain, loss);
+    const ahead = yield* differencesOf(part, shares, gain, loss);
     eachArrow(generator, part.members, part.position, (p, from, inside) => {
       derivatives[p] = weights[c] * shares[from] * (jumpReward(part.members[from], generator.toState[p]) + ahead[inside]);
     });
@@ -151,7 +152,7 @@ function* rewardDerivatives(
         }
         return sum;
       });
-      const ahead = elimination.differences(toward(1, lowest));
+      const ahead = yield* differencesOf(part, stay, toward(1, lowest));
       const shortfall = new Map<number, Float64Array>(); // by class: its rate less the rate expected from each state
       const shortfallOf = (c: number): Float64Array => {
         let found = shortfall.get(c);
@@ -168,6 +169,12 @@ function* rewardDerivatives(
     }
   }
   return { value, derivatives };
+}
+
+function* differencesOf(part: Subchain, weight: Float64Array, gain: Float64Array, loss?: Float64Array): Steps<Float64Array> {
+  const { differences, sound } = yield* potentialDifferences(part.system, weight, gain, loss);
+  if (!sound) throw new Problem("ratesTooFarApart", {}, "noAnswer");
+  return differences;
 }
 
 /** reward_i − Σ_j π_j reward_j as Σ_j π_j (reward_i − reward_j), its positive and its negative terms apart. */

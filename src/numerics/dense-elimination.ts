@@ -20,7 +20,7 @@ const LARGE = 1e280;
  * states at a time, which halves the memory traffic. *Cost*: n³/3 multiply-adds, n² numbers.
  * *Accuracy*: `test/reference/battery-chain.test.ts`.
  */
-export function* eliminateDense(system: LeakSystem): Pausable<Elimination> {
+export function* eliminateDense(system: LeakSystem): Pausable<DenseElimination> {
   const n = system.size;
   const a = new Float64Array(n * n);
   for (let i = 0; i < n; i++)
@@ -83,7 +83,7 @@ function reduceRow(a: Float64Array, n: number, i: number, ownLeak: number, leakS
 }
 
 /** Below the diagonal rates to states eliminated before, above it probabilities of the next later state. */
-class DenseElimination implements Elimination {
+export class DenseElimination implements Elimination {
   readonly size: number;
 
   constructor(
@@ -123,6 +123,15 @@ class DenseElimination implements Elimination {
     return x;
   }
 
+  /**
+   * For each arrow i→j of the system, in its order, x_j − x_i where M x = gain − loss; gain, loss ≥ 0. The set may be closed
+   * (no leak) when π(gain − loss) = 0: x is then known up to a constant, which its differences do not see.
+   *
+   * Differences are carried through the back substitution, never taken of finished values: taking out k gives
+   * x_k = z_k + Σ_l p_kl x_l with Σ_l p_kl + leak share = 1, hence x_k − x_j = z_k + Σ_l p_kl (x_l − x_j) − leak share · x_j.
+   * States that hardly differ keep their small difference although both are large. z_k is what an excursion from k among the
+   * states taken out before it collects, gain less loss: short excursions when rare states go first (`potential-differences.ts`).
+   */
   differences(gain: Float64Array, loss?: Float64Array): Float64Array {
     const { size: n, a, exit, leakShare, system } = this;
     const z = this.reduce(gain);

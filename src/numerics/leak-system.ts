@@ -25,17 +25,6 @@ export interface Elimination {
   solveTransposed(w: Float64Array): Float64Array;
   /** Of a set without leak that is one class: π ≥ 0 with πᵀ M = 0 and sum 1. */
   shares(): Float64Array;
-  /**
-   * For each arrow i→j of the system, in its order, x_j − x_i where M x = gain − loss; gain, loss ≥ 0. The set may be
-   * closed (no leak) when π(gain − loss) = 0: x is then known up to a constant, its differences are not affected.
-   *
-   * Differences are carried through the back substitution, never taken of finished values: taking out k gives
-   * x_k = z_k + Σ_l p_kl x_l with Σ_l p_kl + leak share = 1, hence x_k − x_j = z_k + Σ_l p_kl (x_l − x_j) − leak share · x_j.
-   * States that hardly differ keep their small difference although both are large. Only pairs that the elimination
-   * joins are met, so a sparse plan serves them too. Our own; the fundamental matrix by state reduction is in
-   * Sonin & Thornton, SIAM J. Matrix Anal. Appl. 23 (2001) 209–224. *Cost*: once more that of the elimination.
-   */
-  differences(gain: Float64Array, loss?: Float64Array): Float64Array;
 }
 
 /** Work that can be paused: yields the share done, 0 to 1. */

@@ -119,7 +119,7 @@ export function* eliminateSparse(system: LeakSystem, plan: EliminationPlan): Pau
       yield Math.min(1, done / plan.work);
     }
   }
-  return new SparseElimination(system, order, place, upStart, up, upShare, downStart, down, downRate, exit, leakShare, sound);
+  return new SparseElimination(n, order, upStart, up, upShare, downStart, down, downRate, exit, sound);
 }
 
 function addScaled(row: Float64Array, rate: number, up: Int32Array, share: Float64Array, begin: number, end: number): void {
@@ -137,12 +137,9 @@ function transposePattern(n: number, upStart: Int32Array, up: Int32Array): { dow
 }
 
 class SparseElimination implements Elimination {
-  readonly size: number;
-
   constructor(
-    private readonly system: LeakSystem,
+    readonly size: number,
     private readonly order: Int32Array,
-    private readonly place: Int32Array,
     private readonly upStart: Int32Array,
     private readonly up: Int32Array,
     private readonly upShare: Float64Array,
@@ -150,88 +147,23 @@ class SparseElimination implements Elimination {
     private readonly down: Int32Array,
     private readonly downRate: Float64Array,
     private readonly exit: Float64Array,
-    private readonly leakShare: Float64Array,
     readonly sound: boolean,
-  ) {
-    this.size = system.size;
-  }
+  ) {}
 
   solve(w: Float64Array): Float64Array {
-    return this.byState(this.substituteBack(this.reduce(w)));
-  }
-
-  /** What each state, in elimination order, collects per visit, visits to states taken out before it included. */
-  private reduce(w: Float64Array): Float64Array {
-    const { size: n, order, downStart, down, downRate, exit } = this;
-    const z = new Float64Array(n);
+    const { size: n, order, upStart, up, upShare, downStart, down, downRate, exit } = this;
+    const x = new Float64Array(n);
     for (let i = 0; i < n; i++) {
       let sum = w[order[i]];
-      for (let q = downStart[i]; q < downStart[i + 1]; q++) sum += downRate[q] * z[down[q]];
-      z[i] = sum / exit[i];
+      for (let q = downStart[i]; q < downStart[i + 1]; q++) sum += downRate[q] * x[down[q]];
+      x[i] = sum / exit[i];
     }
-    return z;
-  }
-
-  private substituteBack(z: Float64Array): Float64Array {
-    const { size: n, upStart, up, upShare } = this;
-    const x = z.slice();
     for (let i = n - 2; i >= 0; i--) {
       let sum = x[i];
       for (let p = upStart[i]; p < upStart[i + 1]; p++) sum += upShare[p] * x[up[p]];
       x[i] = sum;
     }
-    return x;
-  }
-
-  differences(gain: Float64Array, loss?: Float64Array): Float64Array {
-    const { size: n, system, place, upStart, up, upShare, exit, leakShare } = this;
-    const z = this.reduce(gain);
-    if (loss) this.reduce(loss).forEach((l, k) => (z[k] -= l));
-    if (exit[n - 1] === 0) z[n - 1] = 0;
-    const x = this.substituteBack(z);
-    const ahead = new Float64Array(up.length); // at the position of (k, j): x_k − x_j
-    const sum = new Float64Array(n);
-    const share = new Float64Array(n);
-    const joined = new Int32Array(n).fill(-1);
-    for (let k = n - 2; k >= 0; k--) {
-      const begin = upStart[k];
-      const end = upStart[k + 1];
-      for (let p = begin; p < end; p++) {
-        joined[up[p]] = k;
-        share[up[p]] = upShare[p];
-        sum[up[p]] = z[k] - leakShare[k] * x[up[p]];
-      }
-      for (let p = begin; p < end; p++) {
-        const l = up[p];
-        const toL = share[l];
-        for (let q = upStart[l]; q < upStart[l + 1]; q++) {
-          const j = up[q];
-          if (joined[j] !== k) continue;
-          sum[j] += toL * ahead[q];
-          sum[l] -= share[j] * ahead[q];
-        }
-      }
-      for (let p = begin; p < end; p++) ahead[p] = sum[up[p]];
-    }
-    const result = new Float64Array(system.rate.length);
-    for (let i = 0; i < n; i++)
-      for (let p = system.rowStart[i]; p < system.rowStart[i + 1]; p++) {
-        const a = place[i];
-        const b = place[system.toState[p]];
-        result[p] = a < b ? -ahead[this.positionOf(a, b)] : ahead[this.positionOf(b, a)];
-      }
-    return result;
-  }
-
-  private positionOf(earlier: number, later: number): number {
-    let low = this.upStart[earlier];
-    let high = this.upStart[earlier + 1] - 1;
-    while (low < high) {
-      const middle = (low + high) >> 1;
-      if (this.up[middle] < later) low = middle + 1;
-      else high = middle;
-    }
-    return low;
+    return this.byState(x);
   }
 
   solveTransposed(w: Float64Array): Float64Array {
