@@ -57,7 +57,13 @@ export type Taking = "n" | "t" | "l" | "v" | "e";
  * A function of single values; given a table it works entry by entry. `takings` has a letter for each parameter, the
  * last standing for all that follow. A parameter left out reaches `run` as undefined.
  */
-export function defineLifted(name: string, signature: string, takings: string, description: string, run: (values: readonly never[], evaluation: Evaluation) => unknown): Definition {
+export function defineLifted<Taken extends readonly unknown[]>(
+  name: string,
+  signature: string,
+  takings: string,
+  description: string,
+  run: (values: Taken, evaluation: Evaluation) => unknown,
+): Definition {
   return define(name, signature, description, (values, evaluation) => {
     const contents = values.map((value) => evaluation.read(value));
     return lift(contents, (...scalars) => {
@@ -67,7 +73,7 @@ export function defineLifted(name: string, signature: string, takings: string, d
         if (value instanceof Fault && !(scalar instanceof Fault && takings[index] === "e")) return value;
         taken.push(value);
       }
-      return fromLibrary(run(taken as never[], evaluation));
+      return fromLibrary(run(taken as unknown as Taken, evaluation));
     });
   });
 }
