@@ -1,0 +1,161 @@
+/** The practice workbook as the pane sees it. */
+import type { Fact, HostValue, RangeAddress, RangeReading, SheetInfo, Workbook, WorkbookEvent, Write } from "../../pane/workbook";
+import { COLUMN_LIMIT, ROW_LIMIT, toCanonical, type Area, type Book, type CellView, type Edit } from "./engine";
+
+/** What the adapter needs of the page: the selection, and the open edit taken into its cell before anything is read or written. */
+export interface PageView {
+  readonly selection: Area;
+  settle(): void;
+  select(area: Area): void;
+  onSelection(listener: () => void): () => void;
+  /** Why nothing can be changed, or null. */
+  readonly readOnly: string | null;
+}
+
+export class PracticeWorkbook implements Workbook {
+  readonly host = "practice";
+
+  constructor(private readonly book: Book, private readonly page: PageView) {}
+
+  async sheets(): Promise<readonly SheetInfo[]> {
+    return this.book.sheets().map((sheet) => ({
+      name: sheet.name,
+      hidden: sheet.hidden,
+      used: sheet.used && this.address(sheet.used),
+    }));
+  }
+
+  async selection(): Promise<RangeAddress> {
+    return this.address(this.page.selection);
+  }
+
+  async read(range: RangeAddress): Promise<RangeReading> {
+    await this.book.whenIdle();
+    const area = this.area(range);
+    const cells = this.views(area);
+    return {
+      address: range,
+      values: cells.map((row) => row.map((cell) => cell.value)),
+      formulas: cells.map((row) => row.map((cell) => this.content(cell))),
+      formats: cells.map((row) => row.map((cell) => cell.format)),
+      texts: cells.map((row) => row.map((cell) => cell.text)),
+      facts: {
+        hiddenRows: this.book.hiddenRows(area.sheet).filter((row) => row >= area.row && row < area.row + area.rows),
+        hiddenColumns: this.book.hiddenColumns(area.sheet).filter((column) => column >= area.column && column < area.column + area.columns),
+        merged: this.book
+          .merged(area.sheet)
+          .filter((merged) => meets(merged, area))
+          .map((merged) => this.address(merged)),
+        neighbours: this.neighbours(area),
+        calculation: "automatic",
+      },
+    };
+  }
+
+  /** What stands in a cell, spelled so that every host spells it alike; nothing where another cell's result stands. */
+  private content(cell: CellView): string {
+    if (cell.anchor !== null) return "";
+    return cell.input.startsWith("=") ? toCanonical(cell.input, this.book.locale) : String(cell.value);
+  }
+
+  private views(area: Area): CellView[][] {
+    return Array.from({ length: area.rows }, (_, r) => Array.from({ length: area.columns }, (__, c) => this.book.view(area.sheet, area.row + r, area.column + c)));
+  }
+
+  async scan(range: RangeAddress): Promise<Pick<RangeReading, "address" | "values" | "formulas">> {
+    await this.book.whenIdle();
+    const cells = this.views(this.area(range));
+    return {
+      address: range,
+      values: cells.map((row) => row.map((cell) => cell.value)),
+      formulas: cells.map((row) => row.map((cell) => this.content(cell))),
+    };
+  }
+
+  private neighbours(area: Area): Fact<{ above: HostValue[]; below: HostValue[]; left: HostValue[]; right: HostValue[] }> {
+    const value = (row: number, column: number): HostValue => (row < 0 || column < 0 || row >= ROW_LIMIT || column >= COLUMN_LIMIT ? "" : this.book.view(area.sheet, row, column).value);
+    const across = (row: number): HostValue[] => Array.from({ length: area.columns }, (_, c) => value(row, area.column + c));
+    const down = (column: number): HostValue[] => Array.from({ length: area.rows }, (_, r) => value(area.row + r, column));
+    return { above: across(area.row - 1), below: across(area.row + area.rows), left: down(area.column - 1), right: down(area.column + area.columns) };
+  }
+
+  async write(batch: readonly Write[], label: string): Promise<void> {
+    this.change(
+      batch.flatMap((write) => this.edits(this.sheetId(write.sheet), write)),
+      label,
+    );
+    await this.book.whenIdle();
+  }
+
+  async addSheet(name: string, cells: Write["cells"], formats?: Write["formats"]): Promise<string> {
+    const free = this.book.freeName(name);
+    const id = crypto.randomUUID();
+    this.change([{ kind: "addSheet", id, name: free }, ...this.edits(id, { row: 0, column: 0, cells, formats })], `sheet ${free}`);
+    await this.book.whenIdle();
+    return free;
+  }
+
+  private change(edits: readonly Edit[], label: string): void {
+    this.page.settle();
+    if (this.page.readOnly !== null) throw new Error(this.page.readOnly);
+    this.book.apply([...edits], label);
+  }
+
+  private edits(sheet: string, write: Pick<Write, "row" | "column" | "cells" | "formats">): Edit[] {
+    const edits: Edit[] = [];
+    write.cells.forEach((line, r) =>
+      line.forEach((value, c) => {
+        const row = write.row + r;
+        const column = write.column + c;
+        const format = write.formats?.[r]?.[c];
+        if (value !== undefined) edits.push({ kind: "put", sheet, row, column, value, ...(format === undefined ? {} : { format }) });
+        else if (format !== undefined) edits.push({ kind: "format", area: { sheet, row, column, rows: 1, columns: 1 }, format });
+      }),
+    );
+    return edits;
+  }
+
+  async select(range: RangeAddress): Promise<void> {
+    const area = this.area(range);
+    if (this.book.sheets().some((sheet) => sheet.id === area.sheet && sheet.hidden)) throw new Error(`Sheet ${range.sheet} is hidden. Show it first.`);
+    this.page.select(area);
+  }
+
+  async undo(): Promise<void> {
+    this.page.settle();
+    if (this.page.readOnly !== null) throw new Error(this.page.readOnly);
+    this.book.undo();
+    await this.book.whenIdle();
+  }
+
+  on(event: WorkbookEvent, listener: () => void): () => void {
+    return event === "selection" ? this.page.onSelection(listener) : this.book.on(event, listener);
+  }
+
+  readonly store = {
+    get: async (key: string): Promise<unknown> => this.book.store.get(key),
+    set: async (key: string, value: unknown): Promise<void> => {
+      if (this.page.readOnly !== null) throw new Error(this.page.readOnly);
+      this.book.store.set(key, value);
+    },
+  };
+
+  private sheetId(name: string): string {
+    const sheet = this.book.sheetNamed(name);
+    if (!sheet) throw new Error(`There is no sheet named ${name}.`);
+    return sheet.id;
+  }
+
+  private area(range: RangeAddress): Area {
+    return { sheet: this.sheetId(range.sheet), row: range.row, column: range.column, rows: range.rows, columns: range.columns };
+  }
+
+  private address(area: Area): RangeAddress {
+    const sheet = this.book.sheets().find((entry) => entry.id === area.sheet)?.name ?? "";
+    return { sheet, row: area.row, column: area.column, rows: area.rows, columns: area.columns };
+  }
+}
+
+function meets(a: Area, b: Area): boolean {
+  return a.row < b.row + b.rows && b.row < a.row + a.rows && a.column < b.column + b.columns && b.column < a.column + a.columns;
+}
