@@ -205,22 +205,21 @@ describe("the practice workbook's sheet", () => {
   });
 
   it("keeps any garbage as it was typed and never breaks", async () => {
-    const garbage = ["=", "=(", "=SUM(", "=A1:", "='x", '="', "={1,2;3}", "=1/0", "=#REF!", "=A5#", "=LET(x,", "=CTMC.", "=CTMC.TRANSITION(", "=" + "(".repeat(300), "@", "'=1", "1e999", "-", "--1", "50%%", "\u00a0", "=ZZZZ99999999", "=Nowhere!A1", "=M1"];
+    const { page } = sheet;
+    const garbage = ["=", "=(", "=SUM(", "=A1:", "='x", '="', "={1,2;3}", "=1/0", "=#REF!", "=A5#", "=LET(x,", "=CTMC.", "=CTMC.TRANSITION(", `=${"(".repeat(300)}`, "@", "1e999", "-", "--1", "50%%", "=ZZZZ99999999", "=Nowhere!A1", "=M23", "a\tb"];
     for (const [i, text] of garbage.entries()) {
       const address = `M${i + 1}`;
       await sheet.go(address);
-      await sheet.page.keyboard.insertText("");
-      await sheet.page.keyboard.press("F2");
-      await sheet.page.keyboard.insertText(text);
-      await sheet.page.keyboard.press("Escape"); // closes names, if any are offered
-      if ((await sheet.page.locator(".field.in-cell").isVisible()) === false) {
-        await sheet.page.keyboard.press("F2");
-        await sheet.page.keyboard.insertText(text);
+      await page.keyboard.press("F2");
+      await page.keyboard.insertText(text);
+      await page.locator(".field.in-cell textarea").press("Escape"); // closes the names, if any are offered
+      if (!(await page.locator(".field.in-cell").isVisible())) {
+        await page.keyboard.press("F2");
+        await page.keyboard.insertText(text);
       }
-      await sheet.page.keyboard.press("Enter");
+      await page.keyboard.press("Enter");
       await sheet.go(address);
-      const kept = await sheet.formula();
-      expect([text, text.trim()].some((entry) => kept === entry || kept.startsWith(entry.slice(0, 3)) || kept !== ""), `${text} became ${kept}`).toBe(true);
+      expect(await sheet.formula(), address).toBe(text);
     }
     expect(opened.errors).toEqual([]);
   });

@@ -162,6 +162,11 @@ export class Book {
     return this.byId.get(sheetId)?.properties.widths.get(column) ?? DEFAULT_WIDTH;
   }
 
+  /** Widths of the columns that differ from the default. */
+  widths(sheetId: string): ReadonlyMap<number, number> {
+    return this.byId.get(sheetId)?.properties.widths ?? new Map<number, number>();
+  }
+
   hiddenRow(sheetId: string, row: number): boolean {
     return this.byId.get(sheetId)?.properties.hiddenRows.has(row) ?? false;
   }

@@ -49,6 +49,7 @@ export class Editor {
     session.settle = () => void this.commit();
     session.on("selection", () => this.showActive());
     session.on("readonly", () => this.showActive());
+    session.on("sheet", () => this.lookElsewhere());
     session.book.on("change", () => this.showActive());
     grid.onDraw(() => this.place());
     this.inCell.element.hidden = true;
@@ -142,6 +143,19 @@ export class Editor {
     if (this.session.sheet !== edit.sheet) this.session.show(edit.sheet);
     this.showActive();
     if (focused) this.grid.element.focus({ preventScroll: true });
+  }
+
+  /** Another sheet is shown while a formula waits for a range: typing goes on in the formula line. */
+  private lookElsewhere(): void {
+    const { edit } = this;
+    if (!edit) return;
+    if (edit.sheet !== this.session.sheet && edit.origin !== this.bar) {
+      const { caret } = edit.origin;
+      edit.origin = this.bar;
+      this.bar.input.setSelectionRange(caret, caret);
+    }
+    edit.origin.input.focus({ preventScroll: true });
+    this.draw(edit.origin.caret);
   }
 
   /** Writes a range into the formula, over the one pointed at before. */

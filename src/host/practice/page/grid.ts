@@ -167,10 +167,11 @@ export class Grid {
     const lastColumn = Math.max(used.columns, cell.column, session.columns.at(element.scrollLeft + element.clientWidth)) + ROOM / 4;
     const height = Math.min(TALLEST, HEADS + session.rows.start(Math.min(ROW_LIMIT, lastRow)));
     const width = GUTTER + session.columns.start(Math.min(COLUMN_LIMIT, lastColumn));
-    // It grows while one scrolls and shrinks only with a new sheet, so that the view never jumps.
-    if (height > this.height) {
+    // It grows while one scrolls and shrinks with a new sheet only, so that the view never jumps; but where drawn and
+    // scrolled positions differ, it also shrinks as soon as they need not.
+    if (height > this.height || (this.height === TALLEST && height < TALLEST / 2)) {
       const top = session.rows.at(element.scrollTop + this.shift);
-      const shifts = height === TALLEST;
+      const shifts = height === TALLEST || this.height === TALLEST;
       this.sizer.style.height = `${(this.height = height)}px`;
       if (shifts) this.scrollRows(top, 0);
     }

@@ -38,6 +38,14 @@ export function listenToKeys(session: Session, grid: Grid, editor: Editor, comma
     if (act(event)) event.preventDefault();
   });
 
+  // Undo and redo also from the words and lists around the sheet; fields have their own.
+  document.addEventListener("keydown", (event) => {
+    const { target } = event;
+    if (event.defaultPrevented || target === grid.element || target instanceof HTMLInputElement || target instanceof HTMLTextAreaElement) return;
+    if (!(event.ctrlKey || event.metaKey) || !["z", "y"].includes(event.key.toLowerCase())) return;
+    if (act(event)) event.preventDefault();
+  });
+
   const go = (cell: Cell, extend: boolean): true => {
     session.select(extend ? extendTo(session.selection, cell) : moveTo(cell));
     grid.reveal(cell);

@@ -150,12 +150,18 @@ export function blockAround(ground: Ground, cell: Cell): Area {
     for (let row = Math.max(0, top - 1); row <= bottom + 1; row += 1) if (ground.filled(row, column)) return true;
     return false;
   };
-  for (let grown = true; grown; ) {
+  let grown = true;
+  const grow = (met: boolean, outward: () => void): void => {
+    if (!met) return;
+    outward();
+    grown = true;
+  };
+  while (grown) {
     grown = false;
-    if (rowFilled(top - 1)) (top -= 1), (grown = true);
-    if (rowFilled(bottom + 1)) (bottom += 1), (grown = true);
-    if (columnFilled(left - 1)) (left -= 1), (grown = true);
-    if (columnFilled(right + 1)) (right += 1), (grown = true);
+    grow(rowFilled(top - 1), () => (top -= 1));
+    grow(rowFilled(bottom + 1), () => (bottom += 1));
+    grow(columnFilled(left - 1), () => (left -= 1));
+    grow(columnFilled(right + 1), () => (right += 1));
   }
   return { row: top, column: left, rows: bottom - top + 1, columns: right - left + 1 };
 }
