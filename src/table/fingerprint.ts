@@ -22,11 +22,12 @@ export function fingerprint(table: Pick<RateTable, "generator" | "names">): stri
   return signs(murmur3(bytes, 0x53746179)) + signs(murmur3(bytes, 0x72617465));
 }
 
-/** Size, names (a count of 0 for none), then from, to, rate of each arrow by row; integers and doubles little-endian. */
+/**
+ * Size, names (a count of 0 for none) in UTF-16 code units, then from, to, rate of each arrow by row; all little-endian.
+ */
 function canonicalBytes({ generator, names }: Pick<RateTable, "generator" | "names">): Uint8Array {
-  const text = new TextEncoder();
-  const encoded = (names ?? []).map((name) => text.encode(name));
-  const length = 8 + encoded.reduce((sum, name) => sum + 4 + name.length, 0) + 16 * generator.arrowCount;
+  const texts = names ?? [];
+  const length = 8 + texts.reduce((sum, name) => sum + 4 + 2 * name.length, 0) + 16 * generator.arrowCount;
   const view = new DataView(new ArrayBuffer(length));
   let at = 0;
   const whole = (value: number): void => {
@@ -34,10 +35,10 @@ function canonicalBytes({ generator, names }: Pick<RateTable, "generator" | "nam
     at += 4;
   };
   whole(generator.size);
-  whole(encoded.length);
-  for (const name of encoded) {
+  whole(texts.length);
+  for (const name of texts) {
     whole(name.length);
-    for (const byte of name) view.setUint8(at++, byte);
+    for (let i = 0; i < name.length; i++, at += 2) view.setUint16(at, name.charCodeAt(i), true);
   }
   for (const [from, to, rate] of generator.arrows()) {
     whole(from);
