@@ -1,23 +1,38 @@
 import { Problem } from "../chain/problem";
 import { read } from "../table/read";
 import type { Cells, Layout, Reading } from "../table/rate-table";
-import { contextOf, type AuditOptions, type Rule } from "./context";
+import { contextOf, type AuditOptions, type Rule, type SheetRule } from "./context";
 import { findingsFrom } from "./from-problem";
+import type { SheetFacts } from "./facts";
 import type { Finding, Severity, Span, Whereabouts } from "./finding";
 import { recognise, type Aside, type Recognised } from "./recognise";
+import { blanks } from "./rules/blanks";
+import { manualCalculation, pastedConstants } from "./rules/calculation";
 import { closedClasses } from "./rules/closed-classes";
 import { columnsSum } from "./rules/columns-sum";
+import { commonCause } from "./rules/common-cause";
+import { competingExits } from "./rules/competing-exits";
+import { cycleLength } from "./rules/cycle-length";
 import { diagonalBlank } from "./rules/diagonal-blank";
+import { hidden } from "./rules/hidden";
+import { horizon } from "./rules/horizon";
 import { largestArrow } from "./rules/largest-arrow";
 import { layoutAsides } from "./rules/layout-asides";
+import { longRun } from "./rules/long-run";
 import { meanTimes } from "./rules/mean-times";
+import { merged } from "./rules/merged";
 import { noExit } from "./rules/no-exit";
 import { noTarget } from "./rules/no-target";
 import { percent } from "./rules/percent";
 import { probabilityLabel } from "./rules/probability-label";
 import { probabilityTable } from "./rules/probability-table";
+import { labelAlone, rangeShort } from "./rules/range-short";
+import { repairPattern } from "./rules/repair-pattern";
+import { stepFormulas } from "./rules/step-formulas";
 import { totalsSelected } from "./rules/totals";
+import { units } from "./rules/units";
 import { unreachable } from "./rules/unreachable";
+import { zeroEvents } from "./rules/zero-events";
 import { meansTotal } from "./words";
 
 export type { AuditOptions, AskedQuestion, OtherTable } from "./context";
@@ -27,15 +42,28 @@ const RULES: readonly Rule[] = [
   columnsSum,
   probabilityTable,
   percent,
+  competingExits,
+  stepFormulas,
+  cycleLength,
   closedClasses,
   noTarget,
   meanTimes,
   probabilityLabel,
+  units,
+  horizon,
   unreachable,
   noExit,
+  repairPattern,
+  pastedConstants,
   diagonalBlank,
+  blanks,
+  commonCause,
+  longRun,
+  zeroEvents,
   largestArrow,
 ];
+
+const SHEET_RULES: readonly SheetRule[] = [merged, rangeShort, hidden, manualCalculation];
 
 const RANK: Readonly<Record<Severity, number>> = { stop: 0, warning: 1, note: 2 };
 
@@ -63,6 +91,11 @@ export function auditReading(cells: Cells, reading: Reading, options: AuditOptio
     : reading.layout
       ? rulesOn(cells, reading, reading.layout, options)
       : [];
+  if (options.facts) {
+    const facts = options.facts;
+    found.push(...SHEET_RULES.flatMap((rule) => rule({ cells, layout: reading.layout, facts })).map((finding) => placed(finding, null)));
+  }
+  if (!reading.layout && !(inner && inner.asides.length > 0) && !found.some((finding) => finding.code === "rangeShort")) found.push(...labelAlone(cells).map((finding) => placed(finding, null)));
   const order = (finding: Finding): number => RANK[finding.severity] + (finding.asks ? 0.5 : 0);
   return [...refusals, ...found.sort((a, b) => order(a) - order(b))];
 }
@@ -88,13 +121,19 @@ function insideOf(cells: Cells, inner: Recognised, options: AuditOptions, refusa
     aside.line === "row" ? { row: aside.index, column: 0, rows: 1, columns: width } : { row: 0, column: aside.index, rows: cells.length, columns: 1 };
   const about = [...totalsSelected(inner, spanOf), ...layoutAsides(inner, spanOf)].map((finding) => placed(finding, null));
   if (inner.amount === "counts" || !inner.reading.layout) return about;
-  const facts = undefined; // facts are about the given range; after narrowing they are about the table
+  const facts = options.facts && innerFacts(options.facts, inner);
   const aside = inner.asides.flatMap(({ label, texts, role }) => (role === "total" ? [] : [label, ...texts]));
   const own = [
     ...findingsFrom(inner.reading.problems).map((finding) => placed(finding, inner.reading.layout)),
     ...rulesOn(inner.cells, inner.reading, inner.reading.layout, { ...options, facts }, aside),
   ].filter((finding) => !refusals.some((refusal) => refusal.code === finding.code));
   return [...about, ...own.map((finding) => outward(finding, inner))];
+}
+
+/** Of the sheet's facts, those about single cells; the sheet rules judge the given range as a whole. */
+function innerFacts(facts: SheetFacts, { rows, columns }: Recognised): SheetFacts {
+  const pick = (lines: SheetFacts["texts"]): SheetFacts["texts"] => lines && rows.map((row) => columns.map((column) => lines[row]?.[column] ?? ""));
+  return { texts: pick(facts.texts), formulas: pick(facts.formulas), formats: pick(facts.formats), neighbours: facts.neighbours };
 }
 
 function outward(finding: Finding, { rows, columns }: Recognised): Finding {

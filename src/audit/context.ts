@@ -56,6 +56,9 @@ export interface Context {
 /** A rule looks at one kind of mistake and reports it once, with every place. */
 export type Rule = (context: Context) => readonly Finding[];
 
+/** A rule about the sheet around and under the numbers, which needs no table that can be read. */
+export type SheetRule = (input: { readonly cells: Cells; readonly layout: Layout | null; readonly facts: SheetFacts }) => readonly Finding[];
+
 export function contextOf(cells: Cells, reading: Reading, layout: Layout, options: AuditOptions, aside: readonly string[] = []): Context {
   const body = readBody(cells, layout);
   return {

@@ -3,7 +3,7 @@ import { read } from "../table/read";
 import type { Cells, CellValue, Reading } from "../table/rate-table";
 import { textOf } from "./body";
 import type { Span } from "./finding";
-import { meansCount, meansExposure, meansFrom, meansMeanTime, meansNote, meansProbability, meansRate, meansTo, meansTotal, timeUnits } from "./words";
+import { meansCount, meansExposure, meansFrom, meansMeanTime, meansNote, meansProbability, meansRate, meansTo, meansTotal, saysRate, timeUnits } from "./words";
 
 /** A line of the range that is not part of the rates. */
 export interface Aside {
@@ -175,11 +175,11 @@ function recogniseList(cells: Cells): Recognised | null {
   if (!headed && (!shareNames(cells, rows, fromColumn, toColumn) || width === 3)) return null;
   const numeric = range(width).filter((column) => column !== fromColumn && column !== toColumn && isNumeric(cells, rows, column));
   const by = (test: (text: string) => boolean): number | undefined => numeric.find((column) => headed && test(head[column]));
-  const rate = by((text) => meansRate(text) && !meansNote(text.replace(/rate|per .*/giu, "")));
+  const rate = by((text) => meansRate(text) && !(meansProbability(text) && !saysRate(text)) && !meansNote(text.replace(/rate|per .*/giu, "")));
   const mean = by((text) => meansMeanTime(text) && !meansRate(text));
   const count = by(meansCount);
   const exposure = by(meansExposure);
-  const probability = by((text) => meansProbability(text) && !meansRate(text));
+  const probability = by((text) => meansProbability(text) && !saysRate(text));
   const [amountColumn, amount]: [number | undefined, Recognised["amount"]] =
     rate !== undefined ? [rate, "rates"]
     : mean !== undefined ? [mean, "meanTimes"]

@@ -43,8 +43,14 @@ export function meansMeanTime(text: string): boolean {
   return MEAN_TIME.test(text);
 }
 
+/** Says "rate" outright. "Probability per year" does not. */
+export function saysRate(text: string): boolean {
+  return /(\brates?\b|\bintensit(y|ies)\b|λ|μ|\bgenerator\b|\bhazard\b|\bfits?\b)/iu.test(text);
+}
+
+/** Says "rate", or names a unit that only rates have: "per h", "1/MTBF". */
 export function meansRate(text: string): boolean {
-  return /(\brates?\b|\bintensit(y|ies)\b|\bper (second|minute|hour|day|week|month|quarter|year|h|d|yr|annum)\b|λ|μ|\bgenerator\b|\bhazard\b|\bfits?\b)/iu.test(text);
+  return saysRate(text) || /\bper (second|minute|hour|day|week|month|quarter|year|h|d|yr|annum)\b|\b1\s*\//iu.test(text);
 }
 
 export function meansCount(text: string): boolean {

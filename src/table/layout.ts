@@ -123,7 +123,7 @@ function isHeadingLine(length: number, cell: (k: number) => CellValue): { headin
     if (isVoid(value) || isFault(value)) continue;
     if (!isText(value)) return { headings: false, names };
     names++;
-    if (numberInText(value) === null) words++;
+    if (numberInText(value) === null && !isDiagonalMark(value)) words++;
   }
   return { headings: words > 0, names };
 }

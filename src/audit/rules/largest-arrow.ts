@@ -1,5 +1,5 @@
 import { entrySpan, stateName, type Context, type Rule } from "../context";
-import { plainWords, meansMeanTime, meansProbability, meansRate } from "../words";
+import { plainWords, meansMeanTime, meansProbability, meansRate, saysRate } from "../words";
 import { stationaryShares } from "../../chain/stationary";
 import { communicatingClasses } from "../../chain/classes";
 
@@ -12,7 +12,7 @@ export const largestArrow: Rule = (context) => {
   const { answers } = options;
   if (answers === undefined || answers.largestArrow !== undefined || kind !== "rates" || !reading.table || chain.arrowCount === 0) return [];
   const doubts = doubtsAbout(context);
-  if (doubts.length === 0 || captions.some((text) => !meansRate(text) && (meansMeanTime(text) || meansProbability(text)))) return [];
+  if (doubts.length === 0 || captions.some((text) => (meansMeanTime(text) && !meansRate(text)) || (meansProbability(text) && !saysRate(text)))) return [];
   let [from, to, rate] = [0, 0, 0];
   for (const arrow of chain.arrows()) if (arrow[2] > rate) [from, to, rate] = arrow;
   return [
@@ -45,7 +45,7 @@ function doubtsAbout({ body, layout, captions, chain }: Context): Doubt[] {
   if (given) return doubts; // a diagonal that agrees with the rows settles all three
   const ordered = layout.form === "list" || captions.some((text) => /\bfrom\b.*\bto\b/u.test(plainWords(text)));
   if (!ordered && !symmetric(body.values, body.size)) doubts.push("orientation");
-  if (captions.some(meansRate)) return doubts;
+  if (captions.some((text) => meansRate(text) && !meansProbability(text))) return doubts;
   if (doubts.length > 0) doubts.push("amount");
   if (communicatingClasses(chain).classes.length === 1 && body.size > 1 && stationaryShares(chain)[0] < 0.5 && body.exits[0] > 1) doubts.push("meanTime");
   return doubts;

@@ -1,5 +1,5 @@
 import { bodySpan, type Rule } from "../context";
-import { meansProbability, meansRate } from "../words";
+import { meansProbability, saysRate } from "../words";
 
 /**
  * Single probabilities typed as rates (mistake 7): a label beside the table speaks of probability, risk or percent, and all
@@ -9,7 +9,7 @@ export const probabilityLabel: Rule = (context) => {
   const { kind, body, captions, options } = context;
   if (kind !== "rates") return [];
   const answered = options.answers?.largestArrow === "probability";
-  const label = captions.find((text) => meansProbability(text) && !meansRate(text));
+  const label = captions.find((text) => meansProbability(text) && !saysRate(text));
   if (!answered && (label === undefined || !body.values.every((value, at) => at % (body.size + 1) === 0 || Number.isNaN(value) || (value >= 0 && value <= 1)))) return [];
   const largest = Math.max(...body.exits);
   return [

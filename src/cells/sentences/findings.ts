@@ -214,6 +214,100 @@ const WORDS: Readonly<Record<string, Words>> = {
     finding: (f) => (f.has("all") ? "The diagonal is blank: it is worked out as minus the exits." : `The diagonal is blank in ${plural(f.number("rows"), "row")}: it is worked out as minus the exits.`),
     remedy: () => "Nothing to do; it can be filled in for readers.",
   },
+  competingExits: {
+    finding: (f) => `The exits of ${f.text("name")} sum to ${f.figure("sum")}, above 1: each was made a probability by itself.`,
+    remedy: () => "Exits compete: enter the rates, and take probabilities from =CTMC.TRANSITION(rates, period).",
+  },
+  competingFormulas: {
+    finding: (f) => `${f.number("cells")} exits of ${f.text("name")} are each 1−EXP(−…): exits that compete take from each other.`,
+    remedy: () => "Enter the rates, and take probabilities from =CTMC.TRANSITION(rates, period).",
+  },
+  exponentialCells: {
+    finding: () => "EXP is taken cell by cell: that gives no transition probabilities.",
+    remedy: () => "Take them from =CTMC.TRANSITION(rates, time), which works on the table as a whole.",
+  },
+  linearSteps: {
+    finding: () => "Rows sum to 1 but the diagonal goes below 0: I + Q·t is no table of probabilities.",
+    remedy: () => "Take probabilities from =CTMC.TRANSITION(rates, time).",
+  },
+  outsideUnit: {
+    finding: (f) => `${f.text("fromName")} → ${f.text("toName")} is ${f.figure("value")}: no probability is below 0 or above 1.`,
+    remedy: () => "Take probabilities from =CTMC.TRANSITION(rates, time).",
+  },
+  cycleLength: {
+    finding: (f) =>
+      f.text("way") === "divided"
+        ? `These are the probabilities at ${f.text("where")} divided by ${f.number("cycles")}; ${f.number("cycles")} such cycles miss them by ${f.figure("gap")}.`
+        : `These are roots of the entries at ${f.text("where")}; ${f.number("cycles")} such cycles miss them by ${f.figure("gap")}.`,
+    remedy: (f) => `Convert the long table: =CTMC.TRANSITION(CTMC.FROMPROBABILITY(table, ${f.number("cycles")}), 1).`,
+  },
+  unitsDiffer: {
+    finding: (f) => `Labels name more than one time unit: ${f.names("units")}.`,
+    remedy: () => "Bring all rates to one unit; convert MTBF or MTTR before taking one over it.",
+  },
+  rateSpread: {
+    finding: (f) =>
+      f.has("factor")
+        ? `${f.text("fast")} is left ${f.figure("ratio")} times as fast as ${f.text("slow")}: near ${f.figure("factor")}, the ${f.text("words")}.`
+        : `${f.text("fast")} is left ${f.figure("ratio")} times as fast as ${f.text("slow")}.`,
+    remedy: () => "Right if all rates are per the same unit, such as yearly failures beside repairs in hours.",
+  },
+  horizonUnit: {
+    finding: (f) => `${f.text("where")} asks at time ${f.figure("time")}: ${f.number("jumps") < 1 ? "hardly one jump in a thousand cases" : "over a million jumps"} by then.`,
+    remedy: () => "Check that the time is in the unit of the rates.",
+  },
+  failuresIgnoreUnits: {
+    finding: (f) => `Failures come at ${f.figure("rate")} however many units still run.`,
+    remedy: (f) => `Right if one unit runs at a time; with n running it is n times the rate${f.has("labelled") ? "" : ", if states count units down"}.`,
+  },
+  crewsUnlimited: {
+    finding: (f) => `Repairs run at ${f.figure("rate")} times the units down, up to ${f.number("most")}: as many crews as units down.`,
+    remedy: () => "With fewer crews the rate stops growing: see CTMC.REPAIRGROUP.",
+  },
+  repairMendsSeveral: {
+    finding: (f) => `${f.text("fromName")} → ${f.text("toName")}: one repair mends several units at once.`,
+    remedy: () => "If units are repaired one by one, the arrow leads to one unit fewer down.",
+  },
+  commonCause: {
+    finding: (f) => `No arrow leads from ${f.text("upName")} to ${f.text("downName")}: no shared cause is assumed.`,
+    remedy: () => "State that assumption, or enter the rate of the shared cause. Repair is taken as memoryless.",
+  },
+  longRunNotReached: {
+    finding: (f) => `At time ${f.figure("time")} the share of ${f.text("name")} is ${f.figure("then")}, in the long run ${f.figure("last")}.`,
+    remedy: (f) => `${f.text("where")} gives long-run figures; for that date use a formula with the time.`,
+  },
+  zeroEvents: {
+    finding: (f) => `${f.text("fromName")} → ${f.text("toName")} is listed with rate 0${f.number("arrows") > 1 ? `, and ${f.number("arrows") - 1} more` : ""}.`,
+    remedy: () => "No event seen is not a rate of 0: =CTMC.RATEINTERVAL(0, exposure) gives its upper bound.",
+  },
+  blanksAmongZeros: {
+    finding: (f) => `${plural(f.number("blanks"), "blank cell")} beside ${plural(f.number("said"), "typed zero or dash", "typed zeros or dashes")}: no arrow, or not known?`,
+    remedy: () => "Blank counts as no arrow. Type 0 where that is meant.",
+  },
+  hiddenLines: {
+    finding: (f) => `${listed([f.number("rows") > 0 ? plural(f.number("rows"), "row") : "", f.number("columns") > 0 ? plural(f.number("columns"), "column") : ""].filter(Boolean))} of the range ${f.number("rows") + f.number("columns") === 1 ? "is" : "are"} hidden or filtered out, and read all the same.`,
+    remedy: () => "Show them, or leave them out of the table.",
+  },
+  mergedCells: {
+    finding: (f) => `${plural(f.number("areas"), "merged area")} among the rates: all but the first cell of each reads as blank.`,
+    remedy: () => "Unmerge, and enter each rate in its own cell.",
+  },
+  manualCalculation: {
+    finding: () => "The workbook calculates by hand only: figures may be older than the rates.",
+    remedy: () => "Recalculate, or set calculation to automatic.",
+  },
+  pastedConstants: {
+    finding: (f) => `${plural(f.number("constants"), "plain number")} among ${f.number("formulas")} rates that are formulas.`,
+    remedy: () => "If it was pasted over a formula, it no longer follows: enter the formula again.",
+  },
+  rangeShort: {
+    finding: (f) => `The table goes on outside the range${f.text("name") ? `: ${f.text("name")} is missing` : ""}.`,
+    remedy: (f) => `Widen the range by ${listed([f.number("rows") > 0 ? "one row" : "", f.number("columns") > 0 ? "one column" : ""].filter(Boolean))}.`,
+  },
+  labelAlone: {
+    finding: (f) => `${f.text("name")} has a ${f.text("side")} and no ${f.text("side") === "row" ? "column" : "row"}.`,
+    remedy: () => "Select the whole table, or add the missing line.",
+  },
   largestArrow: {
     finding: (f) => `Largest arrow: ${f.text("fromName")} → ${f.text("toName")} at ${f.figure("rate")} per time unit.`,
     remedy: () => "Say whether it is meant so.",

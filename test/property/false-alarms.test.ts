@@ -1,0 +1,52 @@
+import { expect, it } from "vitest";
+import { audit } from "../../src/audit/audit";
+import { findTables } from "../../src/audit/tables-in-sheet";
+import type { CellValue } from "../../src/table/rate-table";
+import { read } from "../../src/table/read";
+import { cleanTables } from "./clean-tables";
+
+const TABLES = 1000;
+
+it(`${TABLES} clean tables raise no stop and no warning`, () => {
+  const alarms: string[] = [];
+  const notes = new Map<string, number>();
+  const kinds = new Map<string, number>();
+  for (const table of cleanTables(TABLES, 20311)) {
+    expect(read(table.cells).problems.map((problem) => problem.code), `${table.kind}, ${table.layout}: ${JSON.stringify(table.cells)}`).toEqual([]);
+    kinds.set(table.kind, (kinds.get(table.kind) ?? 0) + 1);
+    for (const options of [{}, { answers: {}, facts: { calculation: "automatic" as const, neighbours: { above: [], below: [], left: [], right: [] } } }])
+      for (const finding of audit(table.cells, options)) {
+        if (finding.severity === "note") notes.set(finding.code, (notes.get(finding.code) ?? 0) + 1);
+        else alarms.push(`${table.kind}, ${table.layout}: ${finding.code} ${JSON.stringify(table.cells)}`);
+      }
+  }
+  console.log(
+    `False alarms on ${TABLES} clean tables, each audited without and with the sheet: ${alarms.length} (${((100 * alarms.length) / TABLES).toFixed(2)} %).\n` +
+      `Kinds: ${[...kinds].map(([kind, count]) => `${kind} ${count}`).join(", ")}.\nNotes, not counted: ${[...notes].map(([code, count]) => `${code} ${count}`).join(", ")}.`,
+  );
+  expect(alarms).toEqual([]);
+}, 60_000);
+
+it("the same tables are found in a sheet, with a title above, a blank line around and figures below", () => {
+  let missed = 0;
+  let tables = 0;
+  for (const table of cleanTables(400, 77)) {
+    if (table.layout === "top" || table.layout === "left") continue; // names on one side only: no surer than a budget
+    tables++;
+    const width = Math.max(...table.cells.map((row) => row.length));
+    const sheet: CellValue[][] = [
+      ["Rates of the line", null],
+      [],
+      ...table.cells.map((row) => [null, ...row]),
+      [],
+      [null, "Availability", 0.97],
+      [null, "Mean time to failure", 412],
+    ];
+    const filled = table.cells.filter((row) => row.some((value) => value !== null && value !== "")).length;
+    const found = findTables(sheet);
+    const exact = found.length === 1 && found[0].span.row === 2 && found[0].span.column === 1 && found[0].span.rows <= table.cells.length && found[0].span.rows >= filled - 1 && found[0].span.columns <= width;
+    if (!exact) missed++;
+  }
+  console.log(`Tables found in a sheet: ${tables - missed} of ${tables}.`);
+  expect(missed / tables).toBeLessThanOrEqual(0.01);
+}, 60_000);
