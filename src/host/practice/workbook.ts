@@ -55,7 +55,10 @@ export class PracticeWorkbook implements Workbook {
   /** What stands in a cell, spelled so that every host spells it alike; nothing where another cell's result stands. */
   private content(cell: CellView): string {
     if (cell.anchor !== null) return "";
-    return cell.input.startsWith("=") ? toCanonical(cell.input, this.book.locale) : String(cell.value);
+    if (cell.input.startsWith("=")) return toCanonical(cell.input, this.book.locale);
+    if (typeof cell.value === "boolean") return cell.value ? "TRUE" : "FALSE";
+    // Text that looks like a formula is typed behind an apostrophe.
+    return typeof cell.value === "string" && cell.value.startsWith("=") ? `'${cell.value}` : String(cell.value);
   }
 
   private views(area: Area): CellView[][] {
@@ -108,7 +111,10 @@ export class PracticeWorkbook implements Workbook {
         const row = write.row + r;
         const column = write.column + c;
         const format = write.formats?.[r]?.[c];
-        if (value !== undefined) edits.push({ kind: "put", sheet, row, column, value, ...(format === undefined ? {} : { format }) });
+        if (typeof value === "string" && value.startsWith("'")) {
+          edits.push({ kind: "type", sheet, row, column, text: value });
+          if (format !== undefined) edits.push({ kind: "format", area: { sheet, row, column, rows: 1, columns: 1 }, format });
+        } else if (value !== undefined) edits.push({ kind: "put", sheet, row, column, value, ...(format === undefined ? {} : { format }) });
         else if (format !== undefined) edits.push({ kind: "format", area: { sheet, row, column, rows: 1, columns: 1 }, format });
       }),
     );
@@ -147,6 +153,9 @@ export class PracticeWorkbook implements Workbook {
   }
 
   private area(range: RangeAddress): Area {
+    if (range.row < 0 || range.column < 0 || range.row + range.rows > ROW_LIMIT || range.column + range.columns > COLUMN_LIMIT) {
+      throw new Error(`${range.rows} × ${range.columns} cells do not fit there on the sheet ${range.sheet}.`);
+    }
     return { sheet: this.sheetId(range.sheet), row: range.row, column: range.column, rows: range.rows, columns: range.columns };
   }
 
