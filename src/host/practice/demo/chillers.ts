@@ -20,7 +20,7 @@ export const chillerRates: DemoSheet = {
       ["Overhaul", 0.07],
     ],
     A11: [["Degraded: fouled condenser, runs at reduced output. Waiting: down, no crew yet."]],
-    A13: [["Does the table hold together?"], ["=CTMC.CHECK(A4:F9)"]],
+    A13: [["Does the table hold together?"], ['=LET(found,CTMC.CHECK(A4:F9),INDEX(found,,1)&"  "&INDEX(found,,3))']],
   },
   bold: ["A1", "A4:F4", "A5:A9", "A13"],
   formats: { "B5:F9": "0.0000" },
@@ -61,24 +61,28 @@ export const plan: DemoSheet = {
   widths: { A: 118, B: 104, D: 96, H: 96, I: 112 },
 };
 
-/** Five planted mistakes, each of another kind; the tests name them. */
+/**
+ * Five planted mistakes, each of another kind: the diagonal of Running does not match its exits (B4), a rate is text with
+ * a decimal comma (D5), a rate is negative (E6), a column is headed "Repairs" and its row "Repair" (E3), and no arrow
+ * leads to Parked (row 8).
+ */
 export const fromColleague: DemoSheet = {
   name: "From a colleague",
   cells: {
     A1: [["Cooling tower fans, rates per day (from Oddvar, please look it over)"]],
     A3: [
-      ["from \\ to", "Running", "Vibrating", "Stopped", "Repair"],
+      ["from \\ to", "Running", "Vibrating", "Stopped", "Repairs", "Parked"],
       ["Running", -0.03, 0.02, 0.004],
       ["Vibrating", 0.1, null, "0,120"],
       ["Stopped", null, null, null, -0.33],
       ["Repair", 0.5],
+      ["Parked", 0.01],
     ],
-    A10: [["Available in the long run"]],
-    C10: [['=CTMC.AVAILABILITY(A3:E7,{"Running","Vibrating"})']],
-    A11: [["Days until it stops"]],
-    C11: [['=INDEX(CTMC.MEANABSORPTION(A3:E7,"Stopped"),1)']],
-    A13: [["What is wrong with it"], ["=CTMC.CHECK(A3:E7)"]],
+    A10: [["Available in the long run", null, '=CTMC.AVAILABILITY(A3:F8,{"Running","Vibrating"})']],
+    A11: [["Days until it stops", null, '=INDEX(CTMC.MEANABSORPTION(A3:F8,"Stopped"),1)']],
+    A13: [["What is wrong with it"], ['=LET(found,CTMC.CHECK(A3:F8),INDEX(found,,1)&"  "&INDEX(found,,3))']],
   },
-  bold: ["A1", "A3:E3", "A4:A7", "A13"],
+  bold: ["A1", "A3:F3", "A4:A8", "A13"],
+  formats: { C10: "0.0000", C11: "0.0" },
   widths: { A: 118, C: 96 },
 };

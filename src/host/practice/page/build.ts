@@ -107,7 +107,7 @@ export function buildPage({ book, host, storage, demo, unreadable }: PageParts):
   keeper.onNewer = (file) => {
     editor.cancel();
     book.replaceWith(file);
-    session.reopened();
+    session.reopened(true);
   };
   keeper.onRole = (role, lost) => {
     session.close(role === "writer" ? null : "Another tab is editing this workbook. Take over to edit here.");
@@ -147,11 +147,13 @@ function listenToParts(parts: readonly HTMLElement[], focusGrid: () => void, she
   document.addEventListener("keydown", (event) => {
     if (event.key !== "F6") return;
     event.preventDefault();
-    const shown = parts.filter((part) => part.offsetParent !== null || part.getClientRects().length > 0);
+    const first = (part: HTMLElement): HTMLElement | undefined =>
+      [...part.querySelectorAll<HTMLElement>("[tabindex='0'], button:not([tabindex='-1']), input, textarea, a[href]")].find((element) => element.getClientRects().length > 0);
+    const shown = parts.filter((part) => part.getClientRects().length > 0 && first(part));
     const here = shown.findIndex((part) => part.contains(document.activeElement));
     const next = shown[(here + (event.shiftKey ? -1 : 1) + shown.length) % shown.length]!;
     if (next === sheetArea) focusGrid();
-    else next.querySelector<HTMLElement>("[tabindex='0'], button:not([tabindex='-1']), input, textarea, a[href]")?.focus();
+    else first(next)?.focus();
   });
 }
 

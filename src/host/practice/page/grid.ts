@@ -24,6 +24,9 @@ const TALLEST = 15_000_000;
 /** Kept free beyond a revealed cell: its outline and the field over it stand out a little. */
 const MARGIN = 6;
 
+const MOST_PRINTED_ROWS = 2_000;
+const MOST_PRINTED_COLUMNS = 60;
+
 interface RowParts {
   readonly row: HTMLElement;
   readonly head: HTMLElement;
@@ -59,6 +62,7 @@ export class Grid {
   private width = 0;
   private frame = 0;
   private stale = true;
+  private printing = false;
   private columnsDrawn: Lines = { first: 0, last: -1 };
   private readonly afterDraw = new Set<() => void>();
 
@@ -73,6 +77,8 @@ export class Grid {
       this.sizer,
     );
     this.element.addEventListener("scroll", () => this.drawSoon(false), { passive: true });
+    addEventListener("beforeprint", () => this.print(true));
+    addEventListener("afterprint", () => this.print(false));
     new ResizeObserver(() => this.drawSoon(false)).observe(this.element);
     session.book.on("change", () => this.drawSoon(true));
     session.book.on("sheets", () => this.drawSoon(true));
@@ -82,6 +88,16 @@ export class Grid {
       this.reveal(session.active);
       this.drawSoon(true);
     });
+  }
+
+  /** On paper there is no scrolling: everything filled is drawn, from the first cell on. */
+  private print(printing: boolean): void {
+    this.printing = printing;
+    const used = this.session.used();
+    this.sizer.style.height = printing ? `${this.top(Math.min(used.rows, MOST_PRINTED_ROWS))}px` : `${this.height}px`;
+    this.sizer.style.width = printing ? `${this.left(Math.min(used.columns, MOST_PRINTED_COLUMNS))}px` : `${this.width}px`;
+    this.stale = true;
+    this.draw();
   }
 
   /** Called after each drawing; outlines and floating sentences place themselves then. */
@@ -186,6 +202,12 @@ export class Grid {
     this.frame = 0;
     const { session, element } = this;
     this.resize(session.active);
+    if (this.printing) {
+      const used = session.used();
+      const last = { rows: Math.min(used.rows, MOST_PRINTED_ROWS) - 1, columns: Math.min(used.columns, MOST_PRINTED_COLUMNS) - 1 };
+      this.drawLines({ first: 0, last: last.rows }, { first: 0, last: last.columns });
+      return;
+    }
     const rows: Lines = {
       first: Math.max(0, session.rows.at(element.scrollTop + this.shift) - SPARE_ROWS),
       last: Math.min(ROW_LIMIT - 1, session.rows.at(element.scrollTop + this.shift + element.clientHeight) + SPARE_ROWS),
@@ -194,6 +216,12 @@ export class Grid {
       first: Math.max(0, session.columns.at(element.scrollLeft) - SPARE_COLUMNS),
       last: Math.min(COLUMN_LIMIT - 1, session.columns.at(element.scrollLeft + element.clientWidth) + SPARE_COLUMNS),
     };
+    this.drawLines(rows, columns);
+    for (const listener of this.afterDraw) listener();
+  }
+
+  private drawLines(rows: Lines, columns: Lines): void {
+    const { session, element } = this;
     const moved = columns.first !== this.columnsDrawn.first || columns.last !== this.columnsDrawn.last;
     this.columnsDrawn = columns;
     const active = session.active;
@@ -209,7 +237,6 @@ export class Grid {
     for (const parts of this.spareRows.splice(0)) parts.row.remove();
     set(element, "aria-activedescendant", cellId(active));
     this.stale = false;
-    for (const listener of this.afterDraw) listener();
   }
 
   private drawHeads(columns: Lines): void {
@@ -297,6 +324,7 @@ export class Grid {
     cell.cell.hidden = width === 0;
     place(cell.cell, this.left(column), width);
     cell.text.style.width = room > width ? `${room - 1}px` : "";
+    if (room > width) cell.text.style.setProperty("--own", `${width - 1}px`);
     if (cell.text.textContent !== text) cell.text.textContent = text;
   }
 

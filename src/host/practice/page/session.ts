@@ -102,10 +102,10 @@ export class Session implements Ground {
     else this.tell("selection");
   }
 
-  /** After another workbook was opened in place. */
-  reopened(): void {
-    this.selections.clear();
-    this.shown = this.firstShown();
+  /** After another workbook was opened in place; `follow` when it is the same one, brought up to date. */
+  reopened(follow = false): void {
+    if (!follow) this.selections.clear();
+    if (!follow || !this.book.sheets().some((sheet) => sheet.id === this.shown && !sheet.hidden)) this.shown = this.firstShown();
     this.measure();
     this.tell("opened");
     this.tell("sheet");
