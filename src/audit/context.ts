@@ -14,6 +14,8 @@ export interface AskedQuestion {
   readonly hasTargets: boolean;
   /** Whether it names a start. */
   readonly hasStart: boolean;
+  /** Whether it names a time or horizon, readable or not. */
+  readonly hasTimes: boolean;
   /** Times or horizons that it asks for, where they are numbers that could be read; empty else. */
   readonly times: readonly number[];
   /** Where the formula stands, such as "Plan!B4". */

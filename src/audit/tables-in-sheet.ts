@@ -1,3 +1,4 @@
+import { finish, type Steps } from "../chain/steps";
 import { isEmpty, isText, isVoid, nameKey, numberInText } from "../table/cell";
 import { read } from "../table/read";
 import type { Cells, CellValue, Reading } from "../table/rate-table";
@@ -30,6 +31,11 @@ export interface FoundTable {
  * *Cost*: a few passes over the cells.
  */
 export function findTables(cells: Cells): FoundTable[] {
+  return finish(findTablesSteps(cells));
+}
+
+/** As `findTables`, in steps. */
+export function* findTablesSteps(cells: Cells): Steps<FoundTable[]> {
   const grid = new Grid(cells);
   const found: FoundTable[] = [];
   const take = (span: Span, leftOut: FoundTable["leftOut"] = []): void => {
@@ -38,9 +44,9 @@ export function findTables(cells: Cells): FoundTable[] {
     found.push({ span, reading, leftOut, kind: reading.layout ? kindOf(readBody(inside, reading.layout)) : "rates" });
     grid.use(span);
   };
-  for (const { span, leftOut } of headedTables(grid)) take(span, leftOut);
-  for (const span of lists(grid)) take(span);
-  for (const span of blocks(grid)) take(span);
+  for (const { span, leftOut } of yield* headedTables(grid)) take(span, leftOut);
+  for (const span of yield* lists(grid)) take(span);
+  for (const span of yield* blocks(grid)) take(span);
   return found.sort((a, b) => a.span.row - b.span.row || a.span.column - b.span.column);
 }
 
@@ -99,9 +105,10 @@ function run(length: number, heading: (k: number) => string | null): string[] {
 }
 
 /** Squares with names on top and on the left. A corner counts when at least half of the shorter run of names stands in both. */
-function headedTables(grid: Grid): { span: Span; leftOut: FoundTable["leftOut"] }[] {
+function* headedTables(grid: Grid): Steps<{ span: Span; leftOut: FoundTable["leftOut"] }[]> {
   const candidates: { span: Span; leftOut: FoundTable["leftOut"]; shared: number }[] = [];
-  for (let row = 0; row < grid.rows; row++)
+  for (let row = 0; row < grid.rows; row++) {
+    if (row % 32 === 31) yield (0.4 * row) / grid.rows;
     for (let column = 0; column < grid.columns; column++) {
       const right = grid.at(row, column + 1);
       const numbers = isWord(grid.at(row, column)) && typeof right === "number";
@@ -129,6 +136,7 @@ function headedTables(grid: Grid): { span: Span; leftOut: FoundTable["leftOut"] 
       if (left.length > height && meansTotal(left[height])) leftOut.push({ line: "row", label: textOf(grid.at(row + rows, column)) });
       candidates.push({ span: { row, column, rows, columns }, leftOut, shared });
     }
+  }
   candidates.sort((a, b) => b.shared - a.shared || a.span.row - b.span.row || a.span.column - b.span.column);
   const kept: typeof candidates = [];
   for (const candidate of candidates) if (!kept.some(({ span }) => meet(span, candidate.span))) kept.push(candidate);
@@ -154,9 +162,10 @@ function meet(a: Span, b: Span): boolean {
 }
 
 /** Runs of at least two rows name, name, number whose names recur; with their heading row where there is one. */
-function lists(grid: Grid): Span[] {
+function* lists(grid: Grid): Steps<Span[]> {
   const spans: Span[] = [];
-  for (let column = 0; column + 2 < grid.columns; column++)
+  for (let column = 0; column + 2 < grid.columns; column++) {
+    yield 0.4 + (0.3 * column) / grid.columns;
     for (let row = 0; row < grid.rows; row++) {
       const length = arrowRows(grid, row, column);
       if (length === 0) continue;
@@ -177,6 +186,7 @@ function lists(grid: Grid): Span[] {
       }
       row += length;
     }
+  }
   return spans;
 }
 
@@ -199,9 +209,10 @@ function listWidth(grid: Grid, row: number, column: number): number {
 }
 
 /** Blocks of touching cells that read as a table by themselves, or with totals, units or notes left out. */
-function blocks(grid: Grid): Span[] {
+function* blocks(grid: Grid): Steps<Span[]> {
   const spans: Span[] = [];
-  for (const box of touching(grid)) {
+  for (const box of yield* touching(grid)) {
+    yield 0.9;
     if (box.rows < 2 || box.columns < 2 || box.rows * box.columns > 40_000) continue;
     const span = tableIn(grid, box) ?? tableIn(grid, squareFrom(box));
     if (span && !grid.overlaps(span)) {
@@ -255,10 +266,11 @@ function plausible(cells: Cells, reading: Reading): boolean {
 }
 
 /** Bounding boxes of groups of filled cells that touch, corners included, outside what was found already. */
-function touching(grid: Grid): Span[] {
+function* touching(grid: Grid): Steps<Span[]> {
   const seen = new Uint8Array(grid.rows * grid.columns);
   const boxes: Span[] = [];
-  for (let row = 0; row < grid.rows; row++)
+  for (let row = 0; row < grid.rows; row++) {
+    if (row % 32 === 31) yield 0.7 + (0.2 * row) / grid.rows;
     for (let column = 0; column < grid.columns; column++) {
       if (seen[row * grid.columns + column] || !filled(grid, row, column)) continue;
       let [top, left, bottom, right] = [row, column, row, column];
@@ -281,6 +293,7 @@ function touching(grid: Grid): Span[] {
       }
       boxes.push({ row: top, column: left, rows: bottom - top + 1, columns: right - left + 1 });
     }
+  }
   return boxes;
 }
 

@@ -13,7 +13,7 @@ const LONG_RUN = new Set(["STATIONARY", "UPDOWN", "FLOWS", "COSTRATE", "AVAILABI
 export const longRun: Rule = (context) => {
   const { chain, options, kind, layout, start } = context;
   const asked = options.asked ?? [];
-  const whole = asked.find((question) => LONG_RUN.has(question.name) && question.times.length === 0);
+  const whole = asked.find((question) => LONG_RUN.has(question.name) && !question.hasTimes);
   const times = asked.flatMap((question) => (question.name === "COST" || question.name === "COSTUNTIL" ? [] : question.times)).filter((time) => time > 0);
   if (!whole || times.length === 0 || kind !== "rates" || chain.size > 200 || !context.reading.table) return [];
   if (communicatingClasses(chain).closed.filter(Boolean).length !== 1) return [];

@@ -226,6 +226,14 @@ const WORDS: Readonly<Record<string, Words>> = {
     finding: () => "EXP is taken cell by cell: that gives no transition probabilities.",
     remedy: () => "Take them from =CTMC.TRANSITION(rates, time), which works on the table as a whole.",
   },
+  exponentialsOverTable: {
+    finding: (f) => `EXP is taken over ${f.text("where")} cell by cell: that gives no transition probabilities.`,
+    remedy: (f) => `Take them from =CTMC.TRANSITION(${f.text("where")}, time), which works on the table as a whole.`,
+  },
+  firstFailureAsBetween: {
+    finding: (f) => `"${f.text("label")}" stands at a mean time to the first failure, which is not the time between failures.`,
+    remedy: () => "Call it mean time to first failure, or take mean time between failures from =CTMC.UPDOWN(rates, up).",
+  },
   linearSteps: {
     finding: () => "Rows sum to 1 but the diagonal goes below 0: I + Q·t is no table of probabilities.",
     remedy: () => "Take probabilities from =CTMC.TRANSITION(rates, time).",

@@ -128,7 +128,7 @@ describe("mistake 16: absorbing by mistake", () => {
 });
 
 describe("mistake 17: a time to failure without a target", () => {
-  const asked = [{ name: "MEANABSORPTION", hasTargets: false, hasStart: false, times: [], where: "Plan!B2" }];
+  const asked = [{ name: "MEANABSORPTION", hasTargets: false, hasStart: false, hasTimes: false, times: [], where: "Plan!B2" }];
   it("stops where nothing is final", () => expect(findingOf(clean, "noTarget", { asked })).toMatchObject({ severity: "stop", details: { where: "Plan!B2" } }));
   it("is silent with a target, or a final state", () => {
     expect(audit(clean, { asked: [{ ...asked[0], hasTargets: true }] })).toEqual([]);

@@ -7,7 +7,7 @@ import { codes, complaints, findingOf, headed } from "./table";
 
 const three = ["Running", "Degraded", "Failed"];
 const rates = [[null, 0.02, 0.01], [0.5, null, 0.1], [1, 0, null]];
-const asked = (question: Partial<AskedQuestion>): AskedQuestion => ({ name: "DISTRIBUTION", hasTargets: false, hasStart: true, times: [], where: "Plan!B2", ...question });
+const asked = (question: Partial<AskedQuestion>): AskedQuestion => ({ name: "DISTRIBUTION", hasTargets: false, hasStart: true, hasTimes: (question.times ?? []).length > 0, times: [], where: "Plan!B2", ...question });
 
 describe("mistake 7: a single probability typed as a rate", () => {
   it.each(["probability per year", "prob.", "annual risk", "chance per cycle"])("warns where the corner says %j", (corner) => {

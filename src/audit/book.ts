@@ -1,0 +1,306 @@
+import type { Steps } from "../chain/steps";
+import { compareTables, type CompareRow } from "../table/compare";
+import { nameKey } from "../table/cell";
+import { read } from "../table/read";
+import type { Cells, CellValue, Reading } from "../table/rate-table";
+import { rangeName, sheetPrefix } from "./a1";
+import { audit } from "./audit";
+import { readBody } from "./body";
+import type { AskedQuestion, OtherTable } from "./context";
+import { cellsFrom } from "./facts";
+import type { Finding, Span } from "./finding";
+import { BUILDERS, callsIn, numbersIn, positionsOf, referencesIn, type Call, type Reference } from "./formula-calls";
+import { kindOf, type Kind } from "./kind";
+import { exponentialsOver, meanTimeName } from "./rules/book-formulas";
+import { findTablesSteps } from "./tables-in-sheet";
+
+/** One sheet as it is given: values and formulas of its used range, whose first cell stands at row, column. */
+export interface BookSheet {
+  readonly name: string;
+  readonly hidden: boolean | "unknown";
+  readonly row: number;
+  readonly column: number;
+  readonly values: readonly (readonly (number | string | boolean)[])[];
+  readonly formulas: readonly (readonly string[])[];
+}
+
+export interface SheetSpan extends Span {
+  readonly sheet: string;
+}
+
+export interface BookTable {
+  readonly address: SheetSpan;
+  /** The address as text: "Plan!B3:F7". */
+  readonly where: string;
+  readonly cells: Cells;
+  readonly reading: Reading;
+  readonly hidden: boolean;
+  readonly kind: Kind;
+  readonly size: number;
+  readonly arrows: number;
+  /** The first stop that the audit reports of the table by itself; null where there is none. */
+  readonly stop: Finding | null;
+}
+
+export interface BookFormula {
+  readonly address: SheetSpan;
+  readonly formula: string;
+  /** The outermost of our functions in it, without its namespace. */
+  readonly name: string;
+  readonly calls: readonly Call[];
+  /** `stale`: no value yet; `unregistered`: the host does not know our functions here. */
+  readonly state: "fine" | "error" | "stale" | "unregistered";
+  /** What the cell shows, where it is an error code. */
+  readonly fault: string | null;
+  /** The table it reads, by its place in `tables`. */
+  readonly reads: number | null;
+  /** The first argument as written. */
+  readonly readsText: string;
+  /** Rows and columns of the table that its range leaves out, and the range that takes them in. */
+  readonly short: { readonly rows: number; readonly columns: number; readonly range: SheetSpan; readonly where: string } | null;
+}
+
+/** Two tables that name the same states and differ: `a` before `b` in the order of the sheets. */
+export interface BookPair {
+  readonly a: number;
+  readonly b: number;
+  readonly rows: readonly CompareRow[];
+}
+
+/** A finding about formulas rather than about one table; its span counts from the sheet's first cell. */
+export interface BookFinding {
+  readonly sheet: string;
+  readonly finding: Finding;
+}
+
+export interface BookScan {
+  readonly tables: readonly BookTable[];
+  readonly formulas: readonly BookFormula[];
+  readonly pairs: readonly BookPair[];
+  readonly findings: readonly BookFinding[];
+}
+
+interface Seen {
+  readonly sheet: BookSheet;
+  readonly cells: Cells;
+}
+
+/**
+ * Every rate table and every formula of ours in a workbook: where they are, whether they are sound, who reads whom.
+ *
+ * Tables are found by their looks (`findTables`) and by the formulas that read them; what our functions spill is a table only
+ * where they build one. Formulas whose range leaves out a row or column of the table are told, and tables under the same state
+ * names that differ are paired, each with the next.
+ *
+ * @param sheets - all sheets, hidden ones too
+ * @returns steps that yield the share done
+ *
+ * *Cost*: a few passes over the cells.
+ */
+export function* scanBook(sheets: readonly BookSheet[]): Steps<BookScan> {
+  const tables: BookTable[] = [];
+  const formulas: BookFormula[] = [];
+  const seen: Seen[] = [];
+  for (const [at, sheet] of sheets.entries()) {
+    const cells = cellsFrom(sheet.values);
+    seen.push({ sheet, cells });
+    yield at / (2 * sheets.length);
+    for (const { span } of yield* findTablesSteps(cells)) {
+      if (isAnswer(sheet, span)) continue;
+      tables.push(bookTable(sheet, cells, span));
+      yield at / (2 * sheets.length);
+    }
+  }
+  const findings: BookFinding[] = [];
+  for (const [at, { sheet, cells }] of seen.entries()) {
+    for (let row = 0; row < sheet.formulas.length; row++) {
+      const line = sheet.formulas[row];
+      for (let column = 0; column < line.length; column++) {
+        const formula = line[column];
+        if (!formula.startsWith("=") || !/CTMC[._]/iu.test(formula)) continue;
+        const found = bookFormula(sheet, cells, row, column, formula, tables, seen);
+        if (!found) continue;
+        formulas.push(found);
+        findings.push(...meanTimeName(found, cells, row, column).map((finding) => ({ sheet: sheet.name, finding })));
+      }
+      if (row % 50 === 49) yield 0.5 + (at + row / sheet.formulas.length) / (2.2 * sheets.length);
+    }
+    findings.push(...exponentialsOver(sheet, tables).map((finding) => ({ sheet: sheet.name, finding })));
+    yield 0.5 + (at + 1) / (2.2 * sheets.length);
+  }
+  const scan = { tables, formulas, pairs: yield* pairsAmong(tables), findings };
+  valuesOf.set(scan, seen);
+  return scan;
+}
+
+/** The questions that the workbook's formulas ask of a table: for `audit`'s `asked`. */
+export function askedOf(scan: BookScan, table: number): AskedQuestion[] {
+  return scan.formulas
+    .filter((formula) => formula.reads === table)
+    .flatMap(({ calls, address }) => {
+      const call = calls.find(({ name }) => positionsOf(name));
+      const positions = call && positionsOf(call.name);
+      if (!call || !positions) return [];
+      const given = (position: number | undefined): string => (position === undefined ? "" : (call.parameters[position] ?? ""));
+      return [
+        {
+          name: call.name,
+          hasTargets: given(positions.targets) !== "",
+          hasStart: given(positions.start) !== "",
+          hasTimes: given(positions.times) !== "",
+          times: timesIn(scan, given(positions.times), address.sheet),
+          where: sheetPrefix(address.sheet) + rangeName(address),
+        },
+      ];
+    });
+}
+
+/** The other tables of the workbook: for `audit`'s `others`. */
+export function othersOf(scan: BookScan, table: number): OtherTable[] {
+  return scan.tables.filter((_, k) => k !== table).map(({ where, cells }) => ({ where, cells }));
+}
+
+// Times that stand in cells are kept with the scan by sheet, so that `askedOf` needs no workbook.
+const valuesOf = new WeakMap<BookScan, readonly Seen[]>();
+
+function timesIn(scan: BookScan, parameter: string, sheet: string): number[] {
+  const written = numbersIn(parameter);
+  if (written) return written;
+  const [reference, ...others] = referencesIn(parameter, sheet);
+  if (!reference || others.length > 0 || !/^[^+*/^&(,-]+$/u.test(parameter.replace(/'[^']*'/gu, ""))) return [];
+  const place = (valuesOf.get(scan) ?? []).find(({ sheet: other }) => other.name === reference.sheet);
+  return place ? cut(place, reference).flat().filter((value) => typeof value === "number") : [];
+}
+
+function cut({ sheet, cells }: Seen, { row, column, rows, columns }: Span): CellValue[][] {
+  return Array.from({ length: Math.min(rows, 2000) }, (_, i) =>
+    Array.from({ length: Math.min(columns, 2000) }, (__, j) => cells[row - sheet.row + i]?.[column - sheet.column + j] ?? null),
+  );
+}
+
+/** Whether a found table is what one of our formulas spilled as an answer. */
+function isAnswer(sheet: BookSheet, span: Span): boolean {
+  for (const [row, column] of [[0, 0], [1, 1], [0, 1], [1, 0]]) {
+    const formula = sheet.formulas[span.row + row]?.[span.column + column] ?? "";
+    const outer = formula.startsWith("=") ? callsIn(formula)[0] : undefined;
+    if (outer) return !BUILDERS.has(outer.name);
+  }
+  return false;
+}
+
+function bookTable(sheet: BookSheet, cells: Cells, span: Span): BookTable {
+  const inside = Array.from({ length: span.rows }, (_, i) => Array.from({ length: span.columns }, (__, j) => cells[span.row + i]?.[span.column + j] ?? null));
+  const reading = read(inside);
+  const address = { sheet: sheet.name, row: sheet.row + span.row, column: sheet.column + span.column, rows: span.rows, columns: span.columns };
+  return {
+    address,
+    where: sheetPrefix(sheet.name) + rangeName(address),
+    cells: inside,
+    reading,
+    hidden: sheet.hidden === true,
+    kind: reading.layout ? kindOf(readBody(inside, reading.layout)) : "rates",
+    size: reading.layout?.size ?? 0,
+    arrows: reading.table?.arrows.length ?? 0,
+    stop: audit(inside).find((finding) => finding.severity === "stop") ?? null,
+  };
+}
+
+function bookFormula(
+  sheet: BookSheet,
+  cells: Cells,
+  row: number,
+  column: number,
+  formula: string,
+  tables: BookTable[],
+  seen: readonly Seen[],
+): BookFormula | null {
+  const calls = callsIn(formula);
+  if (calls.length === 0) return null;
+  const value = cells[row]?.[column] ?? null;
+  const fault = typeof value === "object" && value !== null ? value.fault : null;
+  const unregistered = calls.some((call) => call.unregistered) || fault === "#NAME?";
+  const state = unregistered ? "unregistered" : fault === "#BUSY!" || fault === "#GETTING_DATA" || value === null ? "stale" : fault ? "error" : "fine";
+  const [outer] = calls;
+  const readsText = outer.parameters[0] ?? "";
+  const reader = calls.find(({ name }) => positionsOf(name));
+  const reference = reader ? referencesIn(reader.parameters[0] ?? "", sheet.name)[0] : undefined;
+  const reads = reference ? tableAt(reference, tables, seen) : null;
+  return {
+    address: { sheet: sheet.name, row: sheet.row + row, column: sheet.column + column, rows: 1, columns: 1 },
+    formula,
+    name: outer.name,
+    calls,
+    state,
+    fault,
+    reads,
+    readsText,
+    short: reads === null || !reference || reference.spill ? null : shortOf(reference, tables[reads]),
+  };
+}
+
+/** The table that a reference reads: the one it shares most cells with; else the range itself joins the tables. */
+function tableAt(reference: Reference, tables: BookTable[], seen: readonly Seen[]): number | null {
+  let best = -1;
+  let most = 0;
+  tables.forEach(({ address }, k) => {
+    if (address.sheet !== reference.sheet) return;
+    const cells = sharedCells(address, reference);
+    if (cells > most) [best, most] = [k, cells];
+  });
+  if (best >= 0 && (reference.spill || 2 * most >= Math.min(reference.rows * reference.columns, tables[best].address.rows * tables[best].address.columns))) return best;
+  const place = seen.find(({ sheet }) => sheet.name === reference.sheet);
+  if (reference.spill || !place || reference.rows < 2 || reference.columns < 2) return null;
+  const { sheet, cells } = place;
+  return tables.push(bookTable(sheet, cells, { ...reference, row: reference.row - sheet.row, column: reference.column - sheet.column })) - 1;
+}
+
+function sharedCells(a: Span, b: Span): number {
+  const rows = Math.min(a.row + a.rows, b.row + b.rows) - Math.max(a.row, b.row);
+  const columns = Math.min(a.column + a.columns, b.column + b.columns) - Math.max(a.column, b.column);
+  return rows > 0 && columns > 0 ? rows * columns : 0;
+}
+
+/** How many rows and columns of the table's body the reference leaves out; headings may be left out. */
+function shortOf(reference: Reference, { address, reading }: BookTable): BookFormula["short"] {
+  const { layout } = reading;
+  const body = layout?.form === "square" ? layout.body : layout ? { ...layout.body, row: 0, rows: layout.body.row + layout.body.rows } : null;
+  if (!body) return null;
+  const own = { row: address.row + body.row, column: address.column + body.column, rows: body.rows, columns: body.columns };
+  const missing = (first: number, length: number, from: number, count: number): number => Math.max(0, from - first) + Math.max(0, first + length - from - count);
+  const headed = layout?.form === "list" ? layout.body.row : 0; // a list's heading row may be left out
+  const rows = Math.max(0, missing(own.row, own.rows, reference.row, reference.rows) - headed);
+  const columns = missing(own.column, own.columns, reference.column, reference.columns);
+  return rows + columns === 0 ? null : { rows, columns, range: address, where: rangeName(address) };
+}
+
+/** Tables that name the same states, each with the next one in the order of the sheets, where rates differ. */
+function* pairsAmong(tables: readonly BookTable[]): Steps<BookPair[]> {
+  const groups = new Map<string, number[]>();
+  tables.forEach(({ reading }, k) => {
+    const names = reading.table?.names;
+    if (!names) return;
+    const key = names.map(nameKey).sort().join("\n");
+    groups.set(key, [...(groups.get(key) ?? []), k]);
+  });
+  const alone: number[] = [];
+  const pairs: BookPair[] = [];
+  const add = (a: number, b: number): void => {
+    const rows = compareTables(tables[a].reading.table!, tables[b].reading.table!);
+    if (rows.length > 0) pairs.push({ a, b, rows });
+  };
+  for (const members of groups.values()) {
+    if (members.length === 1) alone.push(members[0]);
+    for (let k = 1; k < members.length; k++) {
+      add(members[k - 1], members[k]);
+      yield 0.95;
+    }
+  }
+  // One state more or less since last time: at least three quarters of all names are shared.
+  for (let x = 0; x < Math.min(alone.length, 200); x++)
+    for (let y = x + 1; y < Math.min(alone.length, 200); y++) {
+      const [one, other] = [alone[x], alone[y]].map((k) => new Set(tables[k].reading.table!.names!.map(nameKey)));
+      const shared = [...one].filter((name) => other.has(name)).length;
+      if (shared >= 2 && shared >= 0.75 * (one.size + other.size - shared)) add(alone[x], alone[y]);
+    }
+  return pairs.sort((p, q) => p.a - q.a || p.b - q.b);
+}
