@@ -1,3 +1,8 @@
+import type { Pausable } from "./leak-system";
+
+/** States taken between two pauses, some 5 ms. */
+const PIVOTS_A_SLICE = 1000;
+
 /**
  * An order of elimination that creates few new arrows: the state with the fewest neighbours goes first.
  *
@@ -9,7 +14,7 @@
  * storage: lists are ordinary arrays that shrink. Ties go to the state that entered its bucket last.
  * *Cost*: nearly linear in the arrows for local structure; 20,000 states of a grid in some 0.1 s.
  */
-export function eliminationOrder(size: number, rowStart: Int32Array, toState: Int32Array): Int32Array {
+export function* eliminationOrder(size: number, rowStart: Int32Array, toState: Int32Array): Pausable<Int32Array> {
   const neighbours = symmetricNeighbours(size, rowStart, toState);
   const elementsOf: number[][] = Array.from({ length: size }, () => []);
   const members: (number[] | null)[] = new Array<number[] | null>(size).fill(null);
@@ -110,7 +115,7 @@ export function eliminationOrder(size: number, rowStart: Int32Array, toState: In
     for (const group of alike.values()) if (group.length > 1) mergeAlike(group);
     for (const i of front) if (weight[i] > 0) buckets.put(i, degree[i]);
     members[pivot] = front.filter((i) => weight[i] > 0);
-    round++;
+    if (++round % PIVOTS_A_SLICE === 0) yield placed / size;
   }
   return order;
 

@@ -3,7 +3,7 @@ import type { Elimination, LeakSystem, Pausable } from "./leak-system";
 import { eliminateSparse, planElimination } from "./sparse-elimination";
 
 /** Up to here a full matrix is always as quick as planning a sparse elimination. */
-export const ALWAYS_DENSE = 80;
+export const ALWAYS_DENSE = 200;
 /** A planned sparse multiply-add costs about this many dense ones (indirect addressing). */
 export const SPARSE_COST = 6;
 /** A full matrix of this many states takes 128 MB. */
@@ -20,7 +20,7 @@ export function* eliminate(system: LeakSystem): Pausable<Elimination | null> {
   const denseWork = n ** 3 / 3;
   if (n <= ALWAYS_DENSE || system.rate.length > (n * n) / 8 && n <= LARGEST_DENSE) return yield* eliminateDense(system);
   const limit = n <= LARGEST_DENSE ? Math.min(denseWork / SPARSE_COST, LARGEST_WORK) : LARGEST_WORK;
-  const plan = planElimination(system, limit);
+  const plan = yield* planElimination(system, limit);
   if (plan) return yield* eliminateSparse(system, plan);
   return n <= LARGEST_DENSE ? yield* eliminateDense(system) : null;
 }

@@ -4,6 +4,8 @@ import { scaledShares } from "./scaled-flow";
 
 /** Multiply-adds between two pauses, some 10 ms. */
 const SLICE = 2e6;
+/** States planned between two pauses, some 5 ms. */
+const STATES_A_SLICE = 2000;
 const SMALL = 1e-280;
 const LARGE = 1e280;
 
@@ -22,9 +24,9 @@ export interface EliminationPlan {
  * the states whose first later neighbour it is (Gilbert, Ng & Peyton, SIAM J. Matrix Anal. Appl. 15 (1994) 1075–1091, § 2).
  * `null` as soon as the work passes `limit`.
  */
-export function planElimination(system: LeakSystem, limit: number): EliminationPlan | null {
+export function* planElimination(system: LeakSystem, limit: number): Pausable<EliminationPlan | null> {
   const { size: n, rowStart, toState } = system;
-  const order = eliminationOrder(n, rowStart, toState);
+  const order = yield* eliminationOrder(n, rowStart, toState);
   const place = new Int32Array(n);
   for (let k = 0; k < n; k++) place[order[k]] = k;
   const later: number[][] = Array.from({ length: n }, () => []);
@@ -57,6 +59,7 @@ export function planElimination(system: LeakSystem, limit: number): EliminationP
     work += pattern.length * pattern.length;
     entries += pattern.length;
     if (work > limit) return null;
+    if (k % STATES_A_SLICE === 0) yield k / n;
   }
   const upStart = new Int32Array(n + 1);
   const up = new Int32Array(entries);
