@@ -21,7 +21,7 @@ export const PROBLEM_SENTENCES: Readonly<Record<string, Sentence>> = {
   rateIsText: (w) => `${w.place()}: "${w.text("found")}" is text. Enter it as a number, such as ${w.number("reading")}.`,
   rateNegative: (w) => `${w.place()}: ${w.number("rate")} is not a rate. Enter 0 or more.`,
   rateNotFinite: (w) => `${w.place()}: the rate is not a finite number. Enter a number, 0 or more.`,
-  rateOutOfRange: (w) => `${w.place()}: ${w.number("rate")} is outside the rates that are taken, 1E-150 to 1E+150. Change the time unit.`,
+  rateOutOfRange: (w) => `${w.place()}: ${w.number("rate")} is not between 1E-150 and 1E+150. Change the time unit.`,
   diagonalPositive: (w) => `${w.place()}: the diagonal is ${w.number("given")}. Enter minus the exits, -${w.number("exits")}, or clear it.`,
   diagonalWithoutExits: (w) => `${w.place()}: the diagonal is ${w.number("given")}, but the row has no exits. Clear it or enter the exits.`,
   rowSum: (w) => `Row ${w.state("row", "rowName")}: the diagonal is ${w.number("given")}, the exits sum to ${w.number("exits")}. Correct one or clear the diagonal.`,
@@ -51,7 +51,7 @@ export const PROBLEM_SENTENCES: Readonly<Record<string, Sentence>> = {
     `${w.argument()}: ${w.number("rows")} × ${w.number("columns")} cells were given. Give one row or column of ${w.number("size")}, one a state.`,
   oneStateNeeded: (w) => `${w.argument()}: ${w.number("rows")} × ${w.number("columns")} cells were given. Give one state by name or number.`,
   stateMissing: (w) => `${w.argument()}: no state is given. Give at least one state by name or number.`,
-  stateUnknown: (w) => `${w.argument()}: there is no state ${w.quoted("found")}. Give a name from the headings or a number from 1 to ${w.number("size")}.`,
+  stateUnknown: (w) => `${w.argument()}: there is no state ${w.quoted("found")}. Give a state's name or a number up to ${w.number("size")}.`,
   stateNumberOutside: (w) => `${w.argument()}: there is no state ${w.number("value")}. Give a number from 1 to ${w.number("size")}, or a name.`,
   stateAmbiguous: (w) =>
     `${w.argument()}: ${w.number("number")} heads state ${w.ordinal("named")}, but state ${w.number("number")} is "${w.text("other")}". Give the name as text.`,
@@ -67,7 +67,7 @@ export const PROBLEM_SENTENCES: Readonly<Record<string, Sentence>> = {
 
   // questions without an answer
   noTargets: () => "targets: none are given and no state is absorbing. Name the states that end the wait.",
-  severalClosedClasses: (w) => `The long run depends on the start: ${w.groups("classes")} are each never left. Give a start.`,
+  severalClosedClasses: (w) => `The long run depends on the start: ${w.groups("classes")} are never left. Give a start.`,
   meanInfinite: (w) => `From ${w.stateOf("state")} a target is not met with certainty: the mean time is infinite.`,
   survivalGone: (w) => `At time ${w.number("time")} a target has been met with certainty, or as good as: there is no hazard.`,
   timeInfinite: (w) => `The time in ${w.stateOf("state")} before a target is infinite: it can be entered and no target met from it.`,
@@ -84,10 +84,10 @@ export const PROBLEM_SENTENCES: Readonly<Record<string, Sentence>> = {
 /** What numbers an argument takes. */
 function domain(w: Words): string {
   const kind = w.has("whole") ? "a whole number" : "a number";
+  if (w.has("least") && w.has("most")) return `${kind} from ${w.number("least")} to ${w.number("most")}`;
   const low = w.has("least") ? `${w.number("least")} or more` : w.has("above") ? `above ${w.number("above")}` : "";
   const high = w.has("most") ? `at most ${w.number("most")}` : w.has("below") ? `below ${w.number("below")}` : "";
-  if (!low && !high) return kind;
-  return `${kind}, ${[low, high].filter(Boolean).join(" and ")}`;
+  return [kind, [low, high].filter(Boolean).join(" and ")].filter(Boolean).join(", ");
 }
 
 function capital(word: string): string {

@@ -46,13 +46,13 @@ export class Words {
   /** Groups of states: "{Up, Worn} and {Scrapped}". */
   groups(key: string): string {
     const groups = (this.details[key] as readonly (readonly number[])[] | undefined) ?? [];
-    const shown = groups.slice(0, 3).map((group) => `{${group.slice(0, 2).map((state) => this.stateNumbered(state)).join(", ")}${group.length > 2 ? ", …" : ""}}`);
-    return `${shown.join(", ")}${groups.length > 3 ? ` and ${groups.length - 3} more` : ""}`;
+    const shown = groups.slice(0, 2).map((group) => `{${group.slice(0, 2).map((state) => this.stateNumbered(state)).join(", ")}${group.length > 2 ? ", …" : ""}}`);
+    return `${shown.join(", ")}${groups.length > 2 ? ` and ${groups.length - 2} more` : ""}`;
   }
 
   /** Where a value of an argument stands: "times, row 2, column 1", "start". */
   argument(): string {
-    const name = this.text("argument");
+    const name = String(this.details.argument ?? "argument");
     return this.has("row") ? `${name}, row ${this.ordinal("row")}, column ${this.ordinal("column")}` : name;
   }
 
