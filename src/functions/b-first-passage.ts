@@ -1,10 +1,13 @@
-import { readTimes } from "../cells/numbers";
+import { readFlag } from "../cells/argument";
+import { readNumbers, readTimes } from "../cells/numbers";
 import { readStart } from "../cells/start";
 import { labelsOf } from "../cells/states";
 import { readTargets } from "../cells/targets";
 import { absorptionProbabilitySteps, absorptionSdSteps, meanAbsorptionSteps, timeBeforeSteps } from "../chain/absorption";
 import { hazardSteps, reachedSteps, survivalSteps } from "../chain/first-passage";
+import { percentilesSteps } from "../chain/percentile";
 import { Problem } from "../chain/problem";
+import { quasiStationarySteps } from "../chain/quasi-stationary";
 import type { RateTable } from "../table/rate-table";
 import { ask, tableIn } from "./asking";
 import { asGiven, column, row, table } from "./shapes";
@@ -106,6 +109,30 @@ export function hazard(rates: any[][], start: any[][], targets: any[][], times: 
 }
 
 /**
+ * Time by which a fraction of many has met a target.
+ * @customfunction PERCENTILE
+ * @cancelable
+ * @param rates Rate table: from-rows by to-columns, or a list of from, to, rate; one time unit throughout.
+ * @param start A state by name or number, or one probability for each state in a row or column; the first state when left out.
+ * @param targets The states waited for: names, numbers, or one TRUE/FALSE for each state; the absorbing states when left out.
+ * @param fractions A fraction or a range of fractions, from 0 to below 1; blank cells count as 0.
+ * @returns {any[][]} Times in the shape of the fractions; #N/A where so many never meet a target.
+ */
+export function percentile(rates: any[][], start: any[][], targets: any[][], fractions: any[][]): any[][] {
+  const states = tableIn(rates);
+  const begin = readStart(start, states);
+  const goal = readTargets(targets, states);
+  const asked = readNumbers(fractions, "fractions", { least: 0, below: 1 });
+  const shape = asGiven(asked);
+  return ask(
+    states,
+    () => percentilesSteps(states.generator, begin, goal, asked.values),
+    ({ times, everReached }) =>
+      shape(times, (i, j) => new Problem("percentileNeverMet", { fraction: asked.values[i * asked.columns + j], everReached }, "noAnswer")),
+  );
+}
+
+/**
  * Expected time in each state before the first target is met.
  * @customfunction TIMEBEFORE
  * @cancelable
@@ -122,6 +149,23 @@ export function timeBefore(rates: any[][], start: any[][], targets?: any[][], he
   const shape = row(states, headings ?? null);
   const infinite = (_: number, state: number) => new Problem("timeInfinite", { state, names: labelsOf(states) }, "noAnswer");
   return ask(states, () => timeBeforeSteps(states.generator, begin, goal), (times) => shape(times, infinite));
+}
+
+/**
+ * Shares of the states given that no target has been met so far, after a long time.
+ * @customfunction QUASISTATIONARY
+ * @cancelable
+ * @param rates Rate table: from-rows by to-columns, or a list of from, to, rate; one time unit throughout.
+ * @param [targets] The states waited for: names, numbers, or one TRUE/FALSE for each state; the absorbing states when left out.
+ * @param [headings] TRUE adds the state names on top and the decay rate as a last column.
+ * @returns {any[][]} One row with a share for each state, 0 in targets; #N/A where the shares depend on the start.
+ */
+export function quasiStationary(rates: any[][], targets?: any[][], headings?: any[][]): any[][] {
+  const states = tableIn(rates);
+  const goal = readTargets(targets ?? null, states);
+  const named = readFlag(headings ?? null, "headings");
+  const shape = table(1, states.size + (named ? 1 : 0), headings ?? null, () => ({ top: [...labelsOf(states), "decay rate"], left: null }));
+  return ask(states, () => quasiStationarySteps(states.generator, goal), ({ shares, decayRate }) => shape(named ? [...shares, decayRate] : shares));
 }
 
 /** Why a mean from a state does not exist. */

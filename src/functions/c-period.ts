@@ -2,20 +2,21 @@ import { checkSpill } from "../cells/answer";
 import type { Argument } from "../cells/argument";
 import { readJumpCosts } from "../cells/matrix";
 import { NOT_NEGATIVE, readNumber, readNumbers, readStateCosts, readTimes } from "../cells/numbers";
-import { readStart } from "../cells/start";
+import { readResets } from "../cells/probabilities";
+import { readStart, readStartIfGiven } from "../cells/start";
 import { labelsOf, readStates } from "../cells/states";
 import { readTargets } from "../cells/targets";
 import { absorbingStates } from "../chain/classes";
 import { costOverSteps, costRateSteps, costUntilSteps } from "../chain/cost";
+import { inspectionSharesSteps } from "../chain/inspection";
 import { failureCountSteps, jumpCountsSteps } from "../chain/jumps";
 import { occupanciesSteps } from "../chain/occupancy";
 import { phasedDistributionsSteps, phasedOccupanciesSteps } from "../chain/phased";
 import { Problem } from "../chain/problem";
-import { readStartIfGiven } from "../cells/start";
 import type { Steps } from "../chain/steps";
 import { readStack } from "../table/stack";
 import { ask, tableIn } from "./asking";
-import { asGiven, joined, square, table } from "./shapes";
+import { asGiven, joined, row, square, table } from "./shapes";
 
 // Section C: over a period
 
@@ -169,6 +170,23 @@ export function phasedOccupancy(ratesStack: any[][], durations: any[][], start: 
   const { states, generators, lengths, begin } = phases(ratesStack, durations, start);
   const shape = table(lengths.length, states.size, headings ?? null, () => ({ top: labelsOf(states), left: null }));
   return ask(states, () => phasedOccupanciesSteps(generators, lengths, begin), (rows) => shape(joined(rows)));
+}
+
+/**
+ * Long-run share of time in each state when it is inspected, and put right, at fixed intervals.
+ * @customfunction INSPECTION
+ * @cancelable
+ * @param rates Rate table between inspections: from-rows by to-columns, or a list of from, to, rate; one time unit throughout.
+ * @param resets For each state found (row) the probability of each state left behind (column); a blank row changes nothing. Headings allowed.
+ * @param interval Time from one inspection to the next, above 0, in the rates' time unit.
+ * @param [headings] TRUE adds the state names on top.
+ * @returns {any[][]} One row with a share for each state, averaged over time.
+ */
+export function inspection(rates: any[][], resets: any[][], interval: any[][], headings?: any[][]): any[][] {
+  const states = tableIn(rates);
+  const left = readResets(resets, states);
+  const every = readNumber(interval, "interval", { above: 0 });
+  return ask(states, () => inspectionSharesSteps(states.generator, left, every), row(states, headings ?? null));
 }
 
 function phases(ratesStack: Argument, durations: Argument, start: Argument) {

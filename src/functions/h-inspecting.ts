@@ -1,15 +1,18 @@
 import { auditReading } from "../audit/audit";
 import { refusal, type Answer } from "../cells/answer";
 import type { Argument } from "../cells/argument";
+import { readNumber } from "../cells/numbers";
 import { findingTexts } from "../cells/sentences/findings";
 import { readStart } from "../cells/start";
 import { labelsOf } from "../cells/states";
 import { communicatingClasses } from "../chain/classes";
+import { holdingTimes, jumpChain } from "../chain/jumps";
 import { Problem } from "../chain/problem";
+import { settlingTimeSteps } from "../chain/settling";
 import { read } from "../table/read";
 import type { RateTable } from "../table/rate-table";
 import { ask, tableIn } from "./asking";
-import { table } from "./shapes";
+import { column, square, table } from "./shapes";
 
 // Section H: looking into a table
 
@@ -74,4 +77,45 @@ export function classes(rates: any[][], headings?: any[][]): any[][] {
       return cells;
     },
   );
+}
+
+/**
+ * Probability of each next state at a jump.
+ * @customfunction JUMPCHAIN
+ * @param rates Rate table: from-rows by to-columns, or a list of from, to, rate; one time unit throughout.
+ * @param [headings] TRUE adds the state names around the result.
+ * @returns {any[][]} From-rows by to-columns; a state without exits has 1 on the diagonal.
+ */
+export function nextStates(rates: any[][], headings?: any[][]): any[][] {
+  const states = tableIn(rates);
+  const shape = square(states, headings ?? null);
+  return ask(states, () => jumpChain(states.generator), shape);
+}
+
+/**
+ * Mean stay in each state.
+ * @customfunction HOLDING
+ * @param rates Rate table: from-rows by to-columns, or a list of from, to, rate; one time unit throughout.
+ * @param [headings] TRUE adds the state names on the left.
+ * @returns {any[][]} One column with a time for each state; #N/A in a state without exits.
+ */
+export function holding(rates: any[][], headings?: any[][]): any[][] {
+  const states = tableIn(rates);
+  const shape = column(states, headings ?? null);
+  const names = labelsOf(states);
+  return ask(states, () => holdingTimes(states.generator), (stays) => shape(stays, (state) => new Problem("stayWithoutEnd", { state, names }, "noAnswer")));
+}
+
+/**
+ * Time after which every start is as good as at its long run.
+ * @customfunction SETTLING
+ * @cancelable
+ * @param rates Rate table: from-rows by to-columns, or a list of from, to, rate; one time unit throughout.
+ * @param [tolerance] How near counts as settled, between 0 and 1: the largest difference in any probability; 0.01 when left out.
+ * @returns The time in the rates' time unit; 0 if already settled.
+ */
+export function settling(rates: any[][], tolerance?: any[][]): any {
+  const states = tableIn(rates);
+  const near = readNumber(tolerance ?? null, "tolerance", { above: 0, below: 1 }, 0.01);
+  return ask(states, () => settlingTimeSteps(states.generator, near), (time) => time);
 }

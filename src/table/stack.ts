@@ -18,7 +18,7 @@ export function readStack(cells: Cells, phases: number): RateTable[] {
     const { table, problems } = readSquare(cells.slice(first, first + height).map((row) => row.slice(0, width)), { exact: true });
     if (!table) throw inStack(problems[0], block, first);
     const model = tables[0];
-    if (model && !(model.headings === table.headings && sameNames(model.names, table.names))) throw new Problem("stackDiffers", { block });
+    if (model && !(model.headings === table.headings && sameNames(model.names, table.names))) throw new Problem("stackDiffers", { index: block });
     tables.push(table);
   }
   return tables;

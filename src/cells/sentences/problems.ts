@@ -58,17 +58,49 @@ export const PROBLEM_SENTENCES: Readonly<Record<string, Sentence>> = {
   startShape: (w) => `start: ${w.number("rows")} × ${w.number("columns")} cells were given. Give one state, or ${w.number("size")} probabilities in one row or column.`,
   startProbability: (w) => `${w.argument()}: ${w.quoted("found")} is not a probability. Enter 0 to 1.`,
   startSum: (w) => `start: the probabilities sum to ${w.number("sum")}. Make them sum to 1.`,
+  matrixShape: (w) => `${w.argument()}: ${w.number("rows")} × ${w.number("columns")} cells were given. Give ${w.number("size")} × ${w.number("size")}, or with headings.`,
+  headingBlank: (w) => `${w.argument()}: ${w.text("side")} ${w.ordinal("index")} has no heading. Enter a state's name.`,
+  headingTwice: (w) => `${w.argument()}: ${w.text("side")}s ${w.ordinal("first")} and ${w.ordinal("second")} are both headed "${w.text("name")}". Name each state once.`,
+  resetOutside: (w) => `resets, row ${w.state("row", "rowName")}, column ${w.ordinal("column")}: ${w.number("value")} is not a probability. Enter 0 to 1.`,
+  resetSum: (w) => `resets, row ${w.state("row", "rowName")}: the probabilities sum to ${w.number("sum")}. Make them sum to 1, or leave the row blank.`,
+  stackHeight: (w) => `ratesStack: ${w.number("rows")} rows cannot be shared by ${w.number("phases")} durations. Stack one table of equal height for each.`,
+  stackDiffers: (w) => `ratesStack, table ${w.ordinal("index")}: its states differ from the first table's. Use the same states in the same order.`,
+
+  // tables of probabilities
+  probabilityNotNumber: (w) => `${w.place()}: ${w.quoted("found")} is not a probability. Enter a number from 0 to 1.`,
+  probabilityOutside: (w) => `${w.place()}: ${w.number("value")} is not a probability. Enter 0 to 1.`,
+  probabilityPercent: (w) => `Row ${w.state("row", "rowName")}: the entries sum to ${w.number("sum")}, so they are percent. Divide the table by 100.`,
+  probabilitySum: (w) => `Row ${w.state("row", "rowName")}: the probabilities sum to ${w.number("sum")}. Make each row sum to 1.`,
+  noRealLogarithm: () => "No rates lie near this table: it has no real principal logarithm. Try a table of a shorter period.",
 
   // times
   timeNegative: (w) => `A time of ${w.number("time")} is negative. Enter 0 or more.`,
   timeNotFinite: () => "A time is not a finite number. Enter 0 or more.",
   horizonTooLong: (w) => `Time ${w.number("time")} × largest exit rate ${w.number("rate")} is over ${w.number("limit")}. Shorten it, or ask for the long run.`,
+  fractionOutside: (w) => `fractions: ${w.number("fraction")} cannot be used. Enter 0 or more and below 1.`,
+  toleranceOutside: (w) => `tolerance: ${w.number("tolerance")} cannot be used. Enter a number between 0 and 1.`,
+  intervalNotPositive: (w) => `interval: ${w.number("interval")} cannot be used. Enter a time above 0.`,
+  periodNotPositive: (w) => `period: ${w.number("period")} cannot be used. Enter a time above 0.`,
+  goalOutside: (w) => `goal: ${w.number("goal")} is not a share. Enter 0 to 1.`,
   discountNegative: (w) => `discount: ${w.number("discount")} is negative. Enter 0 or more.`,
 
   // questions without an answer
   noTargets: () => "targets: none are given and no state is absorbing. Name the states that end the wait.",
   severalClosedClasses: (w) => `The long run depends on the start: ${w.groups("classes")} are never left. Give a start.`,
   meanInfinite: (w) => `From ${w.stateOf("state")} a target is not met with certainty: the mean time is infinite.`,
+  targetNotCertain: () => "From this start a target is not met with certainty, so the mean is infinite. Add a discount, or change the targets.",
+  costWithoutEnd: () => "No state is absorbing and no targets are given: the cost grows without end. Give targets, or a discount above 0.",
+  meanIsZero: () => "The start is a target: the mean time is 0 and no rate changes it by a percentage.",
+  shareIsZero: () => "The share in these states is 0, so no rate changes it by a percentage.",
+  costIsZero: () => "The long-run cost is 0, so no rate changes it by a percentage.",
+  percentileNeverMet: (w) => `Only ${w.number("everReached")} ever meet a target, so the fraction ${w.number("fraction")} is never reached.`,
+  onlyTargets: () => "targets: every state is one. Leave at least one state that is no target.",
+  limitDependsOnStart: (w) => `The shares depend on the start: ${w.groups("classes")} can each last longest.`,
+  goalNotReached: (w) => `No rate of this arrow gives ${w.number("goal")}: the share stays between ${w.number("lowest")} and ${w.number("highest")}.`,
+  noFailures: () => "In the long run no failure occurs, so this time does not exist.",
+  failureNotCertain: () => "From this start a failure is not certain, so the mean time to the first one is infinite.",
+  stayWithoutEnd: (w) => `No arrow leaves ${w.stateOf("state")}: the stay has no end.`,
+  tooMuchWork: (w) => `The answer for ${w.number("states")} states takes too long at these times. Use fewer states or a shorter time.`,
   survivalGone: (w) => `At time ${w.number("time")} a target has been met with certainty, or as good as: there is no hazard.`,
   timeInfinite: (w) => `The time in ${w.stateOf("state")} before a target is infinite: it can be entered and no target met from it.`,
   ratesTooFarApart: () => "The rates are so far apart that products leave the number range. Use a time unit nearer to the rates.",
@@ -94,9 +126,14 @@ function capital(word: string): string {
   return word.charAt(0).toUpperCase() + word.slice(1);
 }
 
+/** Words before a sentence that concerns one of several stacked tables as a whole. */
+function inBlock(problem: Problem, sentence: Sentence): Sentence {
+  return typeof problem.details.block === "number" ? (w) => `Table ${w.ordinal("block")}: ${sentence(w)}` : sentence;
+}
+
 /** The sentence of a problem, at most 120 characters whatever its details. */
 export function sentenceOf(problem: Problem): string {
   const sentence = PROBLEM_SENTENCES[problem.code];
   if (!sentence) throw new RangeError(`No sentence for problem code ${problem.code}.`);
-  return fit(problem.details, sentence);
+  return fit(problem.details, inBlock(problem, sentence));
 }

@@ -70,7 +70,6 @@ export class Words {
 
   /** Where a rate stands: "Row 3 (Degraded), column 1" in a square, "Row 5" of the range in a list. */
   place(): string {
-    if (this.has("block")) return `Table ${this.ordinal("block")}, row ${this.ordinal("row")}, column ${this.ordinal("column")}`;
     if (this.has("listRow")) return `Row ${this.ordinal("listRow")}`;
     if (this.has("row")) return `Row ${this.state("row", "rowName")}, column ${this.ordinal("column")}`;
     if (this.has("from")) return `Row ${this.state("from", "fromName")}, column ${this.ordinal("to")}`;
