@@ -1,17 +1,21 @@
 import { auditReading } from "../audit/audit";
-import { refusal, type Answer } from "../cells/answer";
-import type { Argument } from "../cells/argument";
-import { readNumber } from "../cells/numbers";
+import { checkSpill, refusal, type Answer } from "../cells/answer";
+import { readFlag, type Argument } from "../cells/argument";
+import { NOT_NEGATIVE, readNumber } from "../cells/numbers";
 import { findingTexts } from "../cells/sentences/findings";
 import { readStart } from "../cells/start";
 import { labelsOf } from "../cells/states";
 import { communicatingClasses } from "../chain/classes";
 import { holdingTimes, jumpChain } from "../chain/jumps";
 import { Problem } from "../chain/problem";
+import { samplePath as simulate } from "../chain/sample-path";
 import { settlingTimeSteps } from "../chain/settling";
+import { compareTables, type CompareRow } from "../table/compare";
+import { fingerprint as fingerprintOf } from "../table/fingerprint";
 import { read } from "../table/read";
 import type { RateTable } from "../table/rate-table";
 import { ask, tableIn } from "./asking";
+import { SEED } from "./g-data";
 import { column, square, table } from "./shapes";
 
 // Section H: looking into a table
@@ -118,4 +122,67 @@ export function settling(rates: any[][], tolerance?: any[][]): any {
   const states = tableIn(rates);
   const near = readNumber(tolerance ?? null, "tolerance", { above: 0, below: 1 }, 0.01);
   return ask(states, () => settlingTimeSteps(states.generator, near), (time) => time);
+}
+
+/** Rows of a simulated history, the heading row included. */
+const LONGEST_HISTORY = 50_000;
+
+/**
+ * One simulated history: when which state is entered.
+ * @customfunction SAMPLEPATH
+ * @cancelable
+ * @param rates Rate table: from-rows by to-columns, or a list of from, to, rate; one time unit throughout.
+ * @param start A state by name or number, or one probability for each state in a row or column; the first state when left out.
+ * @param horizon One length of time, 0 or more, in the rates' time unit; a blank cell counts as 0.
+ * @param seed A whole number, 0 or more; the same seed gives the same history.
+ * @param [headings] TRUE adds a heading row.
+ * @returns {any[][]} One row for each entry: time, state.
+ */
+export function samplePath(rates: any[][], start: any[][], horizon: any[][], seed: any[][], headings?: any[][]): any[][] {
+  const states = tableIn(rates);
+  const begin = readStart(start, states);
+  const until = readNumber(horizon, "horizon", NOT_NEGATIVE);
+  const from = readNumber(seed, "seed", SEED);
+  const top = readFlag(headings ?? null, "headings") ? [["time", "state"]] : [];
+  return ask(
+    states,
+    () => simulate(states.generator, begin, until, from, LONGEST_HISTORY - top.length),
+    ({ times, states: entered }) => {
+      const labels = labelsOf(states);
+      return [...top, ...times.map((time, k) => [time, labels[entered[k]]])];
+    },
+  );
+}
+
+/**
+ * Eight characters that stay the same as long as the table's states and rates do.
+ * @customfunction FINGERPRINT
+ * @param rates Rate table: from-rows by to-columns, or a list of from, to, rate.
+ * @returns Eight characters; not a protection against forgery.
+ */
+export function fingerprint(rates: any[][]): any {
+  const states = tableIn(rates);
+  return ask(states, () => fingerprintOf(states), (characters) => characters);
+}
+
+/**
+ * Arrows that differ between two rate tables, with before, after and their ratio.
+ * @customfunction COMPARE
+ * @param before Rate table before.
+ * @param after Rate table after; states are matched by name, or by number where a table has no names.
+ * @returns {any[][]} One row for each difference: from, to, before, after, ratio; states on one side only come first.
+ */
+export function compare(before: any[][], after: any[][]): any[][] {
+  const left = tableIn(before, "before");
+  const right = tableIn(after, "after");
+  return ask(null, () => compareTables(left, right), (rows) => {
+    checkSpill(rows.length, 5);
+    return rows.length > 0 ? rows.map(differenceCells) : [["no difference", "", "", "", ""]];
+  });
+}
+
+function differenceCells(row: CompareRow): Answer[number] {
+  if (row.kind !== "arrow") return [row.state, "", ...(row.kind === "onlyBefore" ? ["present", "absent"] : ["absent", "present"]), ""];
+  const isNew = row.before === 0;
+  return [row.from, row.to, row.before, row.after, isNew ? refusal(new Problem("arrowIsNew", { fromName: row.from, toName: row.to }, "noAnswer")) : row.ratio];
 }

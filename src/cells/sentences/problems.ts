@@ -17,10 +17,10 @@ export const PROBLEM_SENTENCES: Readonly<Record<string, Sentence>> = {
 
   // a rate and its place
   cellFault: (w) => `${w.place()}: the cell holds the error ${w.text("fault")}. Correct it first.`,
-  rateNotNumber: (w) => `${w.place()}: "${w.text("found")}" is not a rate. Enter a number, 0 or more.`,
+  rateNotNumber: (w) => `${w.place()}: "${w.text("found")}" is not a ${w.quantity()}. Enter a number, 0 or more.`,
   rateIsText: (w) => `${w.place()}: "${w.text("found")}" is text. Enter it as a number, such as ${w.number("reading")}.`,
-  rateNegative: (w) => `${w.place()}: ${w.number("rate")} is not a rate. Enter 0 or more.`,
-  rateNotFinite: (w) => `${w.place()}: the rate is not a finite number. Enter a number, 0 or more.`,
+  rateNegative: (w) => `${w.place()}: ${w.number("rate")} is not a ${w.quantity()}. Enter 0 or more.`,
+  rateNotFinite: (w) => `${w.place()}: the ${w.quantity()} is not a finite number. Enter a number, 0 or more.`,
   rateOutOfRange: (w) => `${w.place()}: ${w.number("rate")} is not between 1E-150 and 1E+150. Change the time unit.`,
   diagonalPositive: (w) => `${w.place()}: the diagonal is ${w.number("given")}. Enter minus the exits, -${w.number("exits")}, or clear it.`,
   diagonalWithoutExits: (w) => `${w.place()}: the diagonal is ${w.number("given")}, but the row has no exits. Clear it or enter the exits.`,
@@ -29,6 +29,7 @@ export const PROBLEM_SENTENCES: Readonly<Record<string, Sentence>> = {
     `Row ${w.state("row", "rowName")}: diagonal ${w.number("given")} and exits ${w.number("exits")} differ by rounding. Clear the diagonal.`,
 
   // the rows of a list
+  listEmpty: () => "The list holds no arrow. Enter rows of from-state, to-state, rate.",
   listNameMissing: (w) => `Row ${w.ordinal("listRow")}: ${w.quoted("found")} in place of a state name. Enter the names of both states as text.`,
   arrowToItself: (w) =>
     w.has("listRow")
@@ -66,6 +67,38 @@ export const PROBLEM_SENTENCES: Readonly<Record<string, Sentence>> = {
   stackHeight: (w) => `ratesStack: ${w.number("rows")} rows cannot be shared by ${w.number("phases")} durations. Stack one table of equal height for each.`,
   stackDiffers: (w) => `ratesStack, table ${w.ordinal("index")}: its states differ from the first table's. Use the same states in the same order.`,
 
+  // what a table is built from
+  notWholeNumber: (w) => `${w.argument()}: ${w.number("value")} cannot be used. Enter a whole number, ${w.number("least")} or more.`,
+  notRate: (w) => `${w.argument()}: ${w.number("value")} is not a rate. Enter 0, or a number between 1E-150 and 1E+150.`,
+  notBetween: (w) => `${w.argument()}: ${w.number("value")} cannot be used. Enter a number between ${w.number("least")} and ${w.number("most")}.`,
+  notWithin: (w) => `${w.argument()}: ${w.number("value")} cannot be used. Enter a number from ${w.number("least")} to ${w.number("most")}.`,
+  unequalLengths: (w) => `${w.number("up")} upRates and ${w.number("down")} downRates were given. Give as many downward as upward.`,
+  runningAboveUnits: (w) => `running: ${w.number("running")} cannot run when there are ${w.number("units")} units. Enter no more than the units.`,
+  placesBelowServers: (w) => `places: ${w.number("places")} places do not hold ${w.number("servers")} servers' customers. Enter at least as many.`,
+  stateWithoutExits: (w) => `state: no arrow leaves "${w.text("name")}", so its stay has no mean to keep. Choose a state with exits.`,
+  groupsNotOnePerState: (w) => `groups: ${w.number("groups")} names were given. Give ${w.number("states")}, one for each state.`,
+  groupMissing: (w) => `groups: state ${w.state("state", "name")} has no group name. Enter one for each state.`,
+  notLumpable: (w) =>
+    `groups: ${w.text("stateName")} and ${w.text("otherName")} go to ${w.text("group")} at ${w.number("rate")} and ${w.number("otherRate")}. Split them, or set approximate.`,
+
+  // counts and logs
+  countOnDiagonal: (w) => `${w.place()}: a jump from a state to itself is no jump. Clear the diagonal of the counts.`,
+  countNotWhole: (w) => `${w.place()}: ${w.number("count")} is not a count. Enter a whole number.`,
+  timesNotOnePerState: (w) => `timeInState: ${w.number("times")} times were given. Give ${w.number("states")}, one for each state.`,
+  timeInStateNegative: (w) => `timeInState, state ${w.state("state", "name")}: ${w.number("time")} cannot be used. Enter 0 or more.`,
+  countsWithoutTime: (w) => `timeInState, state ${w.state("state", "name")}: 0, but ${w.number("count")} jumps left it. Enter the time observed.`,
+  logEmpty: () => "log: it has no rows. Give rows of unit, time, state entered.",
+  logShape: (w) => `log: ${w.number("columns")} columns are filled. Give three: unit, time, state entered.`,
+  logTime: (w) => `log, row ${w.ordinal("row")}: ${w.quoted("found")} is not a time. Enter a number or a date.`,
+  logNameMissing: (w) => `log, row ${w.ordinal("row")}: the ${w.text("what")} is blank. Enter its name.`,
+  logAfterEnd: (w) => `log, row ${w.ordinal("row")}: time ${w.number("time")} is after the end, ${w.number("end")}. Correct the row or the end.`,
+  logTwoStates: (w) =>
+    `log, rows ${w.ordinal("firstRow")} and ${w.ordinal("row")}: ${w.text("unit")} enters two states at time ${w.number("time")}. Correct one.`,
+  exposureNotPositive: (w) => `exposure: ${w.number("exposure")} cannot be used. Enter a time above 0.`,
+  noEventToEndAt: () => "count: 0 events, but the observation is said to end at the last one. Enter FALSE for failureTruncated.",
+  arrowIsNew: (w) => `${w.text("fromName")} to ${w.text("toName")} is new, so there is no ratio to a rate before.`,
+  pathTooLong: (w) => `The history has more than ${w.number("longest")} rows. Shorten the horizon, ${w.number("horizon")}.`,
+
   // tables of probabilities
   probabilityNotNumber: (w) => `${w.place()}: ${w.quoted("found")} is not a probability. Enter a number from 0 to 1.`,
   probabilityOutside: (w) => `${w.place()}: ${w.number("value")} is not a probability. Enter 0 to 1.`,
@@ -95,7 +128,7 @@ export const PROBLEM_SENTENCES: Readonly<Record<string, Sentence>> = {
   costIsZero: () => "The long-run cost is 0, so no rate changes it by a percentage.",
   percentileNeverMet: (w) => `Only ${w.number("everReached")} ever meet a target, so the fraction ${w.number("fraction")} is never reached.`,
   onlyTargets: () => "targets: every state is one. Leave at least one state that is no target.",
-  limitDependsOnStart: (w) => `The shares depend on the start: ${w.groups("classes")} can each last longest.`,
+  limitDependsOnStart: (w) => `The shares depend on the start: ${w.groups("classes")} last longest, but not every state leads there.`,
   goalNotReached: (w) => `No rate of this arrow gives ${w.number("goal")}: the share stays between ${w.number("lowest")} and ${w.number("highest")}.`,
   noFailures: () => "In the long run no failure occurs, so this time does not exist.",
   failureNotCertain: () => "From this start a failure is not certain, so the mean time to the first one is infinite.",

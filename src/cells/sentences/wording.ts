@@ -68,6 +68,11 @@ export class Words {
     return values.length > 3 ? `${shown.join(", ")} and ${values.length - 3} more` : shown.join(", ");
   }
 
+  /** What a cell of a table ought to hold: a rate, or a count where the table holds counts. */
+  quantity(): string {
+    return this.has("quantity") ? String(this.details.quantity) : "rate";
+  }
+
   /** Where a rate stands: "Row 3 (Degraded), column 1" in a square, "Row 5" of the range in a list. */
   place(): string {
     if (this.has("listRow")) return `Row ${this.ordinal("listRow")}`;

@@ -32,11 +32,12 @@ const LONG: Record<string, Detail> = new Proxy({} as Record<string, Detail>, {
   get: (_, key: string): Detail | undefined => {
     if (key === "names") return Array.from({ length: 20_000 }, () => LONG_NAME);
     if (key === "block") return undefined;
-    if (/classes|groups/.test(key)) return [[0, 1, 2], [3], [4], [5]];
+    if (key === "quantity" || key === "what") return "count";
+    if (key === "classes") return [[0, 1, 2], [3], [4], [5]];
     if (key === "side") return "column";
     if (key === "argument") return "timeInState";
-    if (/^(row|column|index|first|second|firstRow|from|to|state|named|number|size|rows|columns|cells|most|states)$/.test(key)) return 16_383;
-    if (/name|found|fault|other|unit|label|text|group/i.test(key)) return LONG_NAME;
+    if (/^(row|column|index|first|second|firstRow|from|to|state|named|number|size|rows|columns|cells|most|states|other|end|count|times|units|running|places|servers|up|down|longest|groups)$/.test(key)) return 16_383;
+    if (/name|found|fault|unit|label|text|group$/i.test(key)) return LONG_NAME;
     if (/^(least|above|most|below)$/.test(key)) return 0.001;
     return -1.2345678901234567e-123;
   },
