@@ -1,6 +1,6 @@
 /** The practice workbook as the pane sees it. */
-import type { Fact, HostValue, RangeAddress, RangeReading, SheetInfo, Workbook, WorkbookEvent, Write } from "../../pane/workbook";
-import { COLUMN_LIMIT, ROW_LIMIT, toCanonical, type Area, type Book, type CellView, type Edit } from "./engine";
+import type { Fact, HostValue, Place, RangeAddress, RangeReading, SheetInfo, Workbook, WorkbookEvent, Write } from "../../pane/workbook";
+import { cellText, COLUMN_LIMIT, ROW_LIMIT, toCanonical, type Area, type Book, type CellView, type Edit } from "./engine";
 
 /** What the adapter needs of the page: the selection, and the open edit taken into its cell before anything is read or written. */
 export interface PageView {
@@ -119,6 +119,20 @@ export class PracticeWorkbook implements Workbook {
       }),
     );
     return edits;
+  }
+
+  async placeFormula(place: Place, formula: string, size: { readonly rows: number; readonly columns: number }, label: string): Promise<void> {
+    const sheet = this.sheetId(place.sheet);
+    if (place.row + size.rows > ROW_LIMIT || place.column + size.columns > COLUMN_LIMIT) throw new Error(`${cellText(place.row, place.column)} is too near the edge of the sheet for ${size.rows} × ${size.columns} cells.`);
+    await this.book.whenIdle();
+    for (let row = place.row; row < place.row + size.rows; row += 1) {
+      for (let column = place.column; column < place.column + size.columns; column += 1) {
+        const filled = this.book.view(sheet, row, column).kind !== "blank" || this.book.content(sheet, row, column).formula !== null;
+        if (filled) throw new Error(`${cellText(row, column)} is filled; the answer needs ${size.rows} × ${size.columns} empty cells from ${cellText(place.row, place.column)} on.`);
+      }
+    }
+    this.change([{ kind: "put", sheet, row: place.row, column: place.column, value: formula }], label);
+    await this.book.whenIdle();
   }
 
   async select(range: RangeAddress): Promise<void> {
