@@ -1,10 +1,11 @@
 /** The workbook: what a page or a test does with it. Sheets are addressed by their id, rows and columns from 0. */
 import { columnOf, keyOf, rowOf, type Area, type Rect } from "./address";
-import { BUSY, Calculation } from "./calculation";
+import { Calculation } from "./calculation";
 import type { CustomFunctionHost } from "./custom-functions";
 import { EditRefused, perform, sheetNameProblem, type Edit } from "./edits";
 import { entryText } from "./entry";
 import { FILE_VERSION, readFile, writeSheet, type BookFile } from "./file";
+import { BUSY } from "./formula-cell";
 import { CANONICAL, type Locale } from "./locale";
 import { formatValue } from "./number-format";
 import { EMPTY, newProperties, Sheet, type Content } from "./sheet";

@@ -3,51 +3,20 @@
  * are marked and evaluated anew. Evaluation is by demand and without recursion from cell to cell: a formula that
  * meets a marked one gives way to it and comes back, so that chains of any length and references known only on
  * evaluation are handled alike, and a formula that is met again while it waits is known to lead back to itself.
+ * Longer than most files, since marking, evaluating and spilling share one state.
  */
 import { cellText, COLUMN_LIMIT, keyOf, overlap, ROW_LIMIT, type Area, type Rect } from "./address";
 import type { CustomFunctionHost, CustomOutcome } from "./custom-functions";
 import { DependencyIndex } from "./dependency-index";
 import { Evaluation, type CustomParameter, type Sight } from "./evaluate";
-import { readFormula, type Formula } from "./formula";
+import { readFormula } from "./formula";
+import { BUSY, FormulaCell } from "./formula-cell";
 import type { Locale } from "./locale";
 import { GRID_LIMIT } from "./operators";
 import { ordinaryFunction } from "./functions/library";
-import { isEmpty, type Sheet } from "./sheet";
+import { eachCell, type Sheet } from "./sheet";
+import { clipped, obstacle } from "./spill";
 import { Fault, isGrid, type Grid, type Scalar, type Value } from "./value";
-
-/** Answers of custom functions that came later than asked, by the order of the calls in the formula. */
-interface LateAnswers {
-  readonly answers: Map<number, Value>;
-  readonly cancels: Set<() => void>;
-}
-
-export class FormulaCell {
-  value: Scalar = null;
-  /** Where the result is shown; one cell unless it spills. */
-  extent: Rect;
-  /** Areas filed in the index of readers. */
-  reads: Area[] = [];
-  /** The area that a result fills or wants to fill, filed in the index of watchers. */
-  watched: Area | null = null;
-  marked = false;
-  waiting = false;
-  prepared = false;
-  rounds = 0;
-  late: LateAnswers | null = null;
-
-  constructor(
-    readonly sheet: Sheet,
-    readonly row: number,
-    readonly column: number,
-    readonly formula: Formula,
-  ) {
-    this.extent = { row, column, rows: 1, columns: 1 };
-  }
-
-  get area(): Area {
-    return { sheet: this.sheet.id, ...this.extent };
-  }
-}
 
 /** Thrown by a reader that meets formulas still to be evaluated. */
 class GiveWay {
@@ -56,7 +25,6 @@ class GiveWay {
 
 /** Thrown where an answer is still on its way. */
 const ON_ITS_WAY = Symbol("on its way");
-export const BUSY = new Fault("#BUSY!");
 /** Evaluations of one formula in one run; more can only come from results that push each other about. */
 const ROUND_LIMIT = 100;
 
@@ -178,7 +146,7 @@ export class Calculation {
 
   private drop(cell: FormulaCell): void {
     this.cancel(cell);
-    this.unspill(cell);
+    this.reshape(cell, null);
     for (const area of cell.reads) this.readers.remove(area, cell);
     this.watch(cell, null);
     this.volatile.delete(cell);
@@ -388,41 +356,15 @@ export class Calculation {
     }
     const extent: Rect = { row: cell.row, column: cell.column, rows: grid.length, columns: grid[0]!.length };
     const readsItself = cell.formula.strict && cell.reads.some((area) => area.sheet === cell.sheet.id && overlap(area, extent));
-    const obstacle = readsItself ? this.circle([cell]) : this.obstacle(cell, extent);
-    if (obstacle) {
-      cell.value = obstacle;
+    const refused = readsItself ? this.circle([cell]) : obstacle(cell, extent);
+    if (refused) {
+      cell.value = refused;
       this.reshape(cell, null);
       this.watch(cell, { sheet: cell.sheet.id, ...clipped(extent) });
       return;
     }
     cell.value = grid[0]![0] ?? 0;
     this.reshape(cell, { extent, grid });
-  }
-
-  private obstacle(cell: FormulaCell, extent: Rect): Fault | null {
-    const { sheet } = cell;
-    if (extent.row + extent.rows > ROW_LIMIT || extent.column + extent.columns > COLUMN_LIMIT) {
-      return new Fault("#SPILL!", `The result has ${extent.rows} rows and ${extent.columns} columns and runs off the sheet.`);
-    }
-    const last = cellText(extent.row + extent.rows - 1, extent.column + extent.columns - 1);
-    const room = `the result fills ${cellText(extent.row, extent.column)}:${last}`;
-    const merged = sheet.properties.merged.find((area) => overlap(area, extent));
-    if (merged) return new Fault("#SPILL!", `The merged cells at ${cellText(merged.row, merged.column)} are in the way: ${room}.`);
-    for (let row = extent.row; row < extent.row + extent.rows; row++) {
-      for (let column = extent.column; column < extent.column + extent.columns; column++) {
-        if (row === cell.row && column === cell.column) continue;
-        const key = keyOf(row, column);
-        const content = sheet.contents.get(key);
-        if (content && !isEmpty(content)) return new Fault("#SPILL!", `${cellText(row, column)} is in the way: ${room}. Empty it or move the formula.`);
-        const owner = sheet.spilled.get(key)?.owner;
-        if (owner && owner !== cell) return new Fault("#SPILL!", `The result of ${cellText(owner.row, owner.column)} is in the way at ${cellText(row, column)}: ${room}.`);
-      }
-    }
-    return null;
-  }
-
-  private unspill(cell: FormulaCell): void {
-    this.reshape(cell, null);
   }
 
   /** Moves the result to its new extent; whoever reads or waits for cells that a change of shape touched is marked. */
@@ -474,18 +416,6 @@ export class Calculation {
     const keys = this.changes.get(sheet.id);
     if (keys) keys.add(key);
     else this.changes.set(sheet.id, new Set([key]));
-  }
-}
-
-const clipped = (rect: Rect): Rect => ({
-  ...rect,
-  rows: Math.min(rect.rows, ROW_LIMIT - rect.row),
-  columns: Math.min(rect.columns, COLUMN_LIMIT - rect.column),
-});
-
-function eachCell(rect: Rect, visit: (row: number, column: number) => void): void {
-  for (let row = rect.row; row < rect.row + rect.rows; row++) {
-    for (let column = rect.column; column < rect.column + rect.columns; column++) visit(row, column);
   }
 }
 

@@ -89,7 +89,7 @@ export class CustomFunctionHost {
   /** Runs the script with the stand-in as its only host global, as a plain runtime would. Not for pages, whose policy forbids it. */
   load(script: string, metadata: FunctionsFile): void {
     // The script is the project's own build; a function body gives it a global name that no other script sees.
-    // eslint-disable-next-line @typescript-eslint/no-implied-eval
+     
     (new Function("CustomFunctions", script) as (standIn: unknown) => void)(this.standIn);
     this.useMetadata(metadata);
   }

@@ -2,6 +2,7 @@
 import { COLUMN_LIMIT, columnOf, contains, keyOf, overlap, ROW_LIMIT, rowOf, type Area, type Rect } from "./address";
 import { readEntry } from "./entry";
 import { renameInFormula } from "./formula";
+import { impliedFormat } from "./implied-format";
 import type { Locale } from "./locale";
 import { EMPTY, isDefault, newProperties, Sheet, type Content } from "./sheet";
 import type { Transaction } from "./transaction";
@@ -73,8 +74,14 @@ function typeInto({ sheet: id, row, column, text }: Extract<Edit, { kind: "type"
   const key = keyOf(row, column);
   const before = sheet.contents.get(key) ?? EMPTY;
   const entry = readEntry(text, ground.locale);
-  const format = entry.format !== null && before.format === "General" ? entry.format : before.format;
+  const asked = entry.formula === null ? entry.format : impliedFormat(entry.formula, (name, atRow, atColumn) => formatAt(name, atRow, atColumn, sheet, ground));
+  const format = asked !== null && before.format === "General" ? asked : before.format;
   setContent(sheet, key, { ...before, value: entry.value, formula: entry.formula, format }, ground.transaction);
+}
+
+function formatAt(sheetName: string | null, row: number, column: number, own: Sheet, ground: EditGround): string {
+  const sheet = sheetName === null ? own : ground.sheets.find((entry) => entry.properties.name.toLowerCase() === sheetName.toLowerCase());
+  return sheet?.contents.get(keyOf(row, column))?.format ?? "General";
 }
 
 function put({ sheet: id, row, column, value, format }: Extract<Edit, { kind: "put" }>, ground: EditGround): void {

@@ -241,7 +241,7 @@ function numberSection(value: number, section: Section, locale: Locale): string 
         result += wholeText;
         wroteWhole = true;
       }
-      if (fractionLength > 0 || decimalDigits.some((digit) => digit.text === "0")) result += locale.decimal;
+      result += locale.decimal;
     } else if (piece.kind === "exponent") {
       result += `E${exponent < 0 ? "-" : piece.plus ? "+" : ""}`;
     } else if (piece.kind === "digit") {

@@ -1,6 +1,6 @@
 /** One sheet: what was entered, and beside it what the formulas made of it. */
-import { columnOf, enclosing, keyOf, rowOf, type Rect } from "./address";
-import type { FormulaCell } from "./calculation";
+import { columnOf, contains, enclosing, keyOf, rowOf, type Rect } from "./address";
+import type { FormulaCell } from "./formula-cell";
 import type { Scalar } from "./value";
 
 /** What a person put into a cell. Never changed in place, so that undo can keep the old one. */
@@ -65,14 +65,15 @@ export class Sheet {
 
   /** Keeps the bounds as long as they only grow; a cell emptied on their edge makes them be counted anew. */
   private touched(key: number, filled: boolean): void {
-    if (this.bounds === undefined) return;
+    const { bounds } = this;
+    if (bounds === undefined) return;
     const row = rowOf(key);
     const column = columnOf(key);
     if (filled) {
+      if (bounds !== null && contains(bounds, row, column)) return;
       const cell = { row, column, rows: 1, columns: 1 };
-      this.bounds = this.bounds === null ? cell : enclosing(this.bounds, cell);
-    } else if (this.bounds) {
-      const { bounds } = this;
+      this.bounds = bounds === null ? cell : enclosing(bounds, cell);
+    } else if (bounds) {
       const onEdge = row === bounds.row || column === bounds.column || row === bounds.row + bounds.rows - 1 || column === bounds.column + bounds.columns - 1;
       if (onEdge) this.bounds = undefined;
     }
@@ -112,5 +113,11 @@ export class Sheet {
     const content = this.contents.get(key);
     if (content && content.value !== null) return content.value;
     return this.spilled.get(key)?.value ?? null;
+  }
+}
+
+export function eachCell(rect: Rect, visit: (row: number, column: number) => void): void {
+  for (let row = rect.row; row < rect.row + rect.rows; row++) {
+    for (let column = rect.column; column < rect.column + rect.columns; column++) visit(row, column);
   }
 }

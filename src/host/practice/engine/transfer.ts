@@ -4,7 +4,7 @@ import type { Book } from "./book";
 import { EditRefused, setContent } from "./edits";
 import { readEntry } from "./entry";
 import { shiftFormula } from "./formula";
-import { EMPTY, type Content, type Sheet } from "./sheet";
+import { eachCell, EMPTY, type Content, type Sheet } from "./sheet";
 import type { Transaction } from "./transaction";
 
 /** What was copied: text for other programs, and the cells themselves for this one. */
@@ -149,16 +149,10 @@ export function move(book: Book, from: Area, to: { readonly sheet: string; reado
   book.change(label, (transaction, sheetById) => {
     const source = sheetById(from.sheet);
     const sheet = sheetById(to.sheet);
-    eachOf(clip.area, (row, column) => source.contents.has(keyOf(row, column)) && transaction.setContent(source, keyOf(row, column), undefined));
+    eachCell(clip.area, (row, column) => source.contents.has(keyOf(row, column)) && transaction.setContent(source, keyOf(row, column), undefined));
     clip.contents.forEach((line, row) => line.forEach((content, column) => setContent(sheet, keyOf(to.row + row, to.column + column), content, transaction)));
   });
   return target;
-}
-
-function eachOf(area: Area, visit: (row: number, column: number) => void): void {
-  for (let row = area.row; row < area.row + area.rows; row++) {
-    for (let column = area.column; column < area.column + area.columns; column++) visit(row, column);
-  }
 }
 
 /**

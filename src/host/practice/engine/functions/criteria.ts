@@ -5,8 +5,8 @@ import { compare, Fault, type Scalar } from "../value";
 
 /** A pattern with * for any text, ? for any letter and ~ before a literal one, as a test of the whole text. */
 export function wildcard(pattern: string): RegExp {
-  const body = pattern.replace(/~([*?~])|([*?])|([\\^$.|+()[\]{}/-])/g, (_, literal: string | undefined, wild: string | undefined, special: string | undefined) =>
-    literal !== undefined ? `\\${literal}` : wild === "*" ? "[^]*" : wild === "?" ? "[^]" : `\\${special}`,
+  const body = pattern.replace(/~([*?~])|([*?])|([\\^$.|+()[\]{}/])/g, (_, literal: string | undefined, wild: string | undefined, special: string | undefined) =>
+    literal === "~" ? "~" : literal !== undefined ? `\\${literal}` : wild === "*" ? "[^]*" : wild === "?" ? "[^]" : `\\${special}`,
   );
   return new RegExp(`^${body}$`, "iu");
 }

@@ -1,6 +1,6 @@
 /** How an ordinary function is described: name, parameters, what it does, and how its values are taken. */
 import { numberInText } from "../entry";
-import { Evaluation, type OrdinaryFunction } from "../evaluate";
+import { type Evaluation, type OrdinaryFunction } from "../evaluate";
 import type { Expression } from "../expression";
 import { lift, textOf } from "../operators";
 import { Fault, isFaultCode, isGrid, Lambda, Reference, toLogical, toNumber, type Grid, type Scalar, type Value } from "../value";

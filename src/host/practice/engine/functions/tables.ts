@@ -1,9 +1,9 @@
 /** Functions that make tables of tables. */
-import { determinant, inverse, Matrix } from "ml-matrix";
 import type { Evaluation } from "../evaluate";
 import { GRID_LIMIT } from "../operators";
 import { compare, Fault, isGrid, toLogical, type Grid, type Scalar, type Value } from "../value";
 import { asGrid, define, firstFault, fromLibrary, numberFrom, numbersIn, type Definition } from "./define";
+import { invert, product } from "./matrix";
 
 const EMPTY_TABLE = "Nothing is left of the table.";
 const transpose = (grid: Grid): Scalar[][] => grid[0]!.map((_, column) => grid.map((row) => row[column]!));
@@ -33,12 +33,12 @@ function matrixOf(value: Value, evaluation: Evaluation): number[][] | Fault {
   return grid.every((row) => row.every((entry) => typeof entry === "number")) ? (grid as number[][]) : new Fault("#VALUE!", "The table must hold numbers only.");
 }
 
-function ofSquare(name: string, description: string, apply: (matrix: Matrix) => Value): Definition {
+function ofSquare(name: string, description: string, apply: (matrix: number[][]) => Value): Definition {
   return define(name, "table", description, ([table], evaluation) => {
     const numbers = matrixOf(table!, evaluation);
     if (numbers instanceof Fault) return numbers;
     if (numbers.length !== numbers[0]!.length) return new Fault("#VALUE!", `The table has ${numbers.length} rows and ${numbers[0]!.length} columns; it must be square.`);
-    return apply(new Matrix(numbers));
+    return apply(numbers);
   });
 }
 
@@ -224,14 +224,11 @@ export const tables: readonly Definition[] = [
     if (left instanceof Fault) return left;
     if (right instanceof Fault) return right;
     if (left[0]!.length !== right.length) return new Fault("#VALUE!", `The first table has ${left[0]!.length} columns and the second ${right.length} rows; they must agree.`);
-    return sealed(new Matrix(left).mmul(new Matrix(right)).to2DArray());
+    return sealed(product(left, right));
   }),
   ofSquare("MINVERSE", "The inverse matrix.", (matrix) => {
-    try {
-      return sealed(inverse(matrix).to2DArray());
-    } catch {
-      return new Fault("#NUM!", "The matrix has no inverse.");
-    }
+    const { inverse } = invert(matrix);
+    return inverse === null ? new Fault("#NUM!", "The matrix has no inverse.") : sealed(inverse);
   }),
-  ofSquare("MDETERM", "The determinant.", (matrix) => fromLibrary(determinant(matrix))),
+  ofSquare("MDETERM", "The determinant.", (matrix) => fromLibrary(invert(matrix).determinant)),
 ];

@@ -1,0 +1,42 @@
+/** A formula in its cell: its present value, what it reads, and where it stands in a recalculation. */
+import type { Area, Rect } from "./address";
+import type { Formula } from "./formula";
+import type { Sheet } from "./sheet";
+import { Fault, type Scalar, type Value } from "./value";
+
+/** The value of a cell whose answer is on its way. */
+export const BUSY = new Fault("#BUSY!");
+
+/** Answers of custom functions that came later than asked, by the order of the calls in the formula. */
+export interface LateAnswers {
+  readonly answers: Map<number, Value>;
+  readonly cancels: Set<() => void>;
+}
+
+export class FormulaCell {
+  value: Scalar = null;
+  /** Where the result is shown; one cell unless it spills. */
+  extent: Rect;
+  /** Areas filed in the index of readers. */
+  reads: Area[] = [];
+  /** The area that a result fills or wants to fill, filed in the index of watchers. */
+  watched: Area | null = null;
+  marked = false;
+  waiting = false;
+  prepared = false;
+  rounds = 0;
+  late: LateAnswers | null = null;
+
+  constructor(
+    readonly sheet: Sheet,
+    readonly row: number,
+    readonly column: number,
+    readonly formula: Formula,
+  ) {
+    this.extent = { row, column, rows: 1, columns: 1 };
+  }
+
+  get area(): Area {
+    return { sheet: this.sheet.id, ...this.extent };
+  }
+}
