@@ -14,6 +14,8 @@ export const jsKernel: MatrixKernel = {
 };
 
 class JsBlock implements MatrixBlock {
+  sincePause = 0;
+
   constructor(
     readonly size: number,
     readonly slots: Float64Array[],

@@ -16,6 +16,8 @@ export interface MatrixBlock {
   /** Distance between two rows of a slot, at least `size`; what lies beyond a row's `size` entries is zero and stays so. */
   readonly stride: number;
   readonly slots: readonly Float64Array[];
+  /** Multiply-adds done since the last pause; kept by `multiplySteps`. */
+  sincePause: number;
   /** Rows `firstRow .. endRow` of target = left · right. `target` is neither of the two. */
   multiply(target: number, left: number, right: number, firstRow: number, endRow: number): void;
   /** target = constant · I + Σ coefficients[k] · slot sources[k]. `target` may be one of the sources. */
@@ -34,7 +36,7 @@ export const SMALLEST_NORMAL = 2.2250738585072014e-308;
 /** Multiply-adds between two pauses: about 20 ms of the slower kernel on a machine of 2020. */
 export const WORK_BETWEEN_PAUSES = 4e7;
 
-/** target = left · right with a pause after every `WORK_BETWEEN_PAUSES` multiply-adds. */
+/** target = left · right, with a pause whenever `WORK_BETWEEN_PAUSES` multiply-adds have been done on the block. */
 export function* multiplySteps(
   block: MatrixBlock,
   target: number,
@@ -43,10 +45,16 @@ export function* multiplySteps(
   progress: number,
 ): globalThis.Generator<number, void, void> {
   const n = block.size;
-  const rows = Math.max(4, Math.floor(WORK_BETWEEN_PAUSES / (n * n) / 4) * 4);
+  const perRow = n * n;
+  const rows = Math.max(4, Math.floor(WORK_BETWEEN_PAUSES / perRow / 4) * 4);
   for (let first = 0; first < n; first += rows) {
-    block.multiply(target, left, right, first, Math.min(n, first + rows));
-    yield progress;
+    const end = Math.min(n, first + rows);
+    block.multiply(target, left, right, first, end);
+    block.sincePause += (end - first) * perRow;
+    if (block.sincePause >= WORK_BETWEEN_PAUSES) {
+      block.sincePause = 0;
+      yield progress;
+    }
   }
 }
 
@@ -64,12 +72,13 @@ export function repairRow(values: Float64Array, begin: number, n: number): void 
   let sum = 0;
   for (let k = begin; k < begin + n; k++) {
     const value = values[k];
+    if (value < SMALLEST_NORMAL) {
+      values[k] = 0;
+      continue;
+    }
     if (value > largest) {
       largest = value;
       at = k;
-    } else if (value < SMALLEST_NORMAL) {
-      values[k] = 0;
-      continue;
     }
     sum += value;
   }
@@ -96,13 +105,15 @@ export function agree(block: MatrixBlock, one: number, other: number, tolerance:
 /** The rows of a slot without their padding. */
 export function unpadded(block: MatrixBlock, slot: number): Float64Array {
   const { size: n, stride } = block;
+  const from = block.slots[slot];
   const values = new Float64Array(n * n);
-  for (let i = 0; i < n; i++) values.set(block.slots[slot].subarray(i * stride, i * stride + n), i * n);
+  for (let i = 0, to = 0; i < n; i++) for (let k = i * stride; k < i * stride + n; k++) values[to++] = from[k];
   return values;
 }
 
 /** Fills a slot from unpadded rows. */
 export function load(block: MatrixBlock, slot: number, values: Float64Array): void {
   const { size: n, stride } = block;
-  for (let i = 0; i < n; i++) block.slots[slot].set(values.subarray(i * n, i * n + n), i * stride);
+  const to = block.slots[slot];
+  for (let i = 0, from = 0; i < n; i++) for (let k = i * stride; k < i * stride + n; k++) to[k] = values[from++];
 }

@@ -1,12 +1,16 @@
 import type { MatrixKernel } from "./matrix-kernel";
 import { jsKernel } from "./js-kernel";
+import { wasmKernel } from "./wasm-kernel";
 
 /** How one row is taken through time: jump by jump, or through the matrix of all rows. */
 export type Method = "row" | "matrix";
 
-/** The kernel for matrices of this order. */
-export function kernelFor(_size: number): MatrixKernel {
-  return jsKernel;
+/** Below this order the plain kernel is faster: calls and copies outweigh the arithmetic. Measured, `test/bench`. */
+export const WASM_FROM = 4;
+
+/** The faster kernel for matrices of this order. */
+export function kernelFor(size: number): MatrixKernel {
+  return (size >= WASM_FROM ? wasmKernel() : null) ?? jsKernel;
 }
 
 /** Nanoseconds of one arrow or state in a jump, and of one multiply-add of the matrix kernel. Measured; only ratios matter. */

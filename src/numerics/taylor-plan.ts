@@ -37,13 +37,18 @@ const TRUNCATION_BITS = 55;
  * smaller than its own arrow's term.
  */
 export function planTaylor(size: number, jumps: number, spread: number): TaylorPlan {
+  const jumpBits = Math.log2(jumps);
   let best: TaylorPlan = { degree: 0, squarings: 0 };
   let bestCost = Infinity;
   for (const { degree, products } of SCHEMES) {
-    const byNorm = Math.ceil(Math.log2(jumps) - xLimitBits(degree, 0));
-    const byPaths = Math.ceil((TRUNCATION_BITS + pathBits(size, jumps, degree)) / degree);
-    const bySpread = Math.ceil(Math.log2(jumps) - xLimitBits(degree, Math.log2(spread)));
-    const squarings = Math.max(0, byNorm, Math.min(byPaths, bySpread));
+    const byNorm = Math.max(0, Math.ceil(jumpBits - xLimitBits(degree, 0)));
+    if (products + byNorm > bestCost) continue;
+    const bySpread = Math.ceil(jumpBits - xLimitBits(degree, Math.log2(spread)));
+    let squarings = byNorm;
+    if (bySpread > byNorm) {
+      const byPaths = Math.ceil((TRUNCATION_BITS + pathBits(size, jumps, degree)) / degree);
+      squarings = Math.max(byNorm, Math.min(byPaths, bySpread));
+    }
     if (products + squarings <= bestCost) {
       bestCost = products + squarings;
       best = { degree, squarings };
@@ -60,13 +65,15 @@ function xLimitBits(degree: number, extraBits: number): number {
 /** log2 of the largest C(n − 1 + r, m + 1) · min(1, X^r/r!) over r; −Infinity when no path exceeds m jumps. */
 function pathBits(size: number, jumps: number, degree: number): number {
   const loops = Math.min(jumps, 4 * size);
+  const loopBits = Math.log2(loops);
   let largest = -Infinity;
-  for (let r = 0, weight = 0; ; r++) {
-    if (r > 0) weight += Math.log2(loops / r);
-    const ways = log2Binomial(size - 1 + r, degree + 1);
-    const bits = ways + Math.min(0, weight);
-    if (bits > largest) largest = bits;
-    else if (weight < 0 && (bits < largest - 4 || weight < -1100)) return largest;
+  // X^r/r! ≥ 1 up to r = X at least, and the binomial only grows: the largest is further on.
+  for (let r = Math.floor(loops); ; r++) {
+    const weight = r * loopBits - log2Factorial(r);
+    const bits = log2Binomial(size - 1 + r, degree + 1) + Math.min(0, weight);
+    if (bits >= largest) largest = bits;
+    else if (weight < 0) return largest;
+    if (weight < -1100) return largest;
   }
 }
 
