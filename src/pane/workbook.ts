@@ -101,6 +101,15 @@ export interface FrozenFormula extends FormulaPlace {
   readonly fingerprint: string | null;
 }
 
+/** How a sheet that the pane has added looks, and prints on pages one sheet wide. */
+export interface SheetLook {
+  /** In characters, from the first column on. */
+  readonly columnWidths: readonly number[];
+  readonly boldRows: readonly number[];
+  /** Text in the footer of each page. */
+  readonly footer: string;
+}
+
 /** How many were done, and a sentence for each that could not be. */
 export interface Outcome {
   readonly done: number;
@@ -123,6 +132,9 @@ export interface SharedWorkbook {
   recalculate(): Promise<void>;
 }
 
+/** Most cells that the pane asks for in one `scan`: about a megabyte of values and formulas. */
+export const SCAN_CELLS = 20_000;
+
 export type WorkbookEvent = "selection" | "change" | "sheets";
 
 export interface Workbook {
@@ -132,6 +144,11 @@ export interface Workbook {
   read(range: RangeAddress): Promise<RangeReading>;
   /** Writes all rectangles as one undo step, named by `label`. Rejects with a sentence when the sheet is protected. */
   write(batch: readonly Write[], label: string): Promise<void>;
+  /**
+   * Values and formulas alone, for looking through whole sheets; at most `SCAN_CELLS` cells a call. Optional: without it
+   * `read` serves.
+   */
+  scan?(range: RangeAddress): Promise<Pick<RangeReading, "address" | "values" | "formulas">>;
   /** Adds a sheet; never over an existing one: the name is made free by a number. Resolves to the name used. */
   addSheet(name: string, cells: Write["cells"], formats?: Write["formats"]): Promise<string>;
   /** Selects and scrolls to the range, changing sheet if need be. */
@@ -144,6 +161,10 @@ export interface Workbook {
     set(key: string, value: unknown): Promise<void>;
   };
 
+  /** The workbook's own name, "" while it has none. */
+  name?(): Promise<string>;
+  /** Gives a sheet its look and fits it to one page in width, for printing. */
+  presentSheet?(sheet: string, look: SheetLook): Promise<void>;
   /** Puts one formula into an empty place; `size` is what its answer needs. A filled place is refused with a sentence. One undo step. */
   placeFormula?(place: Place, formula: string, size: { readonly rows: number; readonly columns: number }, label: string): Promise<void>;
   /** Puts a picture into the sheet, its upper left corner at the place. */

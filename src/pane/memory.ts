@@ -1,0 +1,199 @@
+import { LARGEST_RATE, SMALLEST_RATE } from "../chain/generator";
+import type { Workbook } from "./workbook";
+
+/**
+ * What the pane keeps with the workbook: one JSON document under one key.
+ *
+ * Nothing that was stored is ever lost: what cannot be read is carried along under `setAside`, fields that this version
+ * does not know are kept as they are, and a document written by a newer version is left untouched.
+ */
+export const MEMORY_KEY = "ctmc.audit";
+export const MEMORY_VERSION = 1;
+
+/** A finding that a person has looked at and lets stand. */
+export interface Accepted {
+  /** Rule, sheet, state names and the values concerned: when these change, the finding comes back. */
+  readonly key: string;
+  readonly code: string;
+  readonly sentence: string;
+  readonly reason: string;
+  readonly initials: string;
+  /** ISO date. */
+  readonly date: string;
+}
+
+export interface SignOff {
+  readonly fingerprint: string;
+  readonly date: string;
+  readonly checker: string;
+  /** The table as signed off, so that a later change can be listed arrow by arrow. */
+  readonly names: readonly string[] | null;
+  readonly size: number;
+  readonly arrows: readonly (readonly [from: number, to: number, rate: number])[];
+}
+
+/** Kept by sheet and top-left cell (rows and columns from 0). */
+export interface TableMemory {
+  readonly sheet: string;
+  readonly row: number;
+  readonly column: number;
+  readonly unit?: string;
+  readonly answers?: Readonly<Record<string, string>>;
+  readonly accepted?: readonly Accepted[];
+  readonly signOff?: SignOff;
+}
+
+interface KeptDocument {
+  readonly version: typeof MEMORY_VERSION;
+  readonly tables: readonly TableMemory[];
+  readonly setAside?: readonly unknown[];
+  readonly [unknown: string]: unknown;
+}
+
+export type MemoryState = "ready" | "newer";
+
+export interface Place {
+  readonly sheet: string;
+  readonly row: number;
+  readonly column: number;
+}
+
+const EMPTY: KeptDocument = { version: MEMORY_VERSION, tables: [] };
+
+export class Memory {
+  private document: KeptDocument = EMPTY;
+  private current: MemoryState = "ready";
+  private asideCount = 0;
+  private queue: Promise<unknown> = Promise.resolve();
+
+  constructor(private readonly store: Workbook["store"]) {}
+
+  /** "newer": the document belongs to a later version; it is neither read nor written. */
+  get state(): MemoryState {
+    return this.current;
+  }
+
+  /** How many stored pieces could not be read and are carried along. */
+  get setAside(): number {
+    return this.asideCount;
+  }
+
+  /** Reads the document afresh (another workbook may have been opened, another pane may have written). */
+  load(): Promise<void> {
+    return this.inTurn(async () => this.take(await this.store.get(MEMORY_KEY)));
+  }
+
+  table(place: Place): TableMemory {
+    return this.document.tables.find((entry) => samePlace(entry, place)) ?? { sheet: place.sheet, row: place.row, column: place.column };
+  }
+
+  get tables(): readonly TableMemory[] {
+    return this.document.tables;
+  }
+
+  /** Changes what is kept for one table and stores the document; `change` gets the entry as stored at that moment. */
+  update(place: Place, change: (entry: TableMemory) => TableMemory): Promise<void> {
+    return this.inTurn(async () => {
+      this.take(await this.store.get(MEMORY_KEY));
+      if (this.current === "newer") return;
+      const entry = this.table(place);
+      const others = this.document.tables.filter((other) => !samePlace(other, place));
+      const document = { ...this.document, tables: [...others, change(entry)] };
+      await this.store.set(MEMORY_KEY, document);
+      this.document = document;
+    });
+  }
+
+  private take(raw: unknown): void {
+    const { document, state } = readDocument(raw);
+    this.document = document;
+    this.current = state;
+    this.asideCount = document.setAside?.length ?? 0;
+  }
+
+  /** One store operation after another, so that two quick clicks do not overwrite each other. */
+  private inTurn<T>(work: () => Promise<T>): Promise<T> {
+    const next = this.queue.then(work, work);
+    this.queue = next.catch(() => undefined);
+    return next;
+  }
+}
+
+/** The stored value as a document; whatever is not understood goes to `setAside`, unchanged. */
+export function readDocument(raw: unknown): { document: KeptDocument; state: MemoryState } {
+  if (raw === undefined || raw === null) return { document: EMPTY, state: "ready" };
+  if (!isRecord(raw) || typeof raw.version !== "number") return { document: { ...EMPTY, setAside: [raw] }, state: "ready" };
+  if (raw.version > MEMORY_VERSION) return { document: EMPTY, state: "newer" };
+  const setAside: unknown[] = Array.isArray(raw.setAside) ? [...raw.setAside] : [];
+  if (raw.version !== MEMORY_VERSION || !Array.isArray(raw.tables)) return { document: { ...EMPTY, setAside: [...setAside, raw] }, state: "ready" };
+  const tables: TableMemory[] = [];
+  for (const entry of raw.tables) {
+    if (!isPlace(entry)) {
+      setAside.push(entry);
+      continue;
+    }
+    const { readable, unreadable } = readEntry(entry);
+    if (unreadable) setAside.push(unreadable);
+    tables.push(readable);
+  }
+  return { document: { ...raw, version: MEMORY_VERSION, tables, setAside: setAside.length ? setAside : undefined }, state: "ready" };
+}
+
+function readEntry(entry: TableMemory & Record<string, unknown>): { readable: TableMemory; unreadable: unknown } {
+  const readable: Record<string, unknown> = { ...entry };
+  const lost: Record<string, unknown> = {};
+  const drop = (field: string): void => {
+    lost[field] = readable[field];
+    delete readable[field];
+  };
+  if ("unit" in readable && typeof readable.unit !== "string") drop("unit");
+  if ("answers" in readable && !(isRecord(readable.answers) && Object.values(readable.answers).every((value) => typeof value === "string"))) drop("answers");
+  if ("signOff" in readable && !isSignOff(readable.signOff)) drop("signOff");
+  if ("accepted" in readable) {
+    const all: unknown = readable.accepted;
+    if (!Array.isArray(all)) drop("accepted");
+    else {
+      const bad = all.filter((item) => !isAccepted(item));
+      if (bad.length) {
+        lost.accepted = bad;
+        readable.accepted = all.filter(isAccepted);
+      }
+    }
+  }
+  const place = { sheet: entry.sheet, row: entry.row, column: entry.column };
+  return { readable: readable as unknown as TableMemory, unreadable: Object.keys(lost).length ? { ...place, ...lost } : null };
+}
+
+function samePlace(a: Place, b: Place): boolean {
+  return a.sheet === b.sheet && a.row === b.row && a.column === b.column;
+}
+
+function isRecord(value: unknown): value is Record<string, unknown> {
+  return typeof value === "object" && value !== null && !Array.isArray(value);
+}
+
+function isPlace(value: unknown): value is TableMemory & Record<string, unknown> {
+  return isRecord(value) && typeof value.sheet === "string" && Number.isInteger(value.row) && Number.isInteger(value.column);
+}
+
+function isAccepted(value: unknown): value is Accepted {
+  return isRecord(value) && ["key", "code", "sentence", "reason", "initials", "date"].every((field) => typeof value[field] === "string");
+}
+
+function isSignOff(value: unknown): value is SignOff {
+  return (
+    isRecord(value) &&
+    ["fingerprint", "date", "checker"].every((field) => typeof value[field] === "string") &&
+    Number.isInteger(value.size) &&
+    (value.names === null || (Array.isArray(value.names) && value.names.every((name) => typeof name === "string"))) &&
+    Array.isArray(value.arrows) &&
+    value.arrows.every((arrow) => isArrow(arrow, value.size as number))
+  );
+}
+
+function isArrow(value: unknown, size: number): boolean {
+  if (!Array.isArray(value) || value.length !== 3) return false;
+  const [from, to, rate] = value as unknown[];
+  const isState = (state: unknown): boolean => Number.isInteger(state) && (state as number) >= 0 && (state as number) < size;
+  return isState(from) && isState(to) && from !== to && typeof rate === "number" && rate >= SMALLEST_RATE && rate <= LARGEST_RATE;
+}

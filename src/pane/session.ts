@@ -1,0 +1,416 @@
+import { cellText, sameRange, within } from "./address";
+import { BookWatch } from "./book-watch";
+import { contentsOf, usedPart } from "./contents";
+import { examine, type Item, type Question } from "./examine";
+import { Memory, type TableMemory } from "./memory";
+import { cellsWrite, shownChanges, putBack, rangeOf, spilledInto, tableWrite } from "./remedy-write";
+import { act, sharingOf, type SharingAct } from "./sharing";
+import { signOffOf } from "./sign-off";
+import { START, type PaneState, type Preview, type View } from "./state";
+import { chooseSubject, followSubject, type Subject } from "./subject";
+import type { RangeAddress, RangeReading, Workbook } from "./workbook";
+import { checkSheet } from "./check-sheet";
+import { plainUnit } from "../cells/sentences/arrows";
+
+export interface SessionOptions {
+  readonly version?: string;
+  now?(): Date;
+}
+
+/** Waits after the last event, so that a drag or a fill is looked at once. */
+const SELECTION_QUIET = 120;
+const CHANGE_QUIET = 250;
+
+/**
+ * The pane without its DOM: listens to the workbook, holds the one state, offers what a person can do.
+ *
+ * Nothing is written to a cell but by `applyRemedy`, `undo` and `writeCheckSheet`, each behind a button.
+ */
+export class Session {
+  private current: PaneState = START;
+  private readonly memory: Memory;
+  private readonly watch: BookWatch;
+  private readonly listeners = new Set<() => void>();
+  private readonly off: (() => void)[] = [];
+  private readonly timers = new Map<string, ReturnType<typeof setTimeout>>();
+  /** Counts examinations: an answer that arrives after a newer question is dropped. */
+  private turn = 0;
+  /** A selection that the pane made itself does not move the pane. */
+  private ownSelection: RangeAddress | null = null;
+  private initials = "";
+  private disposed = false;
+
+  constructor(
+    private readonly workbook: Workbook,
+    private readonly options: SessionOptions = {},
+  ) {
+    this.memory = new Memory(workbook.store);
+    this.watch = new BookWatch(workbook, (book) => {
+      const fresh = book.status === "ready" && book.scanned !== this.current.book.scanned;
+      this.set({ book });
+      if (fresh && this.current.subject) void this.look(this.current.subject);
+    });
+  }
+
+  get state(): PaneState {
+    return this.current;
+  }
+
+  /** Initials typed last, offered again in the next form. */
+  get lastInitials(): string {
+    return this.initials;
+  }
+
+  subscribe(listener: () => void): void {
+    this.listeners.add(listener);
+  }
+
+  async start(): Promise<void> {
+    this.off.push(
+      this.workbook.on("selection", () => this.later("selection", SELECTION_QUIET, () => this.selectionMoved())),
+      this.workbook.on("change", () => this.later("change", CHANGE_QUIET, () => this.cellsChanged())),
+      this.workbook.on("sheets", () => this.later("sheets", CHANGE_QUIET, () => this.sheetsChanged())),
+    );
+    await this.attempt(async () => {
+      await this.loadMemory();
+      await this.selectionMoved();
+    });
+    this.set({ busy: false });
+    this.watch.changed();
+  }
+
+  dispose(): void {
+    this.disposed = true;
+    this.off.forEach((stop) => stop());
+    this.timers.forEach((timer) => clearTimeout(timer));
+    this.watch.dispose();
+    this.listeners.clear();
+  }
+
+  // What a person can do
+
+  show(view: View): void {
+    this.set({ view, opened: null });
+    this.watch.wanted(view === "book");
+    if (view === "book") void this.attempt(() => this.loadSharing());
+  }
+
+  hold(held: boolean): void {
+    this.set({ held });
+    if (!held) this.later("selection", 0, () => this.selectionMoved());
+  }
+
+  async refresh(): Promise<void> {
+    this.set({ busy: true });
+    await this.attempt(async () => {
+      await this.loadMemory();
+      if (this.current.subject) await this.look(await followSubject(this.workbook, this.current.subject));
+      else await this.selectionMoved();
+    });
+    this.set({ busy: false });
+    this.watch.refresh();
+    if (this.current.view === "book") await this.attempt(() => this.loadSharing());
+  }
+
+  /** Selects cells; the pane keeps looking at its table. */
+  goTo(range: RangeAddress): Promise<void> {
+    this.ownSelection = range;
+    return this.attempt(() => this.workbook.select(range));
+  }
+
+  /** Selects a table and looks at it in Check. */
+  async lookAt(range: RangeAddress): Promise<void> {
+    await this.goTo(range);
+    this.show("check");
+    await this.attempt(() => this.look({ address: range, how: "around" }));
+  }
+
+  open(opened: PaneState["opened"]): void {
+    this.set({ opened });
+  }
+
+  drawMore(list: string, count: number): void {
+    this.set({ drawn: { ...this.current.drawn, [list]: count } });
+  }
+
+  setUnit(typed: string): Promise<void> {
+    const unit = plainUnit(typed);
+    return this.keep((entry) => (unit === "" ? without(entry, "unit") : { ...entry, unit }));
+  }
+
+  answer(question: Question, answer: string): Promise<void> {
+    return this.keep((entry) => ({ ...entry, answers: { ...entry.answers, [question.code]: answer } }));
+  }
+
+  forgetAnswers(): Promise<void> {
+    return this.keep((entry) => without(entry, "answers"));
+  }
+
+  accept(item: Item, reason: string, initials: string): Promise<void> {
+    this.initials = initials.trim();
+    const accepted = {
+      key: item.acceptanceKey,
+      code: item.finding.code,
+      sentence: item.sentence,
+      reason: reason.trim(),
+      initials: this.initials,
+      date: this.today(),
+    };
+    const others = (entry: TableMemory) => (entry.accepted ?? []).filter((other) => other.key !== accepted.key && other.key !== item.formerly?.key);
+    return this.keep((entry) => ({ ...entry, accepted: [...others(entry), accepted] }));
+  }
+
+  takeBack(item: Item): Promise<void> {
+    return this.keep((entry) => ({ ...entry, accepted: (entry.accepted ?? []).filter((other) => other.key !== item.acceptanceKey) }));
+  }
+
+  async signOff(checker: string): Promise<void> {
+    const table = this.current.looked?.table.table;
+    if (!table) return;
+    this.initials = checker.trim();
+    await this.keep((entry) => ({ ...entry, signOff: signOffOf(table, this.initials, this.today()) }));
+  }
+
+  withdrawSignOff(): Promise<void> {
+    return this.keep((entry) => without(entry, "signOff"));
+  }
+
+  /** Shows what a remedy would do; a remedy that only changes the range looked at is done at once, since it writes nothing. */
+  async openRemedy(item: Item): Promise<void> {
+    const { looked, subject } = this.current;
+    if (!item.remedy || !looked || !subject) return;
+    const { remedy, done } = item.remedy;
+    if (remedy.kind === "selection") {
+      const address = within(subject.address, remedy.range);
+      this.set({ opened: null, notice: { text: done, undo: { kind: "subject", subject } } });
+      await this.goTo(address);
+      await this.attempt(() => this.look({ address, how: "adjusted" }));
+      return;
+    }
+    await this.attempt(async () => {
+      const preview = await this.previewOf(item, looked.reading);
+      this.set({ opened: { kind: "remedy", key: item.key, preview } });
+    });
+  }
+
+  async applyRemedy(item: Item): Promise<void> {
+    const { opened, looked, subject } = this.current;
+    if (opened?.kind !== "remedy" || !opened.preview.write || !item.remedy || !looked || !subject) return;
+    const { write, place } = opened.preview;
+    const { label, done } = item.remedy;
+    await this.attempt(async () => {
+      const before = await this.workbook.read(rangeOf(write));
+      if (!stillAsShown(before, looked.reading, place)) {
+        this.set({ opened: null, trouble: "The cells have changed since the preview. Nothing was written; look again." });
+        await this.look(subject);
+        return;
+      }
+      await this.workbook.write([write], label);
+      const after = await this.workbook.read(rangeOf(write));
+      const undo = { kind: "cells", write: putBack(before, write), after, label: `Undo: ${label}` } as const;
+      this.set({ opened: null, notice: { text: done, undo, ...(place ? { jump: { label: cellText(place), range: place } } : {}) } });
+      await this.look(subject);
+    });
+  }
+
+  /** Puts back what the last remedy replaced, unless somebody has changed those cells since. */
+  async undo(): Promise<void> {
+    const undo = this.current.notice?.undo;
+    if (!undo) return;
+    this.set({ notice: null });
+    if (undo.kind === "subject") {
+      await this.goTo(undo.subject.address);
+      await this.attempt(() => this.look(undo.subject));
+      return;
+    }
+    await this.attempt(async () => {
+      const now = await this.workbook.read(rangeOf(undo.write));
+      if (!sameContent(now, undo.after)) throw new Error(`${cellText(rangeOf(undo.write))} has changed since. Nothing was put back.`);
+      await this.workbook.write([undo.write], undo.label);
+      this.set({ notice: { text: "Put back as it was." } });
+      if (this.current.subject) await this.look(this.current.subject);
+    });
+  }
+
+  async writeCheckSheet(): Promise<void> {
+    const { looked } = this.current;
+    if (!looked) return;
+    this.set({ busy: true });
+    await this.attempt(async () => {
+      const sheet = await checkSheet(looked, {
+        version: this.options.version ?? "",
+        date: this.today(),
+        workbook: (await this.workbook.name?.()) ?? "",
+        formulas: this.watch.readersOf(looked.reading.address),
+      });
+      const name = await this.workbook.addSheet(sheet.name, sheet.cells);
+      await this.workbook.presentSheet?.(name, sheet.look);
+      const range = { sheet: name, row: 0, column: 0, rows: 1, columns: 1 };
+      this.set({ notice: { text: `Check sheet written: ${name}.`, jump: { label: "Go there", range } } });
+    });
+    this.set({ busy: false });
+  }
+
+  /** Recalculates, relinks, freezes or puts back, and says what came of it. */
+  async share(name: SharingAct): Promise<void> {
+    const { shared } = this.workbook;
+    if (!shared) return;
+    this.set({ busy: true });
+    await this.attempt(async () => {
+      const text = await act(shared, name, this.now());
+      this.set({ notice: { text }, opened: null });
+      await this.loadSharing();
+    });
+    this.set({ busy: false });
+    this.watch.refresh();
+  }
+
+  dismiss(): void {
+    this.set({ notice: null, trouble: null });
+  }
+
+  // What the workbook tells
+
+  private async selectionMoved(): Promise<void> {
+    if (this.current.held && this.current.subject) return;
+    const selection = await this.workbook.selection();
+    if (sameRange(selection, this.ownSelection)) return;
+    this.ownSelection = null;
+    const subject = await chooseSubject(this.workbook, selection, this.current.subject);
+    if (subject && !sameRange(subject.address, this.current.subject?.address ?? null)) await this.look(subject);
+  }
+
+  private async cellsChanged(): Promise<void> {
+    this.watch.changed();
+    if (this.current.subject) await this.look(await followSubject(this.workbook, this.current.subject));
+    else await this.selectionMoved();
+  }
+
+  /** Sheets were added, renamed or removed, or another workbook was opened. */
+  private async sheetsChanged(): Promise<void> {
+    await this.loadMemory();
+    const names = (await this.workbook.sheets()).map((sheet) => sheet.name);
+    if (this.current.subject && !names.includes(this.current.subject.address.sheet)) {
+      this.turn++;
+      this.set({ subject: null, looked: null, opened: null, held: false, notice: null });
+    }
+    await this.cellsChanged();
+  }
+
+  private async look(subject: Subject): Promise<void> {
+    const turn = ++this.turn;
+    const reading = await this.workbook.read(subject.address);
+    if (turn !== this.turn) return;
+    const moved = !sameRange(subject.address, this.current.subject?.address ?? null);
+    const looked = examine(reading, this.memory.table(subject.address), this.watch.contextOf(subject.address));
+    const { opened } = this.current;
+    const stays = opened && !moved && (!("key" in opened) || looked.open.some((item) => item.key === opened.key));
+    this.set({ subject, looked, opened: stays ? opened : null, ...(moved ? { drawn: {} } : {}) });
+  }
+
+  // Bookkeeping
+
+  private async previewOf(item: Item, reading: RangeReading): Promise<Preview> {
+    const { remedy } = item.remedy!;
+    const empty = { changes: [], place: null, table: [], obstacle: null, write: null };
+    if (remedy.kind === "cells") {
+      const changes = shownChanges(reading, remedy);
+      if (spilledInto(reading, remedy))
+        return { ...empty, changes, obstacle: "A formula fills these cells. Change the formula or its source instead." };
+      return { ...empty, changes, write: cellsWrite(reading, remedy) };
+    }
+    const table = remedy.kind === "newTable" ? remedy.table : [];
+    const place = await this.freePlace(reading.address, table.length, table[0]?.length ?? 0);
+    return { ...empty, place, table: table.map((row) => row.map((value) => (value === null ? "" : String(value)))), write: tableWrite(place, table) };
+  }
+
+  /** The nearest blank place to the right of a table, one column between. */
+  private async freePlace(beside: RangeAddress, rows: number, columns: number): Promise<RangeAddress> {
+    const sheets = await this.workbook.sheets();
+    for (let column = beside.column + beside.columns + 1; ; ) {
+      const place = { sheet: beside.sheet, row: beside.row, column, rows, columns };
+      const filled = usedPart(sheets, { ...place, rows: rows + 1, columns: columns + 1 });
+      if (!filled) return place;
+      const { values } = await contentsOf(this.workbook, filled);
+      const last = Math.max(...values.map((row) => row.reduce<number>((last, value, at) => (value === "" ? last : at), -1)));
+      if (last < 0) return place;
+      column = filled.column + last + 2;
+    }
+  }
+
+  private async keep(change: (entry: TableMemory) => TableMemory): Promise<void> {
+    const { subject } = this.current;
+    if (!subject) return;
+    await this.attempt(async () => {
+      await this.memory.update(subject.address, change);
+      this.set({ opened: null, memory: this.memory.state, setAside: this.memory.setAside });
+      await this.look(subject);
+    });
+  }
+
+  private async loadSharing(): Promise<void> {
+    if (this.workbook.shared) this.set({ sharing: await sharingOf(this.workbook.shared) });
+  }
+
+  private async loadMemory(): Promise<void> {
+    await this.memory.load();
+    this.set({ memory: this.memory.state, setAside: this.memory.setAside });
+  }
+
+  /** Runs one action; what goes wrong is said, never thrown at the page. */
+  private async attempt(action: () => Promise<void>): Promise<void> {
+    if (this.current.trouble) this.set({ trouble: null });
+    try {
+      await action();
+    } catch (error) {
+      this.set({ trouble: sentenceOf(error), busy: false });
+    }
+  }
+
+  private later(name: string, wait: number, action: () => Promise<void>): void {
+    clearTimeout(this.timers.get(name));
+    this.timers.set(
+      name,
+      setTimeout(() => void this.attempt(action), wait),
+    );
+  }
+
+  private now(): Date {
+    return this.options.now?.() ?? new Date();
+  }
+
+  private today(): string {
+    const now = this.now();
+    const two = (part: number): string => String(part).padStart(2, "0");
+    return `${now.getFullYear()}-${two(now.getMonth() + 1)}-${two(now.getDate())}`;
+  }
+
+  private set(change: Partial<PaneState>): void {
+    if (this.disposed) return;
+    this.current = { ...this.current, ...change };
+    this.listeners.forEach((listener) => listener());
+  }
+}
+
+/** Are the cells to be written as they were when the preview was made? A new table's place must still be blank. */
+function stillAsShown(now: RangeReading, shown: RangeReading, place: RangeAddress | null): boolean {
+  if (place) return now.values.every((row) => row.every((value) => value === ""));
+  const { row, column } = { row: now.address.row - shown.address.row, column: now.address.column - shown.address.column };
+  return now.formulas.every((line, r) => line.every((formula, c) => formula === shown.formulas[row + r]?.[column + c] && now.values[r][c] === shown.values[row + r][column + c]));
+}
+
+function sameContent(a: RangeReading, b: RangeReading): boolean {
+  return JSON.stringify([a.values, a.formulas]) === JSON.stringify([b.values, b.formulas]);
+}
+
+function without(entry: TableMemory, field: "unit" | "answers" | "signOff"): TableMemory {
+  const rest: { -readonly [K in keyof TableMemory]: TableMemory[K] } = { ...entry };
+  delete rest[field];
+  return rest;
+}
+
+function sentenceOf(error: unknown): string {
+  const text = error instanceof Error ? error.message : String(error);
+  return text === "" ? "The workbook did not answer." : text;
+}
+

@@ -1,0 +1,91 @@
+import { cellsFrom } from "../audit/facts";
+import { findTables } from "../audit/tables-in-sheet";
+import { read } from "../table/read";
+import { contains, within } from "./address";
+import { contentsOf, usedPart, type Contents } from "./contents";
+import type { RangeAddress, SheetInfo, Workbook } from "./workbook";
+
+/**
+ * What the pane looks at. A selection of several cells is taken as it is; a single cell stands for the table around it;
+ * a cell outside any table changes nothing, so that a person can work elsewhere and keep the table in view.
+ */
+export interface Subject {
+  readonly address: RangeAddress;
+  /** "around": found around a cell, follows the table as it grows; otherwise the extent is a person's choice. */
+  readonly how: "selection" | "around" | "adjusted";
+}
+
+/** Largest range that is read as one table: a square of about 550 states, or a long list. */
+const LARGEST_SUBJECT = 300_000;
+/** Half the window searched around a cell, enlarged while the table found touches its edge. */
+const WINDOWS = [40, 160, 600];
+
+export async function chooseSubject(workbook: Workbook, selection: RangeAddress, current: Subject | null): Promise<Subject | null> {
+  const single = selection.rows === 1 && selection.columns === 1;
+  if (single && current && contains(current.address, selection)) return current;
+  const sheets = await workbook.sheets();
+  if (!single) {
+    const chosen = await fromSelection(workbook, sheets, selection);
+    if (chosen) return chosen;
+    if (current && contains(current.address, selection)) return current;
+  }
+  const around = await tableAround(workbook, sheets, selection);
+  return around ? { address: around, how: "around" } : current;
+}
+
+/** The table that now stands around the corner of one found before, after rows or columns were typed beside it. */
+export async function followSubject(workbook: Workbook, subject: Subject): Promise<Subject> {
+  if (subject.how !== "around") return subject;
+  const { sheet, row, column } = subject.address;
+  const inside = { sheet, row: row + 1, column: column + 1, rows: 1, columns: 1 };
+  const around = await tableAround(workbook, await workbook.sheets(), inside);
+  return around ? { address: around, how: "around" } : subject;
+}
+
+async function fromSelection(workbook: Workbook, sheets: readonly SheetInfo[], selection: RangeAddress): Promise<Subject | null> {
+  const part = usedPart(sheets, selection);
+  if (!part || part.rows < 2 || part.columns < 2) return null;
+  if (part.rows * part.columns > LARGEST_SUBJECT)
+    throw new Error(`The selection holds ${part.rows} rows by ${part.columns} columns; a rate table has at most 500 states. Select the table alone.`);
+  const contents = await contentsOf(workbook, part);
+  if (!contents.values.some((row) => row.some((value) => typeof value === "number"))) return null;
+  return { address: trimmed(contents), how: "selection" };
+}
+
+/** A selection without its blank margins, unless only the margins make it read as a table (a last state without exits, unnamed). */
+function trimmed(contents: Contents): RangeAddress {
+  const { values, address } = contents;
+  const filledRows = values.flatMap((row, r) => (row.some((value) => value !== "") ? [r] : []));
+  const filledColumns = values[0].flatMap((_, c) => (values.some((row) => row[c] !== "") ? [c] : []));
+  const [row, column] = [filledRows[0], filledColumns[0]];
+  const rows = filledRows[filledRows.length - 1] - row + 1;
+  const columns = filledColumns[filledColumns.length - 1] - column + 1;
+  const tight = within(address, { row, column, rows, columns });
+  if (rows === values.length && columns === values[0].length) return address;
+  const cells = cellsFrom(values);
+  const inner = cells.slice(row, row + rows).map((line) => line.slice(column, column + columns));
+  return !read(inner).layout && read(cells).layout ? address : tight;
+}
+
+async function tableAround(workbook: Workbook, sheets: readonly SheetInfo[], cell: RangeAddress): Promise<RangeAddress | null> {
+  for (const half of WINDOWS) {
+    const row = Math.max(0, cell.row - half);
+    const column = Math.max(0, cell.column - half);
+    const asked = { sheet: cell.sheet, row, column, rows: cell.row + half + 1 - row, columns: cell.column + half + 1 - column };
+    const window = usedPart(sheets, asked);
+    if (!window) return null;
+    const contents = await contentsOf(workbook, window);
+    const found = findTables(cellsFrom(contents.values))
+      .map((table) => within(window, table.span))
+      .find((range) => contains(range, { ...cell, rows: 1, columns: 1 }));
+    if (!found) return null;
+    const whole = usedPart(sheets, { ...window, row: 0, column: 0, rows: Infinity, columns: Infinity });
+    const cut =
+      (found.row === window.row && window.row > (whole?.row ?? 0)) ||
+      (found.column === window.column && window.column > (whole?.column ?? 0)) ||
+      (found.row + found.rows === window.row + window.rows && asked.row + asked.rows === window.row + window.rows) ||
+      (found.column + found.columns === window.column + window.columns && asked.column + asked.columns === window.column + window.columns);
+    if (!cut) return found;
+  }
+  return null;
+}
