@@ -16,7 +16,11 @@ const common = {
   mode: "production",
   context: ROOT,
   devtool: false,
-  resolve: { extensions: [".ts", ".js"] },
+  resolve: {
+    extensions: [".ts", ".js"],
+    // The package's entry is one CommonJS file, which takes in all of it; its module sources, named in its "module" field, do not.
+    alias: { "ml-matrix$": path.join(ROOT, "node_modules/ml-matrix/src/index.js") },
+  },
   module: {
     rules: [
       { test: /\.ts$/, exclude: /node_modules/, loader: "esbuild-loader", options: { target: TARGET } },

@@ -43,7 +43,8 @@ export async function build() {
   /** @type {import("webpack").MultiStats} */
   const stats = await new Promise((resolve, reject) => compiler.run((error, result) => (error || !result ? reject(error) : resolve(result))));
   await new Promise((resolve) => compiler.close(resolve));
-  if (stats.hasErrors()) throw new Error(stats.toString({ preset: "errors-only", colors: false }));
+  // A warning too: a module that is missing inside a try is only that.
+  if (stats.hasErrors() || stats.hasWarnings()) throw new Error(stats.toString({ preset: "errors-warnings", colors: false }));
   writeFileSync(path.join(DIST, "licences.txt"), licences());
   mkdirSync(CACHE, { recursive: true });
   writeFileSync(STAMP, stamp);
