@@ -9,8 +9,9 @@ export function licences() {
   const visit = (/** @type {string} */ name) => {
     if (seen.has(name)) return;
     const folder = path.join(ROOT, "node_modules", name);
-    const { version, license, dependencies = {} } = read(path.join(folder, "package.json"));
+    const { version, license: declared, dependencies = {} } = read(path.join(folder, "package.json"));
     const file = readdirSync(folder).find((one) => /^licen[cs]e/i.test(one));
+    const license = declared ?? "licence below";
     const text = file ? readFileSync(path.join(folder, file), "utf8").trim() : `Licence: ${license}`;
     seen.set(name, `${name} ${version} (${license})\n\n${text}\n`);
     for (const one of Object.keys(dependencies)) visit(one);
