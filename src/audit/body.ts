@@ -70,13 +70,22 @@ function finishBody(form: Body["form"], layout: Layout, values: Float64Array, ty
   return { form, size, values, typed, exits, placeOf, nameOf: (state) => names?.[state] ?? "" };
 }
 
-/** The chain that the readable, positive rates describe: for questions about who reaches whom. */
+/** The chain that the readable, positive rates describe. */
 export function generatorOf(body: Body): Generator {
+  return chainWhere(body, (value) => (value >= SMALLEST_RATE && value <= LARGEST_RATE ? value : 0));
+}
+
+/** Who may lead to whom: a cell that cannot be read, or is no rate, counts as an arrow, since it may be meant for one. */
+export function possibleArrows(body: Body): Generator {
+  return chainWhere(body, (value) => (value === 0 ? 0 : 1));
+}
+
+function chainWhere(body: Body, rateOf: (value: number) => number): Generator {
   const arrows: Arrow[] = [];
   for (let i = 0; i < body.size; i++)
     for (let j = 0; j < body.size; j++) {
-      const rate = body.values[i * body.size + j];
-      if (i !== j && rate >= SMALLEST_RATE && rate <= LARGEST_RATE) arrows.push([i, j, rate]);
+      const rate = i === j ? 0 : rateOf(body.values[i * body.size + j]);
+      if (rate !== 0) arrows.push([i, j, rate]);
     }
   return Generator.fromArrows(body.size, arrows);
 }

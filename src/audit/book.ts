@@ -11,7 +11,7 @@ import { cellsFrom } from "./facts";
 import type { Finding, Span } from "./finding";
 import { BUILDERS, callsIn, numbersIn, positionsOf, referencesIn, type Call, type Reference } from "./formula-calls";
 import { kindOf, type Kind } from "./kind";
-import { exponentialsOver, meanTimeName } from "./rules/book-formulas";
+import { exponentialsOver, formulaShort, meanTimeName } from "./rules/book-formulas";
 import { findTablesSteps } from "./tables-in-sheet";
 
 /** One sheet as it is given: values and formulas of its used range, whose first cell stands at row, column. */
@@ -121,6 +121,7 @@ export function* scanBook(sheets: readonly BookSheet[]): Steps<BookScan> {
         const found = bookFormula(sheet, cells, row, column, formula, tables, seen);
         if (!found) continue;
         formulas.push(found);
+        findings.push(...formulaShort(found).map((finding) => ({ sheet: sheet.name, finding })));
         findings.push(...meanTimeName(found, cells, row, column).map((finding) => ({ sheet: sheet.name, finding })));
       }
       if (row % 50 === 49) yield 0.5 + (at + row / sheet.formulas.length) / (2.2 * sheets.length);

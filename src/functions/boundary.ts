@@ -77,7 +77,7 @@ function answer(id: string, body: CellFunction, args: readonly Argument[], invoc
 
   const again = () => stepsOf(body, args);
   const steps = again();
-  const now = work(steps);
+  const now = work(steps, aside.available || typeof setTimeout === "function" ? BUDGET_MS : Infinity);
   if (now !== undefined) {
     keep(key, args, now);
     return now;
@@ -90,9 +90,9 @@ function answer(id: string, body: CellFunction, args: readonly Argument[], invoc
   return join(key, flight, invocation);
 }
 
-/** Works for the budget; undefined when that was not enough. */
-function work(steps: Steps<Found>): Found | undefined {
-  const end = Date.now() + BUDGET_MS;
+/** Works for the budget; undefined when that was not enough. Where nothing can run in between, all is done at once. */
+function work(steps: Steps<Found>, budget: number): Found | undefined {
+  const end = Date.now() + budget;
   for (;;) {
     const step = steps.next();
     if (step.done) return step.value;

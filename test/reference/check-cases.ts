@@ -163,7 +163,7 @@ check("B47", (ask, { P }) => shares(ask, unitRate(P)));
 check("B50", (ask, { N, up_h, repair_h, crew }) => crew.map((crews: number) =>
   ask("COSTRATE", ask("REPAIRGROUP", N, 1 / up_h, 1 / repair_h, crews), row([5, 4, 3, 2, 1, 0]))[0][0]));
 check("B51", (ask, { lambda, mu }) => {
-  const places = 400; // (5/6)⁴⁰⁰ = 2e-32 is left out
+  const places = 300; // (5/6)³⁰⁰ = 2e-24 is left out; a spill ends at 315 states
   const queue = ask("QUEUE", lambda, mu, 1, places);
   const waiting = ask("COSTRATE", queue, row(Array.from({ length: places + 1 }, (_, k) => Math.max(0, k - 1))))[0][0];
   const p = shares(ask, queue);

@@ -4,6 +4,13 @@ import type { BookFormula, BookSheet, BookTable } from "../book";
 import { cellSpan, type Finding } from "../finding";
 import { referencesIn } from "../formula-calls";
 
+/** A formula whose range leaves out a row or column of its table (mistake 20, seen from the formula). */
+export function formulaShort({ short, address }: BookFormula): Finding[] {
+  if (!short) return [];
+  const { rows, columns, where } = short;
+  return [{ code: "formulaShort", severity: "warning", span: cellSpan(address.row, address.column), details: { rows, columns, where } }];
+}
+
 /**
  * A mean time to first failure under the label MTBF: the label left of the formula or above it. From the first start to the first failure
  * is another mean than from failure to failure.

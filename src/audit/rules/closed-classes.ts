@@ -1,16 +1,17 @@
 import { communicatingClasses } from "../../chain/classes";
+import { possibleArrows } from "../body";
 import { rowSpan, stateName, type Rule } from "../context";
 import { meansFinal } from "../words";
 
 /**
  * Two or more groups that are never left (mistake 18): long-run shares then depend on the start. A stop without a start; a note
  * where every such group is a single state under a final name (cured and dead: competing ends are no mistake). Silent with a start.
+ * Cells that cannot be read count as arrows.
  */
 export const closedClasses: Rule = (context) => {
-  const { chain, body, kind, start, reading } = context;
+  const { chain, body, kind, start } = context;
   if (start || chain.arrowCount === 0 || kind === "columnsSum" || kind === "complement") return [];
-  if (reading.problems.some((problem) => problem.code.startsWith("rate") || problem.code === "cellFault")) return [];
-  const { classes, closed } = communicatingClasses(chain);
+  const { classes, closed } = communicatingClasses(possibleArrows(body));
   const ends = classes.filter((_, k) => closed[k]);
   if (ends.length < 2) return [];
   const final = ends.every((members) => members.length === 1 && meansFinal(body.nameOf(members[0])));

@@ -1,16 +1,18 @@
 import { communicatingClasses } from "../../chain/classes";
-import { rowSpan, stateName, type Rule } from "../context";
+import type { Generator } from "../../chain/generator";
+import { possibleArrows } from "../body";
+import { rowSpan, stateName, type Context, type Rule } from "../context";
 
 /**
- * States that the chain never enters (mistake 15). With a start: what no path from it reaches. Without one: a table has one
- * beginning, wherever it stands in the list (worst state first is common), so a single group without arrows in is taken for
- * it; of several, the one that holds the first state, else the one that reaches most. States without any arrow, in or out, are
- * reported here once, and not again as having no exit.
+ * States that the chain never enters (mistake 15). With a start: what no path from it reaches. Without one a table has one beginning:
+ * a single group without arrows in is taken for it when it holds the first state, or the last (worst state first is common; in a list
+ * the order says nothing). Of several such groups the one with the first state is the beginning; where none holds it, any may be.
+ * One finding for all. Cells that cannot be read count as arrows.
  */
 export const unreachable: Rule = (context) => {
   const { chain, kind, start } = context;
   if (kind === "columnsSum" || kind === "complement" || chain.arrowCount === 0) return [];
-  const unseen = start ? beyond(chain.size, start, context) : withoutEntry(context);
+  const unseen = start ? beyond(context, start) : withoutEntry(context);
   if (unseen.length === 0) return [];
   const [span, ...also] = unseen.map((state) => rowSpan(context, state));
   return [
@@ -24,29 +26,24 @@ export const unreachable: Rule = (context) => {
   ];
 };
 
-function beyond(size: number, start: Float64Array, { chain }: Parameters<Rule>[0]): number[] {
-  const seen = reach(chain, Array.from({ length: size }, (_, i) => i).filter((i) => start[i] > 0));
-  return Array.from({ length: size }, (_, i) => i).filter((i) => !seen[i]);
+function beyond({ body }: Context, start: Float64Array): number[] {
+  const states = Array.from({ length: body.size }, (_, i) => i);
+  const seen = reach(possibleArrows(body), states.filter((i) => start[i] > 0));
+  return states.filter((i) => !seen[i]);
 }
 
-function withoutEntry({ chain }: Parameters<Rule>[0]): number[] {
+function withoutEntry({ body }: Context): number[] {
+  const chain = possibleArrows(body);
   const { classOf, classes } = communicatingClasses(chain);
   const entered = new Uint8Array(classes.length);
   for (const [from, to] of chain.arrows()) if (classOf[from] !== classOf[to]) entered[classOf[to]] = 1;
   const sources = classes.filter((_, k) => !entered[k]);
-  if (sources.length < 2) return [];
-  let beginning = sources.find((members) => members.includes(0));
-  if (!beginning) {
-    let most = -1;
-    for (const members of sources) {
-      const reached = reach(chain, [...members]).reduce((sum, one) => sum + one, 0);
-      if (reached > most) [most, beginning] = [reached, members];
-    }
-  }
-  return sources.filter((members) => members !== beginning).flatMap((members) => [...members]).sort((a, b) => a - b);
+  const first = sources.find((members) => members.includes(0));
+  if (sources.length === 1 && (first || body.form === "list" || sources[0].includes(body.size - 1))) return [];
+  return sources.filter((members) => members !== first).flatMap((members) => [...members]).sort((a, b) => a - b);
 }
 
-function reach(chain: Parameters<Rule>[0]["chain"], from: readonly number[]): Uint8Array {
+function reach(chain: Generator, from: readonly number[]): Uint8Array {
   const seen = new Uint8Array(chain.size);
   const open = [...from];
   for (const state of open) seen[state] = 1;

@@ -1,5 +1,6 @@
 import type { Finding, Severity } from "../../audit/finding";
 import type { Detail } from "../../chain/problem";
+import { shortSentence } from "./book";
 import { figure, listed, plural } from "./figure";
 import { sentenceOf } from "./problems";
 
@@ -200,7 +201,7 @@ const WORDS: Readonly<Record<string, Words>> = {
   },
   unreachable: {
     finding: (f) => `${f.has("started") ? "From the start, no path leads" : "No arrow leads"} to ${f.names("names")}.`,
-    remedy: () => "Enter the missing arrow, or take the state out; a blank rate may hide a 0 that is not known.",
+    remedy: (f) => (f.has("started") ? "Enter the missing arrow, or take the state out." : "Enter the missing arrow, or take the state out; fine if it is the start."),
   },
   noExit: {
     finding: (f) => `${f.names("names")} ${f.list("names").length === 1 ? "has" : "have"} no exit: once there, for good.`,
@@ -229,6 +230,10 @@ const WORDS: Readonly<Record<string, Words>> = {
   exponentialsOverTable: {
     finding: (f) => `EXP is taken over ${f.text("where")} cell by cell: that gives no transition probabilities.`,
     remedy: (f) => `Take them from =CTMC.TRANSITION(${f.text("where")}, time), which works on the table as a whole.`,
+  },
+  formulaShort: {
+    finding: (f) => shortSentence(f.number("rows"), f.number("columns"), f.text("where")),
+    remedy: (f) => `Let the formula read ${f.text("where")}.`,
   },
   firstFailureAsBetween: {
     finding: (f) => `"${f.text("label")}" stands at a mean time to the first failure, which is not the time between failures.`,

@@ -1,6 +1,9 @@
 /** The practice workbook as the pane sees it. */
-import type { Fact, HostValue, Place, RangeAddress, RangeReading, SheetInfo, Workbook, WorkbookEvent, Write } from "../../pane/workbook";
+import type { Fact, HostValue, Place, RangeAddress, RangeReading, SheetInfo, SheetLook, Workbook, WorkbookEvent, Write } from "../../pane/workbook";
 import { cellText, COLUMN_LIMIT, ROW_LIMIT, toCanonical, type Area, type Book, type CellView, type Edit } from "./engine";
+
+/** Pixels that a character of the sheet's font takes, about. */
+const CHARACTER_WIDTH = 8;
 
 /** What the adapter needs of the page: the selection, and the open edit taken into its cell before anything is read or written. */
 export interface PageView {
@@ -133,6 +136,18 @@ export class PracticeWorkbook implements Workbook {
     }
     this.change([{ kind: "put", sheet, row: place.row, column: place.column, value: formula }], label);
     await this.book.whenIdle();
+  }
+
+  async presentSheet(sheet: string, look: SheetLook): Promise<void> {
+    const id = this.sheetId(sheet);
+    const columns = look.columnWidths.length;
+    this.change(
+      [
+        ...look.columnWidths.map((characters, column): Edit => ({ kind: "width", sheet: id, column, width: Math.round(characters * CHARACTER_WIDTH) })),
+        ...look.boldRows.map((row): Edit => ({ kind: "format", area: { sheet: id, row, column: 0, rows: 1, columns }, bold: true })),
+      ],
+      `look of ${sheet}`,
+    );
   }
 
   async select(range: RangeAddress): Promise<void> {

@@ -67,13 +67,16 @@ function section(key: string, title: string, none: string | null, ...lists: Chil
   return h("section", { key, "aria-labelledby": `sr-${key}`, "data-home-area": "view" }, h("h2", { id: `sr-${key}` }, title), none && h("p", { class: "sr-soft" }, none), ...lists);
 }
 
-function tableCard(session: Session, { address, hidden, size, arrows, stop }: BookTable, readers: number): VElement {
+/** A table found in the workbook; with the number of formulas that read it where that is known. */
+export function tableCard(session: Session, { address, hidden, size, arrows, stop }: BookTable, readers?: number): VElement {
   const place = placeText(address);
+  const read = readers === undefined ? "" : readers === 0 ? "read by no formula" : `read by ${count(readers, "formula")}`;
+  const facts = [stop ? "" : `${count(size, "state")} · ${count(arrows, "arrow")}`, read].filter((text) => text !== "").join(" · ");
   return h(
     "li",
     { key: place, class: stop ? "sr-card sr-edge-stop" : "sr-card", "data-table": place },
     h("div", { class: "sr-card-head" }, h("span", null, h("strong", null, address.sheet), hidden ? " (hidden sheet)" : ""), jump(session, address)),
-    h("p", { class: "sr-soft" }, [stop ? "" : `${count(size, "state")} · ${count(arrows, "arrow")} · `, readers === 0 ? "read by no formula" : `read by ${count(readers, "formula")}`].join("")),
+    facts !== "" && h("p", { class: "sr-soft" }, facts),
     stop && h("p", null, severityMark("stop"), ` ${findingTexts(stop).finding}`),
     h("div", { class: "sr-words" }, word("Check it", () => void session.lookAt(address), { "aria-label": `Check ${place}` })),
   );

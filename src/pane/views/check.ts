@@ -6,6 +6,7 @@ import type { Claim } from "../claims";
 import type { Looked, Question } from "../examine";
 import type { Session } from "../session";
 import type { RangeAddress } from "../workbook";
+import { tableCard } from "./book";
 import { acceptedCard, findingCard } from "./finding";
 import { count, inParts, word } from "./parts";
 import { signOffPart } from "./sign-off";
@@ -16,8 +17,7 @@ const SHOWN_ARROWS = 60;
 /** Findings by severity, what was accepted, what each arrow claims, sign-off and check sheet. */
 export function checkView(session: Session): Child {
   const { looked } = session.state;
-  if (!looked)
-    return h("p", { key: "none", class: "sr-soft", tabindex: "-1", "data-home": "view" }, session.state.busy ? "" : "Nothing to check yet. Book lists the rate tables of this workbook.");
+  if (!looked) return nothingYet(session);
   const { open, accepted, questions } = looked;
   return [
     countsLine(looked),
@@ -38,6 +38,16 @@ export function checkView(session: Session): Child {
       ),
     arrows(session, looked),
     signOffPart(session, looked),
+  ];
+}
+
+/** No table in view: the workbook's tables, to choose one from. */
+function nothingYet(session: Session): Child {
+  const { book } = session.state;
+  const tables = book.scanned?.scan.tables ?? [];
+  return [
+    h("h2", { key: "none", class: "sr-counts", tabindex: "-1", "data-home": "view" }, tables.length > 0 ? "Rate tables in this workbook" : book.status === "ready" ? "No rate table found in this workbook." : ""),
+    tables.length > 0 && h("ul", { key: "tables", class: "sr-list" }, ...inParts(session, "choose", tables, SHOWN_FINDINGS, (table) => tableCard(session, table))),
   ];
 }
 

@@ -109,6 +109,14 @@ describe("mistake 15: an unreachable state", () => {
     ]);
     expect(audit(cells).filter((finding) => finding.code === "unreachable")).toMatchObject([{ details: { names: ["Odd", "Strange"] } }]);
   });
+  it("warns of a state in the middle of a square table, where nobody puts the beginning", () => {
+    const middle = headed("", ["Up", "Odd", "Down"], [[null, 0, 1], [1, null, 0], [2, 0, null]]);
+    expect(findingOf(middle, "unreachable")).toMatchObject({ details: { names: ["Odd"] } });
+    expect(complaints([["Up", "Down", 1], ["Odd", "Up", 1], ["Down", "Up", 2], ["Down", "Lost", 2]])).toEqual([]);
+  });
+  it("counts a cell that cannot be read as an arrow", () => {
+    expect(complaints(headed("", three, [[null, 0.02, "?"], [0.5, null, -1], [1, 0, null]]))).toEqual(["rateNotNumber", "rateNegative"]);
+  });
   it("is silent on a table that lists the worst state first", () => {
     expect(complaints(headed("", ["Scrapped", "Worn", "New"], [[null, 0, 0], [1, null, 0], [0.1, 2, null]]))).toEqual([]);
   });
