@@ -1,3 +1,4 @@
+import { Problem } from "../../chain/problem";
 import { bodySpan, type Rule } from "../context";
 
 /** Formulas about a time until something, which without targets mean the absorbing states. */
@@ -5,7 +6,7 @@ const UNTIL = new Set(["MEANABSORPTION", "ABSORPTIONSD", "ABSORPTIONPROB", "TIME
 
 /**
  * A time to failure asked of a table in which nothing is final, and no target named (mistake 17). Seen only where the formulas that
- * read the table are known; the formula itself refuses with the same advice.
+ * read the table are known; the formula itself refuses with the same sentence.
  */
 export const noTarget: Rule = (context) => {
   const { chain, options, kind } = context;
@@ -13,5 +14,5 @@ export const noTarget: Rule = (context) => {
   for (let i = 0; i < chain.size; i++) if (chain.rowStart[i] === chain.rowStart[i + 1]) return [];
   const asking = (options.asked ?? []).filter((question) => UNTIL.has(question.name) && !question.hasTargets);
   if (asking.length === 0) return [];
-  return [{ code: "noTarget", severity: "stop", span: bodySpan(context), details: { name: asking[0].name, where: asking[0].where, formulas: asking.length } }];
+  return [{ code: "noTarget", severity: "stop", problem: new Problem("noTargets"), span: bodySpan(context), details: { name: asking[0].name, where: asking[0].where, formulas: asking.length } }];
 };

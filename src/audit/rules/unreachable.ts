@@ -5,8 +5,8 @@ import { rowSpan, stateName, type Context, type Rule } from "../context";
 
 /**
  * States that the chain never enters (mistake 15). With a start: what no path from it reaches. Without one a table has one beginning:
- * a single group without arrows in is taken for it when it holds the first state, or the last (worst state first is common; in a list
- * the order says nothing). Of several such groups the one with the first state is the beginning; where none holds it, any may be.
+ * a single group without arrows in is taken for it, unless it is one state in the middle of a square table (worst state first is
+ * common, the beginning in the middle is not; in a list the order says nothing). Of several such groups the one with the first state is the beginning; where none holds it, any may be.
  * One finding for all. Cells that cannot be read count as arrows.
  */
 export const unreachable: Rule = (context) => {
@@ -39,7 +39,7 @@ function withoutEntry({ body }: Context): number[] {
   for (const [from, to] of chain.arrows()) if (classOf[from] !== classOf[to]) entered[classOf[to]] = 1;
   const sources = classes.filter((_, k) => !entered[k]);
   const first = sources.find((members) => members.includes(0));
-  if (sources.length === 1 && (first || body.form === "list" || sources[0].includes(body.size - 1))) return [];
+  if (sources.length === 1 && (first || body.form === "list" || sources[0].length > 1 || sources[0].includes(body.size - 1))) return [];
   return sources.filter((members) => members !== first).flatMap((members) => [...members]).sort((a, b) => a - b);
 }
 

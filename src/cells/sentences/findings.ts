@@ -156,12 +156,12 @@ const WORDS: Readonly<Record<string, Words>> = {
     remedy: () => "Give all rates one format, and check that 12 and 12 % do not stand for the same thing.",
   },
   closedClasses: {
-    finding: (f) => `Long-run shares depend on the start: once in ${f.groups()}, never out again.`,
+    finding: (f) => `Long-run shares depend on the start: once in ${f.groups()}, never out again.`, // where it is a note
     remedy: (f) => (f.has("final") ? "Name a start in long-run formulas." : "Enter the missing arrow between the groups, or name a start."),
   },
   noTarget: {
-    finding: (f) => `${f.text("where")} asks for a time until an end, but no state is final and no target is named.`,
-    remedy: (f) => `Name the target states in CTMC.${f.text("name")}, such as the failed ones.`,
+    finding: () => "",
+    remedy: (f) => `Asked at ${f.text("where")}: name the target states in CTMC.${f.text("name")}, such as the failed ones.`,
   },
   totalsSelected: {
     finding: (f) => `${capital(f.lines())} ${f.list("lines").length === 1 ? "is a total" : "are totals"}, not a state.`,
