@@ -63,20 +63,20 @@ export const plan: DemoSheet = {
 
 /**
  * Five planted mistakes, each of another kind: the diagonal of Running does not match its exits (B4), a rate is text with
- * a decimal comma (D5), a rate is negative (E6), a column is headed "Repairs" and its row "Repair" (E3), and no arrow
- * leads to Parked (row 8).
+ * a decimal comma (D5), a rate is negative (E6), a column is headed "Repairs" and its row "Repair" (E3), and Overhaul
+ * has no way out (row 8).
  */
 export const fromColleague: DemoSheet = {
   name: "From a colleague",
   cells: {
     A1: [["Cooling tower fans, rates per day (from Oddvar, please look it over)"]],
     A3: [
-      ["from \\ to", "Running", "Vibrating", "Stopped", "Repairs", "Parked"],
-      ["Running", -0.03, 0.02, 0.004],
+      ["from \\ to", "Running", "Vibrating", "Stopped", "Repairs", "Overhaul"],
+      ["Running", -0.03, 0.02, 0.004, null, 0.001],
       ["Vibrating", 0.1, null, "0,120"],
       ["Stopped", null, null, null, -0.33],
       ["Repair", 0.5],
-      ["Parked", 0.01],
+      ["Overhaul"],
     ],
     A10: [["Available in the long run", null, '=CTMC.AVAILABILITY(A3:F8,{"Running","Vibrating"})']],
     A11: [["Days until it stops", null, '=INDEX(CTMC.MEANABSORPTION(A3:F8,"Stopped"),1)']],

@@ -129,7 +129,7 @@ export function buildPage({ book, host, storage, demo, unreadable }: PageParts):
   });
 
   // The pane comes after the first drawing: the sheet does not wait for it.
-  void new PracticeWorkbook(book, {
+  const workbook = new PracticeWorkbook(book, {
     get selection() {
       return session.area;
     },
@@ -140,6 +140,7 @@ export function buildPage({ book, host, storage, demo, unreadable }: PageParts):
     select: (area) => commands.select(area),
     onSelection: (listener) => session.on("selection", listener),
   });
+  void import("../../../pane/mount").then(({ mountPane }) => mountPane(paneBody, workbook));
 }
 
 /** F6 goes round the parts of the page, Shift and F6 back. */

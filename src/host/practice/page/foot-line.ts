@@ -82,7 +82,7 @@ export class FootLine {
     const selected = areaOf(session.selection);
     const many = selected.rows * selected.columns > 1;
     const area = many ? selected : blockAround(session, session.active);
-    const count = session.filled(session.active.row, session.active.column) || many ? session.book.dependents({ sheet: session.sheet, ...area }) : 0;
+    const count = session.book.dependents({ sheet: session.sheet, ...area });
     const what = many ? "the selection" : area.rows * area.columns > 1 ? "this table" : "this cell";
     this.follows.textContent = count === 0 ? "" : `${count} ${count === 1 ? "result follows" : "results follow"} ${what}`;
     this.sum.textContent = many ? this.summed(selected.rows * selected.columns) : "";
