@@ -39,7 +39,7 @@ export function generatorFromProbability(size: number, p: Float64Array, period: 
 export function* generatorFromProbabilitySteps(size: number, p: Float64Array, period: number): Steps<FromProbability> {
   if (!(period > 0 && period < Infinity)) throw new Problem("periodNotPositive", { period });
   const logarithm = yield* principalLogarithm(size, p);
-  if (!logarithm || !logarithm.every(Number.isFinite)) throw new Problem("noRealLogarithm", {}, "noAnswer");
+  if (!logarithm) throw new Problem("noRealLogarithm", {}, "noAnswer");
   const reachable = reachability(size, p);
   let largest = 0;
   for (const value of logarithm) largest = Math.max(largest, Math.abs(value));
@@ -54,9 +54,46 @@ export function* generatorFromProbabilitySteps(size: number, p: Float64Array, pe
         else logarithm[at] = 0;
       }
     }
-  if (!exact) for (let i = 0; i < size; i++) projectOntoGeneratorRow(logarithm.subarray(i * size, (i + 1) * size), i);
-  const rates = logarithm.map((value) => (value / period < SMALLEST_RATE ? 0 : value / period));
-  return { generator: Generator.fromDense(size, rates), exact };
+  if (exact) yield* fitSmallRates(size, p, logarithm, largest);
+  else for (let i = 0; i < size; i++) projectOntoGeneratorRow(logarithm.subarray(i * size, (i + 1) * size), i);
+  return { generator: generatorOf(size, logarithm, period), exact };
+}
+
+/**
+ * Rates too small for the logarithm to see (it is right to a rounding of its largest entry) are taken from their own entries:
+ * all below this share are dropped, and those come back without which an entry of the table would be missed.
+ */
+const UNSEEN_SHARE = 1e-13;
+/** An entry is missed when it comes out too small by more than this share of itself. */
+const MISSED_SHARE = 1e-11;
+const FITTING_ROUNDS = 8;
+
+function* fitSmallRates(n: number, p: Float64Array, logarithm: Float64Array, largest: number): Steps<void> {
+  const unseen: number[] = [];
+  for (let k = 0; k < n * n; k++)
+    if (k % (n + 1) !== 0 && logarithm[k] <= UNSEEN_SHARE * largest) {
+      logarithm[k] = 0;
+      if (p[k] > 0) unseen.push(k);
+    }
+  if (unseen.length === 0) return;
+  for (let round = 0; round < FITTING_ROUNDS; round++) {
+    const back = yield* transitionMatrixSteps(generatorOf(n, logarithm, 1), 1);
+    let missed = false;
+    for (const k of unseen) {
+      const gap = p[k] - back[k];
+      if (!(Math.abs(gap) > MISSED_SHARE * p[k]) || (gap < 0 && logarithm[k] === 0)) continue;
+      missed = true;
+      // One arrow's own part of p_ij is its rate times ∫ e^(−q_i s) e^(−q_j (1 − s)) ds, the logarithmic mean of the stays.
+      const [stayFrom, stayTo] = [p[Math.floor(k / n) * (n + 1)], p[(k % n) * (n + 1)]];
+      const mean = Math.abs(stayFrom - stayTo) < 1e-6 ? stayFrom : (stayFrom - stayTo) / Math.log(stayFrom / stayTo);
+      logarithm[k] = Math.max(0, logarithm[k] + gap / mean);
+    }
+    if (!missed) return;
+  }
+}
+
+function generatorOf(n: number, rates: Float64Array, period: number): Generator {
+  return Generator.fromDense(n, rates.map((rate) => (rate / period < SMALLEST_RATE ? 0 : rate / period)));
 }
 
 /**

@@ -1,6 +1,6 @@
 import { agree, multiplySteps, unpadded, type MatrixBlock, type MatrixKernel } from "./matrix-kernel";
 import { planTaylor } from "./taylor-plan";
-import { TAYLOR_SLOTS, taylorStart } from "./taylor-start";
+import { TAYLOR_SLOTS, taylorStart } from "./taylor-scheme";
 
 /** A chain for the dense methods: rates off the diagonal (row-major, zero diagonal) and their row sums. */
 export interface DenseRates {
@@ -23,9 +23,9 @@ export function unchangedTolerance(size: number): number {
  *
  * *Method*: scaling and squaring of the Taylor series of N = (Q + ΛI)h, which has no negative term (Xue & Ye, Numer. Math.
  * 110 (2008) 393–403; Shao, Gao & Xue, UMINF 12.04), with row repair (ours, `repairRow`) after the start and after
- * every squaring, the degree and the number of squarings by both limits of `planTaylor`, and an early end once a
+ * every squaring, the order and the number of squarings by both limits of `planTaylor`, and an early end once a
  * squaring changes nothing.
- * *Cost*: 5 to 9 products for the start, log2(Λt) squarings at most, each n³ multiply-adds.
+ * *Cost*: 1 to 5 products for the start, log2(Λt) squarings at most, each n³ multiply-adds.
  */
 export function* denseTransition(
   chain: DenseRates,
@@ -39,7 +39,7 @@ export function* denseTransition(
   const block = kernel.open(n, TAYLOR_SLOTS);
   try {
     fillUniformized(block, chain, time / 2 ** plan.squarings);
-    let now = yield* taylorStart(block, plan.degree, jumps / 2 ** plan.squarings);
+    let now = yield* taylorStart(block, plan.order, jumps / 2 ** plan.squarings);
     block.repair(now);
     const tolerance = unchangedTolerance(n);
     for (let s = 1; s <= plan.squarings; s++) {

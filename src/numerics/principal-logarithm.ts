@@ -1,4 +1,4 @@
-import { LuDecomposition, Matrix } from "ml-matrix";
+import { EigenvalueDecomposition, LuDecomposition, Matrix } from "ml-matrix";
 
 type Steps<T> = globalThis.Generator<number, T, void>;
 
@@ -22,33 +22,106 @@ export const WEIGHTS: readonly number[] = [
   0.14776211235737643509, 0.13463335965499817755, 0.109543181257991022, 0.074725674575290296573, 0.033335672154344068797,
 ];
 
+/** A candidate is the logarithm when its exponential gives the matrix back to this. */
+const LARGEST_RESIDUAL = 1e-8;
+/** One that gives it back to this is not improved on. */
+const SMALL_RESIDUAL = 1e-13;
+/** The residual is itself known to rounding only: the second candidate must be better by this factor. */
+const CLEARLY_BETTER = 1 / 16;
+
 /**
- * The principal logarithm of a real matrix, or null where it has none that is real (an eigenvalue on the closed negative
- * real axis).
+ * The principal logarithm of a real matrix of norm about 1, or null where it has none that is real: an eigenvalue on the
+ * closed negative real axis, or so near to 0 that the matrix is singular to rounding.
  *
- * *Method*: inverse scaling and squaring (Kenney & Laub, SIAM J. Matrix Anal. Appl. 10 (1989) 191–209): square roots by the
- * scaled product form of the Denman–Beavers iteration until near I, then log(I + X) = ∫₀¹ X (I + sX)⁻¹ ds by Gauss's rule,
- * which is its diagonal Padé approximant in partial fractions (Dieci, Morini & Papini, SIMAX 17 (1996) 570–593). The matrix is
- * never diagonalised. References from memory.
- * *Cost*: about 10 inverses a root, 10 solves at the end.
+ * *Method*: inverse scaling and squaring; where that loses digits (eigenvalues of very different size), the eigenvectors give
+ * a second candidate. Neither is trusted: the one whose exponential is nearer to the matrix is taken, and none
+ * that misses it. So a matrix that cannot be diagonalised is never harmed by the attempt.
  */
 export function* principalLogarithm(n: number, values: Float64Array): Steps<Float64Array | null> {
-  let matrix = toMatrix(n, values);
-  const identity = Matrix.eye(n);
-  let roots = 0;
-  for (; oneNorm(Matrix.sub(matrix, identity)) > NEAR_IDENTITY; roots++) {
-    const root = roots < MOST_ROOTS ? yield* squareRoot(matrix) : null;
-    if (!root) return null;
-    matrix = root;
+  const matrix = toMatrix(n, values);
+  if (isSingular(matrix)) return null;
+  let best: Matrix | null = null;
+  let smallest = LARGEST_RESIDUAL;
+  for (const candidate of [logarithmByRoots, logarithmByEigenvectors]) {
+    const logarithm = yield* candidate(matrix);
+    const residual = logarithm ? Matrix.sub(exponential(logarithm), matrix).norm("max") : Infinity;
+    if (residual < (best ? smallest * CLEARLY_BETTER : smallest)) {
+      smallest = residual;
+      best = logarithm;
+    }
+    if (smallest <= SMALL_RESIDUAL) break;
+    yield 0.5;
   }
-  const x = Matrix.sub(matrix, identity);
-  const sum = Matrix.zeros(n, n);
+  return best ? Float64Array.from(best.to1DArray()) : null;
+}
+
+/**
+ * *Method*: inverse scaling and squaring (Kenney & Laub, SIAM J. Matrix Anal. Appl. 10 (1989) 191–209): square roots by the
+ * scaled product form of the Denman–Beavers iteration until near I, then log(I + X) = ∫₀¹ X (I + sX)⁻¹ ds by Gauss's rule,
+ * which is its diagonal Padé approximant in partial fractions (Dieci, Morini & Papini, SIMAX 17 (1996) 570–593). References
+ * from memory. *Cost*: about 10 inverses a root, 10 solves at the end.
+ */
+export function* logarithmByRoots(matrix: Matrix): Steps<Matrix | null> {
+  const identity = Matrix.eye(matrix.rows);
+  let power = matrix;
+  let roots = 0;
+  for (; oneNorm(Matrix.sub(power, identity)) > NEAR_IDENTITY; roots++) {
+    const root = roots < MOST_ROOTS ? yield* squareRoot(power) : null;
+    if (!root) return null;
+    power = root;
+  }
+  const x = Matrix.sub(power, identity);
+  const sum = Matrix.zeros(matrix.rows, matrix.rows);
   for (let k = 0; k < NODES.length; k++) {
     const term = new LuDecomposition(Matrix.add(identity, Matrix.mul(x, NODES[k]))).solve(x);
     sum.add(Matrix.mul(term, WEIGHTS[k]));
-    yield 0.6 + (0.4 * k) / NODES.length;
+    yield 0.3;
   }
-  return Float64Array.from(sum.mul(2 ** roots).to1DArray());
+  return sum.mul(2 ** roots);
+}
+
+/** V log(D) V⁻¹; null where an eigenvalue is not positive or the vectors do not span. */
+export function* logarithmByEigenvectors(matrix: Matrix): Steps<Matrix | null> {
+  const n = matrix.rows;
+  const { realEigenvalues: re, imaginaryEigenvalues: im, eigenvectorMatrix: v } = new EigenvalueDecomposition(matrix);
+  yield 0.7;
+  const logD = Matrix.zeros(n, n);
+  for (let k = 0; k < n; k++) {
+    if (im[k] === 0 && !(re[k] > 0)) return null;
+    logD.set(k, k, Math.log(Math.hypot(re[k], im[k])));
+    // A pair a ± bi stands as the block [a, b; −b, a].
+    if (im[k] > 0 && k + 1 < n) {
+      const angle = Math.atan2(im[k], re[k]);
+      logD.set(k, k + 1, angle);
+      logD.set(k + 1, k, -angle);
+    }
+  }
+  const lu = new LuDecomposition(v.transpose());
+  if (lu.isSingular()) return null;
+  return lu.solve(v.mmul(logD).transpose()).transpose();
+}
+
+/** Singular to rounding, by the pivots of elimination. */
+function isSingular(matrix: Matrix): boolean {
+  const upper = new LuDecomposition(matrix).upperTriangularMatrix;
+  for (let i = 0; i < matrix.rows; i++) if (!(Math.abs(upper.get(i, i)) > matrix.rows * 2 ** -53)) return true;
+  return false;
+}
+
+/** exp of a general matrix, for the check only: Taylor to degree 18 at norm ½, then squarings. Normwise accurate. */
+function exponential(matrix: Matrix): Matrix {
+  const norm = oneNorm(matrix);
+  if (!Number.isFinite(norm)) return Matrix.zeros(matrix.rows, matrix.rows).fill(NaN);
+  const squarings = Math.max(0, Math.ceil(Math.log2(norm)) + 1);
+  const small = Matrix.mul(matrix, 2 ** -squarings);
+  let term = Matrix.eye(matrix.rows);
+  let sum = term.clone();
+  for (let k = 1; k <= 18; k++) {
+    term = term.mmul(small).mul(1 / k);
+    sum.add(term);
+  }
+  for (let s = 0; s < squarings; s++) sum = sum.mmul(sum);
+  return sum;
 }
 
 /** Principal square root; null where the iteration does not converge. */

@@ -1,24 +1,15 @@
+import { SCHEMES } from "./taylor-scheme";
+
 /**
  * How far to expand and how often to square: the cheapest (m, s) for which the truncated series is exact to rounding in
  * every entry, the smallest included.
  *
- * P(t) = (e^(-x) T_m(N))^(2^s), N = (Q + ΛI)h, h = t/2^s, x = Λh, T_m the Taylor polynomial of degree m.
+ * P(t) = (e^(-x) T_m(N))^(2^s), N = (Q + ΛI)h, h = t/2^s, x = Λh, T_m an evaluation that agrees with the exponential series up to order m.
  */
 export interface TaylorPlan {
-  readonly degree: number;
+  readonly order: number;
   readonly squarings: number;
 }
-
-/** Degree and number of matrix products of each evaluation scheme in `taylor-start.ts`. */
-export const SCHEMES: readonly { readonly degree: number; readonly products: number }[] = [
-  { degree: 4, products: 2 },
-  { degree: 6, products: 3 },
-  { degree: 9, products: 4 },
-  { degree: 12, products: 5 },
-  { degree: 16, products: 6 },
-  { degree: 20, products: 7 },
-  { degree: 25, products: 8 },
-];
 
 /** Truncation is kept below this many bits, a quarter of the rounding error of one operation. */
 const TRUNCATION_BITS = 55;
@@ -38,39 +29,39 @@ const TRUNCATION_BITS = 55;
  */
 export function planTaylor(size: number, jumps: number, spread: number): TaylorPlan {
   const jumpBits = Math.log2(jumps);
-  let best: TaylorPlan = { degree: 0, squarings: 0 };
+  let best: TaylorPlan = { order: 0, squarings: 0 };
   let bestCost = Infinity;
-  for (const { degree, products } of SCHEMES) {
-    const byNorm = Math.max(0, Math.ceil(jumpBits - xLimitBits(degree, 0)));
+  for (const { order, products } of SCHEMES) {
+    const byNorm = Math.max(0, Math.ceil(jumpBits - xLimitBits(order, 0)));
     if (products + byNorm > bestCost) continue;
-    const bySpread = Math.ceil(jumpBits - xLimitBits(degree, Math.log2(spread)));
+    const bySpread = Math.ceil(jumpBits - xLimitBits(order, Math.log2(spread)));
     let squarings = byNorm;
     if (bySpread > byNorm) {
-      const byPaths = Math.ceil((TRUNCATION_BITS + pathBits(size, jumps, degree)) / degree);
+      const byPaths = Math.ceil((TRUNCATION_BITS + pathBits(size, jumps, order)) / order);
       squarings = Math.max(byNorm, Math.min(byPaths, bySpread));
     }
     if (products + squarings <= bestCost) {
       bestCost = products + squarings;
-      best = { degree, squarings };
+      best = { order, squarings };
     }
   }
   return best;
 }
 
 /** log2 of the largest x with x^m/(m+1)! ≤ 2^-(55 + extraBits). */
-function xLimitBits(degree: number, extraBits: number): number {
-  return (log2Factorial(degree + 1) - TRUNCATION_BITS - extraBits) / degree;
+function xLimitBits(order: number, extraBits: number): number {
+  return (log2Factorial(order + 1) - TRUNCATION_BITS - extraBits) / order;
 }
 
 /** log2 of the largest C(n − 1 + r, m + 1) · min(1, X^r/r!) over r; −Infinity when no path exceeds m jumps. */
-function pathBits(size: number, jumps: number, degree: number): number {
+function pathBits(size: number, jumps: number, order: number): number {
   const loops = Math.min(jumps, 4 * size);
   const loopBits = Math.log2(loops);
   let largest = -Infinity;
   // X^r/r! ≥ 1 up to r = X at least, and the binomial only grows: the largest is further on.
   for (let r = Math.floor(loops); ; r++) {
     const weight = r * loopBits - log2Factorial(r);
-    const bits = log2Binomial(size - 1 + r, degree + 1) + Math.min(0, weight);
+    const bits = log2Binomial(size - 1 + r, order + 1) + Math.min(0, weight);
     if (bits >= largest) largest = bits;
     else if (weight < 0) return largest;
     if (weight < -1100) return largest;

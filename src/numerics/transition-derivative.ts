@@ -1,7 +1,7 @@
 import { fillUniformized, rateSpread, unchangedTolerance, type DenseRates } from "./dense-transition";
 import { agree, load, multiplySteps, unpadded, type MatrixBlock, type MatrixKernel } from "./matrix-kernel";
 import { planTaylor } from "./taylor-plan";
-import { TAYLOR_SLOTS, taylorCoefficients, taylorStart } from "./taylor-start";
+import { TAYLOR_SLOTS, taylorCoefficients, taylorStart } from "./taylor-scheme";
 
 type Steps<T> = globalThis.Generator<number, T, void>;
 
@@ -29,12 +29,12 @@ export class TransitionDerivative {
   static *open(chain: DenseRates, time: number, kernel: MatrixKernel): Steps<TransitionDerivative> {
     const n = chain.size;
     const jumps = chain.largestExit * time;
-    const { degree, squarings } = planTaylor(n, jumps, rateSpread(chain));
+    const { order, squarings } = planTaylor(n, jumps, rateSpread(chain));
     const step = time / 2 ** squarings;
     const block = kernel.open(n, TAYLOR_SLOTS);
     fillUniformized(block, chain, step);
     const uniformized = unpadded(block, 0);
-    let now = yield* taylorStart(block, degree, jumps / 2 ** squarings);
+    let now = yield* taylorStart(block, order, jumps / 2 ** squarings);
     block.repair(now);
     const powers = [unpadded(block, now)];
     // Once P no longer changes, two more doublings take D to its limit too: P D P = 0 for P² = P.
@@ -46,7 +46,7 @@ export class TransitionDerivative {
       if (further === Infinity && agree(block, now, next, unchangedTolerance(n))) further = 3;
       now = next;
     }
-    const coefficients = taylorCoefficients(degree, jumps / 2 ** squarings);
+    const coefficients = taylorCoefficients(order, jumps / 2 ** squarings);
     return new TransitionDerivative(n, step, powers, uniformized, coefficients, block);
   }
 

@@ -1,0 +1,122 @@
+import { multiplySteps, type MatrixBlock } from "./matrix-kernel";
+
+/**
+ * A way to evaluate a polynomial of a matrix in few products, all of its coefficients non-negative:
+ *
+ *   y₀ = N,  y₁ = N²,  y_k = (Σ_i left_i y_i)(right₀ I + Σ_i right_(i+1) y_i),  T = sum₀ I + Σ_i sum_(i+1) y_i.
+ *
+ * T agrees with Σ N^k/k! up to `order`; its further coefficients (the degree is 2^products) lie between 0 and 2/k!, so they
+ * lessen the truncation or at worst repeat it.
+ */
+export interface TaylorScheme {
+  readonly order: number;
+  readonly products: number;
+  readonly factors: readonly (readonly [left: readonly number[], right: readonly number[]])[];
+  readonly sum: readonly number[];
+}
+
+/**
+ * *Method*: Paterson & Stockmeyer (SIAM J. Comput. 2 (1973) 60–66) reach order 9, 12, 16 in 4, 5, 6 products. Nested products
+ * reach more (Bader, Blanes & Casas, Mathematics 7 (2019) 1174; Sastre, Linear Algebra Appl. 539 (2018) 229–250, both from
+ * memory), but the published coefficients beyond order 8 have both signs, and one subtraction of large terms would cost the
+ * small entries their digits. These are ours: least squares over the logarithms of the coefficients, which cannot leave the positive
+ * numbers, from random starts; then as many as possible set to zero, refined to 60 digits, and the last bits
+ * chosen so that each Taylor coefficient comes out within a rounding error (`test/unit/numerics/taylor-scheme.test.ts`
+ * multiplies them out exactly). Order 15 in 4 products was not found.
+ */
+export const SCHEMES: readonly TaylorScheme[] = [
+  { order: 2, products: 1, factors: [], sum: [1, 1, 0.5] },
+  { order: 4, products: 2, factors: [[[0, 1], [0.5, 1 / 6, 1 / 24]]], sum: [1, 1, 0, 1] },
+  {
+    order: 8,
+    products: 3,
+    factors: [
+      [[0.5385108534511978, 0.13462771336279944], [1.4023812640575881, 0, 0.11686510533813235]],
+      [[1.2555058426912584, 0, 0.9974920127805152], [0.6916241967002859, 0, 0.0922165595600381, 0.3663275728373365]],
+    ],
+    sum: [1, 0, 0.15714285714285714, 0.8197161581331958, 0.27419642788682064],
+  },
+  {
+    order: 14,
+    products: 4,
+    factors: [
+      [[0.07479850864991895, 0.08139039759836054], [0.6228802239329043, 0, 0.03497216577150581]],
+      [[0.61700241091104, 0, 0.21669963348748172], [0.5311729975003534, 0, 0.03082129635907378, 0.20336530108443313]],
+      [
+        [0, 0.04880353836911137, 0.6025480217841562, 0.7027188860118965],
+        [0.6066518247091006, 0.11170999008199577, 0.023013357163462287, 0.14945981789812723, 0.14850804440319124],
+      ],
+    ],
+    sum: [1, 0.24990737316737138, 0.04137284979463552, 0, 0, 4.716613041000523],
+  },
+  {
+    order: 20,
+    products: 5,
+    factors: [
+      [[0, 1], [0.020615367469079635, 0.0002727322040049444, 0.00013267003730250767]],
+      [[0.0695029751496608, 0, 1.2052288993407245], [0, 2.0041532002542937, 0.1344978081982248, 0.33235988700683927]],
+      [[0, 0, 0, 1], [0, 0.33963335417002205, 0.016618766572352842, 0.5474845399023898, 0.030210002790466012]],
+      [
+        [0, 0.09813104187136824, 0.006890859349604119, 0.4580926623678955, 0.1756552537124923],
+        [4.78707340178821, 0.49276052040660184, 0.10430795332824135, 0.9090568053844359, 0.25016561703107126, 0.007797137907221174],
+      ],
+    ],
+    sum: [1, 1, 0.007566096017468347, 0, 0.5282791712445599, 0, 0.5398194163498349],
+  },
+];
+
+/** Slots that `taylorStart` needs: N, a result a product, two factors. */
+export const TAYLOR_SLOTS = 8;
+
+/** Terms of a combination without the zeros. */
+interface Combination {
+  readonly constant: number;
+  readonly coefficients: readonly number[];
+  readonly slots: readonly number[];
+}
+
+function combination(constant: number, coefficients: readonly number[]): Combination {
+  const slots = Array.from(coefficients.keys()).filter((i) => coefficients[i] !== 0);
+  return { constant, coefficients: slots.map((i) => coefficients[i]), slots };
+}
+
+const programs = new Map(
+  SCHEMES.map(({ order, factors, sum }) => [
+    order,
+    {
+      factors: factors.map(([left, right]) => [combination(0, left), combination(right[0], right.slice(1))] as const),
+      sum: combination(sum[0], sum.slice(1)),
+    },
+  ]),
+);
+
+/**
+ * P(h) = e^(−x) T(N), N in slot 0; the result is in the slot that is returned. All terms are non-negative, so every entry
+ * keeps the relative accuracy of its largest terms.
+ */
+export function* taylorStart(block: MatrixBlock, order: number, x: number): globalThis.Generator<number, number, void> {
+  const program = programs.get(order);
+  if (!program) throw new RangeError(`no scheme of order ${order}`);
+  const left = TAYLOR_SLOTS - 2;
+  const right = TAYLOR_SLOTS - 1;
+  yield* multiplySteps(block, 1, 0, 0, 0);
+  let product = 2;
+  for (const [first, second] of program.factors) {
+    const bare = first.slots.length === 1 && first.coefficients[0] === 1;
+    if (!bare) block.combine(left, 0, first.coefficients, first.slots);
+    block.combine(right, second.constant, second.coefficients, second.slots);
+    yield* multiplySteps(block, product++, bare ? first.slots[0] : left, right, 0);
+  }
+  const scale = Math.exp(-x);
+  const { constant, coefficients, slots } = program.sum;
+  block.combine(left, scale * constant, coefficients.map((c) => scale * c), slots);
+  return left;
+}
+
+/** e^(−x)/k! for k = 0 .. m. */
+export function taylorCoefficients(degree: number, x: number): Float64Array {
+  const c = new Float64Array(degree + 1);
+  c[0] = Math.exp(-x);
+  for (let k = 1; k <= degree; k++) c[k] = c[k - 1] / k;
+  return c;
+}
