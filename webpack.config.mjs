@@ -65,6 +65,12 @@ class DropScriptOf {
   }
 }
 
+/**
+ * The language's own names that stand in loops. Where a host embeds the script in a context of its own, each look-up of a
+ * global there passes through the host (some 50 ns, ten times the work around it); so they are bound once, around the script.
+ */
+const BOUND = "Math,Number,Array,Object,Float64Array,Int32Array,Uint32Array,Uint8Array,Map,Set,String,NaN,Infinity,undefined";
+
 /** A plain script that registers the functions: one file, no DOM, no second request. */
 const functions = {
   ...common,
@@ -72,7 +78,12 @@ const functions = {
   target: ["es2022"],
   entry: { functions: "./src/functions/entry.ts" },
   output: { path: DIST, filename: "[name].js", iife: true, chunkFormat: false, chunkLoading: false },
-  plugins: [new webpack.optimize.LimitChunkCountPlugin({ maxChunks: 1 }), new MetadataPlugin()],
+  plugins: [
+    new webpack.optimize.LimitChunkCountPlugin({ maxChunks: 1 }),
+    new webpack.BannerPlugin({ raw: true, banner: `(function(${BOUND}){` }),
+    new webpack.BannerPlugin({ raw: true, footer: true, banner: `})(${BOUND});` }),
+    new MetadataPlugin(),
+  ],
 };
 
 /**
