@@ -168,7 +168,8 @@ function argumentOf(given: unknown): Argument {
 }
 
 function cellOf(value: unknown): CellValue {
-  if (typeof value === "number" || typeof value === "string" || typeof value === "boolean") return value;
+  if (typeof value === "number") return Number.isFinite(value) ? value : { fault: "#NUM!" };
+  if (typeof value === "string" || typeof value === "boolean") return value;
   if (value === null || value === undefined) return "";
   return { fault: faultOf(value) ?? "#VALUE!" };
 }

@@ -38,6 +38,7 @@ export function squareLayout(cells: Cells, options: { readonly exact?: boolean }
     return refused(new Problem("notSquare", { rows, columns, headings, span: [row, column, Math.max(rows, 1), Math.max(columns, 1)] }));
   }
   const size = rows;
+  if (size === 1 && headings === "none" && isText(cellAt(cells, 0, 0)) && extent.rows * extent.columns === 1) return refused(new Problem("rangeEmpty"));
   const names = headings === "none" ? { names: null, problems: [] } : readNames(cells, headings, size);
   const layout: Layout = {
     form: "square",
@@ -94,7 +95,9 @@ function headingsOf(cells: Cells, extent: Extent): Headings | null {
     if (filledRows === filledColumns) return sameNames(cells, filledRows) ? "both" : byShape(rows, columns);
     return byShape(filledRows, filledColumns);
   }
-  return isVoid(corner) && filledRows === filledColumns && numbersAsHeadings(cells, filledRows) ? null : "none";
+  if (!isVoid(corner) || filledRows !== filledColumns) return "none";
+  if (textsAsHeadings(cells, filledRows)) return "both";
+  return numbersAsHeadings(cells, filledRows) ? null : "none";
 }
 
 function byShape(rows: number, columns: number): Headings {
@@ -126,6 +129,12 @@ function isHeadingLine(length: number, cell: (k: number) => CellValue): { headin
     if (numberInText(value) === null && !isDiagonalMark(value)) words++;
   }
   return { headings: words > 0, names };
+}
+
+/** Numbers kept as text, the same above and beside: names that were numbers, as results with headings give them back. */
+function textsAsHeadings(cells: Cells, length: number): boolean {
+  for (let k = 1; k < length; k++) if (!isText(cellAt(cells, 0, k)) || !isText(cellAt(cells, k, 0))) return false;
+  return sameNames(cells, length);
 }
 
 function sameNames(cells: Cells, length: number): boolean {

@@ -87,11 +87,11 @@ export class Words {
   }
 }
 
+/** A number in few characters: as typed if that is short, else to six digits, with a power of ten where it is far from 1. */
 export function formatNumber(value: number): string {
-  const shortest = String(value);
-  if (shortest.length <= 12) return shortest;
-  const rounded = Number(value.toPrecision(6));
-  return String(rounded).length <= 14 ? String(rounded) : value.toExponential(4);
+  const size = Math.abs(value);
+  const rounded = String(value).length <= 12 ? value : Number(value.toPrecision(6));
+  return size !== 0 && (size >= 1e15 || size < 1e-6) ? rounded.toExponential() : String(rounded);
 }
 
 /** A sentence within the limit: names give way first, and only what is still too long is cut. */
