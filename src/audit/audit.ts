@@ -84,20 +84,30 @@ export function audit(cells: Cells, options: AuditOptions = {}): Finding[] {
 
 /** As `audit`, for a range that was read already. */
 export function auditReading(cells: Cells, reading: Reading, options: AuditOptions = {}): Finding[] {
-  const refusals = [...findingsFrom(reading.problems), ...startRefusal(options)].map((finding) => placed(finding, reading.layout));
+  const { facts } = options;
+  const refusals = findingsFrom(reading.problems).map((finding) => placed(finding, reading.layout));
   const inner = mayHoldMore(reading) ? recognise(cells) : null;
-  const found = inner && inner.asides.length > 0
-    ? insideOf(cells, inner, options, refusals)
-    : reading.layout
-      ? rulesOn(cells, reading, reading.layout, options)
-      : [];
-  if (options.facts) {
-    const facts = options.facts;
-    found.push(...SHEET_RULES.flatMap((rule) => rule({ cells, layout: reading.layout, facts })).map((finding) => placed(finding, null)));
-  }
-  if (!reading.layout && !(inner && inner.asides.length > 0) && !found.some((finding) => finding.code === "rangeShort")) found.push(...labelAlone(cells).map((finding) => placed(finding, null)));
+  const within = inner !== null && inner.asides.length > 0 ? insideOf(cells, inner, options, refusals[0]) : null;
+  const found = within ?? (reading.layout ? rulesOn(cells, reading, reading.layout, options) : []);
+  if (facts) found.push(...SHEET_RULES.flatMap((rule) => rule({ cells, layout: reading.layout, facts })).map((finding) => placed(finding, null)));
+  if (!reading.layout && !within && !found.some(({ code }) => code === "rangeShort")) found.push(...labelAlone(cells).map((finding) => placed(finding, null)));
   const order = (finding: Finding): number => RANK[finding.severity] + (finding.asks ? 0.5 : 0);
-  return [...refusals, ...found.sort((a, b) => order(a) - order(b))];
+  return [...explained(refusals, found, within !== null), ...startRefusal(options), ...found.sort((a, b) => order(a) - order(b))];
+}
+
+/** Stops that say why a diagonal cannot agree: clearing it would hide the mistake instead of mending it. */
+const DIAGONAL_CAUSES = new Set(["columnsSum", "probabilityTable", "percentTable", "competingExits", "linearSteps", "exponentialCells", "outsideUnit"]);
+const DIAGONAL = new Set(["rowSum", "rowSumRounded", "diagonalPositive", "diagonalWithoutExits"]);
+
+/**
+ * Of refusals with one cause that a rule knows, the first alone: it stays the first stop, word for word, and hands over to
+ * the cause. A table inside the range tells its own faults again.
+ */
+function explained(refusals: readonly Finding[], found: readonly Finding[], inside: boolean): Finding[] {
+  const [first, ...others] = refusals;
+  const cause = inside || (DIAGONAL.has(first?.code) && found.some(({ code }) => DIAGONAL_CAUSES.has(code)));
+  if (!first || !cause) return [...refusals];
+  return [{ ...first, also: [], remedy: undefined, details: { ...first.details, explained: true } }, ...(inside ? [] : others.filter(({ code }) => !DIAGONAL.has(code)))];
 }
 
 function rulesOn(cells: Cells, reading: Reading, layout: Layout, options: AuditOptions, aside: readonly string[] = []): Finding[] {
@@ -115,7 +125,7 @@ function mayHoldMore(reading: Reading): boolean {
 }
 
 /** The table inside a wider range: what to leave out, then its own findings, at their places in the given range. */
-function insideOf(cells: Cells, inner: Recognised, options: AuditOptions, refusals: readonly Finding[]): Finding[] {
+function insideOf(cells: Cells, inner: Recognised, options: AuditOptions, first: Finding | undefined): Finding[] {
   const width = Math.max(...cells.map((row) => row.length));
   const spanOf = (aside: Aside): Span =>
     aside.line === "row" ? { row: aside.index, column: 0, rows: 1, columns: width } : { row: 0, column: aside.index, rows: cells.length, columns: 1 };
@@ -123,17 +133,20 @@ function insideOf(cells: Cells, inner: Recognised, options: AuditOptions, refusa
   if (inner.amount === "counts" || !inner.reading.layout) return about;
   const facts = options.facts && innerFacts(options.facts, inner);
   const aside = inner.asides.flatMap(({ label, texts, role }) => (role === "total" ? [] : [label, ...texts]));
-  const own = [
-    ...findingsFrom(inner.reading.problems).map((finding) => placed(finding, inner.reading.layout)),
-    ...rulesOn(inner.cells, inner.reading, inner.reading.layout, { ...options, facts }, aside),
-  ].filter((finding) => !refusals.some((refusal) => refusal.code === finding.code));
-  return [...about, ...own.map((finding) => outward(finding, inner))];
+  const rules = rulesOn(inner.cells, inner.reading, inner.reading.layout, { ...options, facts }, aside);
+  const faults = findingsFrom(inner.reading.problems).map((finding) => placed(finding, inner.reading.layout));
+  const own = [...explained(faults, rules, false), ...rules].map((finding) => outward(finding, inner));
+  return [...about, ...own.filter((finding) => !(finding.code === first?.code && samePlace(finding.span, first.span)))];
 }
 
 /** Of the sheet's facts, those about single cells; the sheet rules judge the given range as a whole. */
 function innerFacts(facts: SheetFacts, { rows, columns }: Recognised): SheetFacts {
   const pick = (lines: SheetFacts["texts"]): SheetFacts["texts"] => lines && rows.map((row) => columns.map((column) => lines[row]?.[column] ?? ""));
   return { texts: pick(facts.texts), formulas: pick(facts.formulas), formats: pick(facts.formats), neighbours: facts.neighbours };
+}
+
+function samePlace(a: Span | null, b: Span | null): boolean {
+  return a !== null && b !== null && a.row === b.row && a.column === b.column;
 }
 
 function outward(finding: Finding, { rows, columns }: Recognised): Finding {

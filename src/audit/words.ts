@@ -21,10 +21,15 @@ export function meansTotal(text: string): boolean {
 
 /** Words of states that are meant to be final. */
 const FINAL =
-  /\b(dead|death|die[ds]?|deceased|fatal(ity)?|fail|fails|failed|failures?|defaults?|defaulted|scrap|scrapped|retired?|retirement|left|leaver|done|closed?|closure|lost|loss|end|ended|exit|exited|final|finished|complete[d]?|completion|gone|cancell?ed|withdrawn|withdrew|withdrawal|dropped|dropout|discharged?|disposed|disposal|decommissioned|written off|write off|destroyed|collapsed?|expired?|lapsed?|surrender(ed)?|matured?|maturity|repaid|prepaid|paid|settled|sold|churned?|quit|resigned|terminated|terminal|bankrupt|insolvent|absorbed|absorbing|removed|censored|resolved|rejected|cured|recovered|accident|hazard(ous)?|dangerous|unsafe|safe state|trip(ped)?|shutdown|shut down|ruin(ed)?|extinct|not rated|nr|wr|worn out|broken for good|replaced|renewed|end of life|eol)\b/u;
+  /\b(dead|death|die[ds]?|deceased|fatal(ity)?|fail|fails|failed|failures?|defaults?|defaulted|scrap|scrapped|retired?|retirement|left|leaver|done|closed?|closure|lost|loss|end|ended|exit|exited|final|finished|complete[d]?|completion|gone|cancell?ed|withdrawn|withdrew|withdrawal|dropped|dropout|discharged?|disposed|disposal|decommissioned|written off|write off|destroyed|collapsed?|expired?|lapsed?|surrender(ed)?|matured?|maturity|repaid|prepaid|paid|settled|sold|churned?|quit|resigned|terminated|terminal|bankrupt|insolvent|absorbed|absorbing|removed|censored|resolved|rejected|cured|recovered|accident|hazard(ous)?|dangerous|unsafe|safe (state|failure|shutdown)|fail(ed)? safe|trip(ped)?|shutdown|shut down|ruin(ed)?|extinct|not rated|nr|wr|worn out|broken for good|replaced|renewed|end of life|eol)\b/u;
 
 export function meansFinal(text: string): boolean {
   return FINAL.test(plainWords(text));
+}
+
+/** As `meansFinal`, with the other states' names at hand: "D" is default among the letters of a rating scale. */
+export function meansFinalAmong(text: string, names: readonly string[]): boolean {
+  return meansFinal(text) || (/^d$/iu.test(text.trim()) && names.filter((name) => /^(a{1,3}|b{1,3}|c{1,3})[+-]?\d?$/iu.test(name.trim())).length >= 2);
 }
 
 const PROBABILITY = /(\bprob(s|ability|abilities|\.)?\b|\brisks?\b|\bchances?\b|\blikelihood\b|\bper cycle\b|%|\bper ?cent\b|\bp\s*\(|\bmigration\b|\btransition matrix\b)/iu;

@@ -1,5 +1,5 @@
 import { rowSpan, stateName, type Rule } from "../context";
-import { meansFinal, unitsIn } from "../words";
+import { meansFinalAmong, unitsIn } from "../words";
 
 /**
  * A row without exits whose label does not sound final (mistake 16): a forgotten repair, or a final state under a name that the
@@ -18,7 +18,7 @@ export const noExit: Rule = (context) => {
   for (let i = 0; i < chain.size; i++)
     if (chain.rowStart[i] === chain.rowStart[i + 1] && !unreadableRow(context, i) && entered[i]) ends.push(i);
   const named = layout.names !== null;
-  const doubtful = named ? ends.filter((state) => !meansFinal(body.nameOf(state)) && !allDown(context, state)) : ends;
+  const doubtful = named ? ends.filter((state) => !meansFinalAmong(body.nameOf(state), layout.names ?? []) && !allDown(context, state)) : ends;
   if (doubtful.length === 0) return [];
   const [span, ...also] = doubtful.map((state) => rowSpan(context, state));
   return [

@@ -19,12 +19,8 @@ export function findingTexts(finding: Finding): FindingTexts {
   const refusal = finding.problem ? sentenceOf(finding.problem) : null;
   if (!words && refusal === null) throw new RangeError(`No sentence for finding code ${finding.code}.`);
   const also = finding.also && finding.also.length > 0 && refusal !== null ? ` The same at ${plural(finding.also.length, "more place")}.` : "";
-  return {
-    severity: finding.severity,
-    where: whereOf(finding),
-    finding: refusal ?? fitting(finding, words.finding),
-    remedy: (words ? fitting(finding, words.remedy) : "Correct it as the sentence says.") + also,
-  };
+  const remedy = finding.details.explained ? "The next finding says why; correct that." : words ? fitting(finding, words.remedy) : "Correct it as the sentence says.";
+  return { severity: finding.severity, where: whereOf(finding), finding: refusal ?? fitting(finding, words.finding), remedy: remedy + also };
 }
 
 const LONGEST = 120;
@@ -149,7 +145,7 @@ const WORDS: Readonly<Record<string, Words>> = {
   },
   percentTable: {
     finding: () => "Every row sums to 100: these are percentages typed as whole numbers.",
-    remedy: () => "Divide by 100, then convert: =CTMC.FROMPROBABILITY(table / 100, period).",
+    remedy: () => "Divide by 100, then convert: =CTMC.FROMPROBABILITY(table, period).",
   },
   percentMixed: {
     finding: (f) => `${plural(f.number("withSign"), "cell")} formatted as percent beside ${f.number("without")} that ${f.number("without") === 1 ? "is" : "are"} not.`,
@@ -171,8 +167,8 @@ const WORDS: Readonly<Record<string, Words>> = {
     finding: (f) => `${capital(f.lines())} ${f.list("lines").length === 1 ? "holds" : "hold"} ${rolesIn(f.list("lines"))}, no rates.`,
     remedy: (f) =>
       f.has("selection")
-        ? "Leave them out of the selection; the table beside them can be read."
-        : "Move them out of the table, or select the rates without headings.",
+        ? "Leave it out of the selection; the table itself can be read."
+        : "Move it out of the table, or select the rates without headings.",
   },
   listWithMore: {
     finding: (f) => `A list of arrows with more than from, to, rate: ${f.lines()}.`,
@@ -274,7 +270,7 @@ const WORDS: Readonly<Record<string, Words>> = {
     remedy: (f) => `Right if one unit runs at a time; with n running it is n times the rate${f.has("labelled") ? "" : ", if states count units down"}.`,
   },
   crewsUnlimited: {
-    finding: (f) => `Repairs run at ${f.figure("rate")} times the units down, up to ${f.number("most")}: as many crews as units down.`,
+    finding: (f) => `Repairs run at ${f.figure("rate")} for each unit down, up to ${f.number("most")}: as many crews as units down.`,
     remedy: () => "With fewer crews the rate stops growing: see CTMC.REPAIRGROUP.",
   },
   repairMendsSeveral: {

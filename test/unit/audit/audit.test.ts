@@ -72,6 +72,9 @@ describe("mistake 5: probabilities where rates are expected", () => {
     expect(findingOf(table, "probabilityTable")).toMatchObject({ severity: "stop", remedy: "convertProbability" });
     expect(complaints(table)).not.toContain("probabilitySums");
   });
+  it("does not offer to clear the diagonal: that would make rates of probabilities without a word", () => {
+    expect(audit(table)).toMatchObject([{ code: "diagonalPositive", remedy: undefined, also: [], details: { explained: true } }, { code: "probabilityTable" }]);
+  });
   it("warns of sums that miss 1 by rounding (mistake 14)", () => {
     const rounded = headed("", ["Well", "Ill", "Dead"], [[0.9, 0.08, 0.03], [0.2, 0.7, 0.1], [0, 0, 1]]);
     expect(findingOf(rounded, "probabilitySums")).toMatchObject({ severity: "warning", remedy: "rescaleRows", details: { rows: 1 } });
@@ -129,6 +132,11 @@ describe("mistake 16: absorbing by mistake", () => {
   });
   it.each(["Dead", "Failed", "In default", "Scrapped", "Retired", "Left", "Done", "Closed", "Lost"])("is silent for %s", (name) => {
     expect(complaints(headed("", ["A", "B", name], [[null, 1, 1], [1, null, 1], [null, null, null]]))).toEqual([]);
+  });
+  it("takes D for default on a rating scale only", () => {
+    const grades = [[null, 0.1, 0.01], [0.1, null, 0.02], [0, 0, null]];
+    expect(complaints(headed("", ["AAA", "BB+", "D"], grades))).toEqual([]);
+    expect(complaints(headed("", ["Dock", "Sea", "D"], grades))).toEqual(["noExit"]);
   });
   it("only notes it where the table has no names", () => {
     expect(audit([[0, 1, 1], [1, 0, 1], [0, 0, 0]]).find((finding) => finding.code === "noExit")?.severity).toBe("note");
