@@ -8,6 +8,7 @@ import { Commands } from "./commands";
 import { el, set, word } from "./dom";
 import { Drafts } from "./drafts";
 import { Editor } from "./editor";
+import { Files } from "./files";
 import { FootLine } from "./foot-line";
 import { FormulaLine } from "./formula-line";
 import { Grid } from "./grid";
@@ -81,7 +82,8 @@ export function buildPage({ book, host, storage, demo, unreadable }: PageParts):
   });
 
   const sheets = new SheetsLine(session, editor, commands, focusGrid);
-  const top = new TopLine(session, commands, sheets.element, [paneWord]);
+  const files = new Files(session, banner, focusGrid);
+  const top = new TopLine(session, commands, sheets.element, [...files.words, paneWord]);
   const line = new FormulaLine(session, editor, commands, focusGrid);
   const foot = new FootLine(session, announcer, startOver);
   const keysHint = el("p", { class: "unseen", id: "grid-keys" }, "Tab and arrows move between cells. F2 edits, Escape gives up. F6 leaves the sheet.");
