@@ -3,6 +3,7 @@ import * as formulajs from "@formulajs/formulajs";
 import type { Evaluation } from "../evaluate";
 import { power } from "../operators";
 import { Fault, type Value } from "../value";
+import { betaDistribution, betaPercentile, studentDistribution, studentPercentile, studentTwoSided } from "./beta";
 import { define, defineLifted, fromLibrary, numbersIn, numberFrom, type Definition } from "./define";
 
 type Call = (...values: unknown[]) => unknown;
@@ -112,15 +113,15 @@ const ofTheLibrary: readonly Definition[] = [
   ofLibrary("WEIBULL.DIST", "x, shape, scale, cumulative", "The Weibull distribution.", "nnnl"),
   ofLibrary("GAMMA.DIST", "x, shape, scale, cumulative", "The gamma distribution.", "nnnl"),
   ofLibrary("GAMMA.INV", "probability, shape, scale", "A percentile of the gamma distribution."),
-  ofLibrary("BETA.DIST", "x, alpha, beta, cumulative, [lowest], [highest]", "The beta distribution.", "nnnlnn"),
-  ofLibrary("BETA.INV", "probability, alpha, beta, [lowest], [highest]", "A percentile of the beta distribution."),
+  defineLifted("BETA.DIST", "x, alpha, beta, cumulative, [lowest], [highest]", "nnnlnn", "The beta distribution.", betaDistribution),
+  defineLifted("BETA.INV", "probability, alpha, beta, [lowest], [highest]", "n", "A percentile of the beta distribution.", betaPercentile),
   ofLibrary("CHISQ.DIST", "x, degrees, cumulative", "The chi-square distribution.", "nnl"),
   ofLibrary("CHISQ.DIST.RT", "x, degrees", "The upper tail of the chi-square distribution."),
   ofLibrary("CHISQ.INV", "probability, degrees", "A percentile of the chi-square distribution."),
   ofLibrary("CHISQ.INV.RT", "probability, degrees", "An upper percentile of the chi-square distribution."),
-  ofLibrary("T.DIST", "x, degrees, cumulative", "Student's distribution.", "nnl"),
-  ofLibrary("T.INV", "probability, degrees", "A percentile of Student's distribution."),
-  ofLibrary("T.INV.2T", "probability, degrees", "A two-sided percentile of Student's distribution."),
+  defineLifted("T.DIST", "x, degrees, cumulative", "nnl", "Student's distribution.", studentDistribution),
+  defineLifted("T.INV", "probability, degrees", "n", "A percentile of Student's distribution.", studentPercentile),
+  defineLifted("T.INV.2T", "probability, degrees", "n", "A two-sided percentile of Student's distribution.", studentTwoSided),
   ofLibrary("POISSON.DIST", "events, mean, cumulative", "The Poisson distribution.", "nnl"),
   ofLibrary("BINOM.DIST", "successes, trials, probability, cumulative", "The binomial distribution.", "nnnl"),
   ofLibrary("PMT", "rate, periods, present, [future], [at start]", "The payment of each period."),
@@ -133,7 +134,9 @@ const ofTheLibrary: readonly Definition[] = [
     const payments = numbersIn(values.slice(0, 1), evaluation);
     const guess = numberFrom(values[1], evaluation, 0.1);
     if (payments instanceof Fault) return payments;
-    return guess instanceof Fault ? guess : fromLibrary(fromFormulajs("IRR")(payments, guess));
+    if (guess instanceof Fault) return guess;
+    const found = fromFormulajs("IRR")(payments, guess);
+    return typeof found === "number" ? fromLibrary(balanced(payments, found)) : fromLibrary(found);
   }),
   define("GCD", "number, [more]...", "The greatest common divisor.", ofWhole("GCD")),
   define("LCM", "number, [more]...", "The least common multiple.", ofWhole("LCM")),
@@ -145,6 +148,19 @@ function ofWhole(name: string): (values: readonly Value[], evaluation: Evaluatio
     if (numbers instanceof Fault) return numbers;
     return numbers.some((entry) => entry < 0) ? refuse("A negative number has none.") : fromLibrary(fromFormulajs(name)(...numbers.map(Math.trunc)));
   };
+}
+
+/** The library's answer is good to ten digits; Newton's steps on the net present value give the others. */
+function balanced(payments: readonly number[], start: number): number {
+  let rate = start;
+  for (let step = 0; step < 5; step++) {
+    const value = payments.reduce((sum, payment, index) => sum + payment / (1 + rate) ** index, 0);
+    const slope = payments.reduce((sum, payment, index) => sum - (index * payment) / (1 + rate) ** (index + 1), 0);
+    const next = rate - value / slope;
+    if (!Number.isFinite(next)) return rate;
+    rate = next;
+  }
+  return rate;
 }
 
 function netPresent(values: readonly Value[], evaluation: Evaluation): Value {
