@@ -1,4 +1,5 @@
 import type { BookFinding, BookFormula, BookScan, BookTable } from "../../audit/book";
+import { shortText } from "../../cells/sentences/book";
 import { findingTexts } from "../../cells/sentences/findings";
 import { cellText, placeText } from "../address";
 import { h, type Child, type VElement } from "../dom";
@@ -132,10 +133,6 @@ function formulaLine(session: Session, scan: BookScan, formula: BookFormula): VE
     ),
     h("code", null, formula.formula),
     h("p", { class: "sr-soft" }, table ? ["reads ", table.sheet === address.sheet ? cellText(table) : placeText(table)] : readsText === "" ? "reads no table" : `reads ${readsText}, no table found there`),
-    short && h("p", null, severityMark("warning"), ` Its range leaves out ${shortWords(short)} of the table; ${cellText(short.range)} takes all in.`),
+    short && h("p", null, severityMark("warning"), ` ${shortText(formula)}`),
   );
-}
-
-function shortWords({ rows, columns }: NonNullable<BookFormula["short"]>): string {
-  return [rows > 0 && count(rows, "row"), columns > 0 && count(columns, "column")].filter(Boolean).join(" and ");
 }
