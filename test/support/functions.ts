@@ -2,6 +2,7 @@ import { readFileSync } from "node:fs";
 import path from "node:path";
 import { runInNewContext } from "node:vm";
 import { buildSync } from "esbuild";
+import { BOUND_AFTER, BOUND_BEFORE } from "../../scripts/bound-names.mjs";
 
 /** The host's error value, as the functions script sees it. */
 export class HostError extends Error {
@@ -48,6 +49,8 @@ export function bundled(): string {
     target: "es2022",
     write: false,
     minify: true,
+    banner: { js: BOUND_BEFORE },
+    footer: { js: BOUND_AFTER },
   }).outputFiles[0].text;
   return script;
 }
