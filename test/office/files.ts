@@ -27,6 +27,7 @@ export async function officeFiles(dist: string): Promise<OfficeFile[]> {
   const functions = new CustomFunctionHost();
   functions.load(readFileSync(`${dist}/functions.js`, "utf8"), JSON.parse(readFileSync(`${dist}/functions.json`, "utf8")) as FunctionsFile);
   const demo = Book.fromJSON(demoFile(), { functions });
+  demo.store.set("ctmc.audit", { version: 1, unit: "day" });
   const ordinary = Book.fromJSON(ordinaryFile());
   return [
     { name: "demo", bytes: await saveXlsx(demo), sheets: expected(demo) },

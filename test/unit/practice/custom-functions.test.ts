@@ -128,8 +128,20 @@ describe("what arrives in the sheet", () => {
     const book = new Book({ functions });
     book.apply([{ kind: "put", sheet: "s1", row: 0, column: 0, value: "=CTMC.ECHO(4)" }], "Write");
     expect(book.view("s1", 0, 0).value).toBe("#NAME?");
+    let recalculations = 0;
+    functions.onChange(() => recalculations++);
     functions.load(SCRIPT, METADATA);
     expect(book.view("s1", 0, 0).value).toBe(4);
+    expect(recalculations).toBe(1);
+  });
+  test("whether the script or its description comes first", async () => {
+    const functions = new CustomFunctionHost();
+    const book = new Book({ functions });
+    book.apply([{ kind: "put", sheet: "s1", row: 0, column: 0, value: "=CTMC.ONE()" }], "Write");
+    functions.useMetadata({ functions: [{ id: "ONE", name: "ONE", parameters: [] }] });
+    functions.standIn.associate("ONE", () => 1);
+    await Promise.resolve();
+    expect(book.view("s1", 0, 0).value).toBe(1);
   });
 });
 

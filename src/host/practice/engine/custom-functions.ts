@@ -68,6 +68,7 @@ export class CustomFunctionHost {
   private readonly byName = new Map<string, FunctionMetadata>();
   private metadata: FunctionsFile = { functions: [] };
   private readonly listeners = new Set<() => void>();
+  private announcing = false;
 
   constructor(
     conventions: Partial<Conventions> = {},
@@ -79,7 +80,7 @@ export class CustomFunctionHost {
         if (typeof id === "string") {
           if (call) this.calls.set(id.toUpperCase(), call);
         } else for (const [name, body] of Object.entries(id)) this.calls.set(name.toUpperCase(), body);
-        this.announce();
+        this.announceSoon();
       },
       Error: HostError,
       ErrorCode: ERROR_CODE,
@@ -116,7 +117,17 @@ export class CustomFunctionHost {
     return () => this.listeners.delete(listener);
   }
 
+  /** Once for the many registrations of one script. */
+  private announceSoon(): void {
+    if (this.announcing) return;
+    this.announcing = true;
+    queueMicrotask(() => {
+      if (this.announcing) this.announce();
+    });
+  }
+
   private announce(): void {
+    this.announcing = false;
     this.listeners.forEach((listener) => listener());
   }
 

@@ -4,8 +4,9 @@ import { areaText, columnOf, DEFAULT_WIDTH, Fault, keyOf, rowOf, type Book, type
 import { mayUseArrays } from "./array-use";
 import { ExchangeRefused } from "./refused";
 import { toFileSpelling } from "./spelling";
-import { BOLD_MARK, finishStyles } from "./styles-part";
 import { addStore } from "./store-part";
+import { finishStrings } from "./strings-part";
+import { BOLD_MARK, finishStyles } from "./styles-part";
 import { unzip, zip } from "./zip";
 
 /** Longest text of a cell in a file (common practice of all programs that read them). */
@@ -28,6 +29,7 @@ export async function saveXlsx(book: Book): Promise<Uint8Array> {
   };
   const written = new Uint8Array(library.write(workbook, { type: "array", bookType: "xlsx", bookSST: true, compression: false }) as ArrayBuffer);
   const parts = await unzip(written, { fileBytes: Infinity, entries: Infinity, unpackedBytes: Infinity, ratio: Infinity });
+  finishStrings(parts);
   finishStyles(parts);
   addStore(parts, file.store);
   return zip(parts, true);

@@ -82,6 +82,8 @@ test("the file spells formulas as files do, with their values beside them", asyn
   expect(xml("xl/worksheets/sheet1.xml")).toContain('<c r="B5"><v>0.5</v></c>');
   expect(xml("xl/worksheets/sheet2.xml")).toContain("SUM(_xlfn.ANCHORARRAY(A5))");
   expect(xml("xl/worksheets/sheet2.xml")).toContain("_xlfn.LET(_xlpm.x,1,_xlpm.y,_xlpm.x+1,_xlpm.x*_xlpm.y)");
+  expect(xml("xl/worksheets/sheet2.xml")).toMatch(/<c r="D1" t="str" cm="1"><f[^>]*>[^<]*<\/f><v>2x<\/v><\/c>/);
+  expect(xml("xl/worksheets/sheet2.xml")).toMatch(/<c r="D3" t="str"><f>IF\(A1&gt;0,&quot;a,b&quot;,2\)<\/f><v>a,b<\/v><\/c>/);
   expect(xml("xl/workbook.xml")).toContain('state="hidden"');
   expect(xml("xl/styles.xml")).not.toContain("stayrate-bold");
   expect([...parts.keys()]).toContain("customXml/item1.xml");
