@@ -1,12 +1,13 @@
 import type { Pausable } from "./leak-system";
 
-/** States taken between two pauses, some 5 ms. */
-const PIVOTS_A_SLICE = 1000;
+/** List entries visited between two pauses, some 10 ms. */
+const SLICE = 3e5;
 
 /**
  * An order of elimination that creates few new arrows: the state with the fewest neighbours goes first.
  *
- * Input: the arrows in compressed rows; their directions are forgotten. Result: the states in the order in which they go.
+ * Input: the arrows in compressed rows; their directions are forgotten. Result: the states in the order in which they go, or
+ * null as soon as the multiply-adds of the elimination pass `limit`.
  *
  * *Method*: approximate minimum degree on the quotient graph, Amestoy, Davis & Duff, SIAM J. Matrix Anal. Appl. 17 (1996)
  * 886–905, algorithm 2: eliminated states become elements, elements swallow those they contain, states with the same
@@ -14,7 +15,9 @@ const PIVOTS_A_SLICE = 1000;
  * storage: lists are ordinary arrays that shrink. Ties go to the state that entered its bucket last.
  * *Cost*: nearly linear in the arrows for local structure; 20,000 states of a grid in some 0.1 s.
  */
-export function* eliminationOrder(size: number, rowStart: Int32Array, toState: Int32Array): Pausable<Int32Array> {
+export function* eliminationOrder(
+  size: number, rowStart: Int32Array, toState: Int32Array, limit = Infinity,
+): Pausable<Int32Array | null> {
   const neighbours = symmetricNeighbours(size, rowStart, toState);
   const elementsOf: number[][] = Array.from({ length: size }, () => []);
   const members: (number[] | null)[] = new Array<number[] | null>(size).fill(null);
@@ -33,9 +36,12 @@ export function* eliminationOrder(size: number, rowStart: Int32Array, toState: I
   const order = new Int32Array(size);
   let placed = 0;
   let round = 0;
+  let work = 0;
+  let visits = 0;
 
   while (placed < size) {
     const pivot = buckets.takeLowest();
+    const together = weight[pivot];
     placed = place(pivot, order, placed, followers);
     weight[pivot] = 0;
 
@@ -58,9 +64,12 @@ export function* eliminationOrder(size: number, rowStart: Int32Array, toState: I
     members[pivot] = front;
     let frontWeight = 0;
     for (const i of front) frontWeight += weight[i];
+    work += together * frontWeight * frontWeight;
+    if (work > limit) return null;
 
     // outside[e]: weight of the members of e that are not in the front
-    for (const i of front)
+    for (const i of front) {
+      visits += 8 + elementsOf[i].length + neighbours[i].length;
       for (const e of elementsOf[i]) {
         const inside = members[e];
         if (inside === null) continue;
@@ -68,6 +77,7 @@ export function* eliminationOrder(size: number, rowStart: Int32Array, toState: I
           outsideMark[e] = round;
           let sum = 0;
           let kept = 0;
+          visits += inside.length;
           for (const j of inside)
             if (weight[j] > 0) {
               sum += weight[j];
@@ -78,6 +88,7 @@ export function* eliminationOrder(size: number, rowStart: Int32Array, toState: I
         }
         outside[e] -= weight[i];
       }
+    }
 
     const remaining = size - placed;
     const alike = new Map<number, number[]>();
@@ -115,7 +126,11 @@ export function* eliminationOrder(size: number, rowStart: Int32Array, toState: I
     for (const group of alike.values()) if (group.length > 1) mergeAlike(group);
     for (const i of front) if (weight[i] > 0) buckets.put(i, degree[i]);
     members[pivot] = front.filter((i) => weight[i] > 0);
-    if (++round % PIVOTS_A_SLICE === 0) yield placed / size;
+    round++;
+    if (visits > SLICE) {
+      visits = 0;
+      yield placed / size;
+    }
   }
   return order;
 

@@ -7,7 +7,9 @@ import { fromCounts } from "../../src/chain/counts";
 import { distributions } from "../../src/chain/distribution";
 import { meanTimeElasticity, shareElasticity } from "../../src/chain/elasticity";
 import { reached } from "../../src/chain/first-passage";
+import { embeddingGap, generatorFromProbability } from "../../src/chain/from-probability";
 import { Generator } from "../../src/chain/generator";
+import { inspectionShares } from "../../src/chain/inspection";
 import { failureCount, flows, jumpCounts } from "../../src/chain/jumps";
 import { fromLog } from "../../src/chain/log";
 import { quasiStationary } from "../../src/chain/quasi-stationary";
@@ -25,8 +27,6 @@ export const askChain: Ask = (formula, ...args) => {
   if (!answer) throw new Error(`no answer for ${formula}`);
   return answer(...args);
 };
-
-export const answeredFormulas = (): string[] => Object.keys(answers);
 
 const answers: Record<string, ((...args: Argument[]) => number[][]) | undefined> = {
   TRANSITION: (rates, time) => square(transitionMatrix(generator(rates), time as number)),
@@ -73,6 +73,10 @@ const answers: Record<string, ((...args: Argument[]) => number[][]) | undefined>
   FROMCOUNTS: (counts, time) => table(fromCounts({ generator: generator(counts), names: null }, numbers(time)).generator),
   FROMLOG: (log, end) => table(fromLog((log as Cell[][]).slice(1).map(([unit, time, state], row) =>
     ({ unit: unit as string, time: time as number, state: state as string, row })), end as number).generator),
+  FROMPROBABILITY: (p, period) =>
+    table(generatorFromProbability((p as Cell[][]).length, numbers(p), period as number).generator),
+  EMBEDDINGGAP: (p, period) => [[embeddingGap((p as Cell[][]).length, numbers(p), period as number)]],
+  INSPECTION: (rates, resets, interval) => [[...inspectionShares(generator(rates), numbers(resets), interval as number)]],
   RATEINTERVAL: (count, exposure, confidence) => {
     const { lower, estimate, upper } = rateInterval(count as number, exposure as number, (confidence as number) ?? 0.9);
     return [[lower, estimate, upper]];
