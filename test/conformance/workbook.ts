@@ -99,8 +99,7 @@ export function describeWorkbook(name: string, makeHost: (sheets: readonly TestS
       it("scans values and contents alike", async () => {
         const { workbook } = plan();
         const { address, values, formulas } = await workbook.read(at("Plan", 0, 0, 4, 3));
-        const scanning = workbook as Workbook & { scan?: (range: RangeAddress) => Promise<unknown> };
-        if (scanning.scan) expect(await scanning.scan(at("Plan", 0, 0, 4, 3))).toEqual({ address, values, formulas });
+        if (workbook.scan) expect(await workbook.scan(at("Plan", 0, 0, 4, 3))).toEqual({ address, values, formulas });
       });
 
       it("refuses a sheet or cells that are not there, in words", async () => {
@@ -272,6 +271,16 @@ export function describeWorkbook(name: string, makeHost: (sheets: readonly TestS
         expect(await store.get("ctmc.audit")).toEqual(value);
         await store.set("ctmc.audit", { version: 1 });
         expect(await store.get("ctmc.audit")).toEqual({ version: 1 });
+      });
+    });
+
+    describe("the look of a sheet", () => {
+      it("changes nothing that it holds", async () => {
+        const { workbook } = plan();
+        const before = (await workbook.read(at("Plan", 0, 0, 4, 3))).values;
+        await workbook.presentSheet?.("Plan", { columnWidths: [20, 8], boldRows: [0], footer: "Plan, page 1" });
+        expect((await workbook.read(at("Plan", 0, 0, 4, 3))).values).toEqual(before);
+        await expect(workbook.presentSheet?.("Nowhere", { columnWidths: [], boldRows: [0], footer: "" }) ?? Promise.reject(new Error("Not offered."))).rejects.toThrow(SENTENCE);
       });
     });
 

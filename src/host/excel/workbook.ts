@@ -1,10 +1,11 @@
 /** The pane's view of an Excel workbook. */
-import { type Place, type RangeAddress, type Workbook, type WorkbookEvent, type Write } from "../../pane/workbook";
+import { type RangeAddress, type Workbook } from "../../pane/workbook";
 import { calculation, recalculate } from "./calculation";
 import { Events } from "./events";
 import { freeze, frozen, thaw } from "./freeze";
 import { addChart, addPicture, placeFormula } from "./objects";
 import { placeText, rangeAt } from "./place";
+import { presentSheet, workbookName } from "./presenting";
 import { readRange, readSelection, readSheets, scanRange } from "./reading";
 import { relink, unlinked } from "./relink";
 import { HostRefusal, run } from "./run";
@@ -14,25 +15,26 @@ import { Writing } from "./writing";
 export function excelWorkbook(): Workbook {
   const writing = new Writing();
   const events = new Events();
-  const workbook = {
-    host: "excel" as const,
+  return {
+    host: "excel",
     sheets: readSheets,
     selection: readSelection,
     // Async, so that a refusal is always a rejection.
-    read: async (range: RangeAddress) => readRange(range),
-    scan: async (range: RangeAddress) => scanRange(range),
-    write: (batch: readonly Write[]) => writing.write(batch),
-    addSheet: (name: string, cells: Write["cells"], formats?: Write["formats"]) => writing.addSheet(name, cells, formats),
+    read: async (range) => readRange(range),
+    scan: async (range) => scanRange(range),
+    write: (batch) => writing.write(batch),
+    addSheet: (name, cells, formats) => writing.addSheet(name, cells, formats),
     select,
     undo: () => writing.undo(),
-    on: (event: WorkbookEvent, listener: () => void) => events.on(event, listener),
+    on: (event, listener) => events.on(event, listener),
     store,
-    placeFormula: (place: Place, formula: string, size: { readonly rows: number; readonly columns: number }) => placeFormula(writing, place, formula, size),
+    name: workbookName,
+    presentSheet,
+    placeFormula: (place, formula, size) => placeFormula(writing, place, formula, size),
     addPicture,
     addChart,
     shared: { unlinked, relink, frozen, freeze, thaw, calculation, recalculate },
   };
-  return workbook;
 }
 
 const select = (at: RangeAddress): Promise<void> =>

@@ -15,6 +15,8 @@ export interface FakeState {
   readonly settings: Map<string, unknown>;
   /** "sheet id row column" of formulas whose functions are not registered, as the host holds them; gone when rewritten. */
   readonly lost: Map<string, string>;
+  /** Column widths, bold rows, page layout: what was set, by "sheet what". */
+  readonly looks: Map<string, unknown>;
   readonly shapes: Record<string, unknown>[];
   readonly charts: Record<string, unknown>[];
   /** Requirement set of the object model that the host claims. */
@@ -52,6 +54,7 @@ export function fakeExcel(book: Book): { Excel: unknown; Office: unknown; state:
     activeSheet: book.sheets()[0].id,
     settings: new Map(),
     lost: new Map(),
+    looks: new Map(),
     shapes: [],
     charts: [],
     version: 1.17,
@@ -140,6 +143,14 @@ function workbookObject(queue: RequestQueue, book: Book, state: FakeState, sourc
         shapes: {
           addImage: (png: string) => drawing(queue, state.shapes, { png, sheet: find() }, ["name", "altTextDescription", "lockAspectRatio", "left", "top", "width", "height"]),
         },
+        pageLayout: hostObject(queue, {
+          write: { zoom: (zoom: unknown) => state.looks.set(`${sheetOf(id())!.name} zoom`, zoom) },
+          methods: {
+            headersFooters: {
+              defaultForAllPages: hostObject(queue, { write: { centerFooter: (text: unknown) => state.looks.set(`${sheetOf(id())!.name} footer`, text) } }),
+            },
+          },
+        }),
         charts: {
           add: (type: string, range: unknown, seriesBy: string) => drawing(queue, state.charts, { type, range, seriesBy }, ["left", "top", "width", "height"], ["title"]),
         },
@@ -169,6 +180,7 @@ function workbookObject(queue: RequestQueue, book: Book, state: FakeState, sourc
   };
   const sheetAt = (find: () => string) => sheetObject(find, false);
   return hostObject(queue, {
+    read: { name: () => "Plans.xlsx" },
     methods: {
       worksheets,
       onSelectionChanged: source("workbook.onSelectionChanged"),
@@ -231,6 +243,7 @@ function rangeMaker(queue: RequestQueue, book: Book, state: FakeState): { make(f
   const key = (at: Bounds, i: number, j: number): string => `${at.sheet} ${at.row + i} ${at.column + j}`;
   const grid = <T>(at: Bounds, cell: (view: CellView, i: number, j: number) => T): T[][] =>
     Array.from({ length: at.rows }, (_, i) => Array.from({ length: at.columns }, (_, j) => cell(book.view(at.sheet, at.row + i, at.column + j), i, j)));
+  const nameOf = (at: Bounds): string => book.sheets().find((one) => one.id === at.sheet)!.name;
   const isSpilled = (view: CellView): boolean => view.anchor !== null || view.extent !== null;
 
   const make = (find: FindBounds, sheet: never, isNull?: () => boolean): never => {
@@ -278,7 +291,10 @@ function rangeMaker(queue: RequestQueue, book: Book, state: FakeState): { make(f
       },
       methods: {
         worksheet: sheet,
-        format: {
+        format: hostObject(queue, {
+          write: { columnWidth: (width: unknown) => state.looks.set(`${nameOf(find())} column ${find().column}`, width) },
+          methods: {
+          font: hostObject(queue, { write: { bold: (bold: unknown) => state.looks.set(`${nameOf(find())} row ${find().row}, ${find().columns} columns`, bold) } }),
           protection: hostObject(queue, {
             read: {
               locked: () => {
@@ -287,7 +303,8 @@ function rangeMaker(queue: RequestQueue, book: Book, state: FakeState): { make(f
               },
             },
           }),
-        },
+          },
+        }),
         getCell: (i: number, j: number) => make(() => ({ ...find(), row: find().row + i, column: find().column + j, rows: 1, columns: 1 }), sheet),
         getSpillParentOrNullObject: () => make(() => parentOf()!, sheet, () => parentOf() === null),
         getSpillingToRangeOrNullObject: () => make(() => extentOf()!, sheet, () => isNull?.() === true || extentOf() === null),

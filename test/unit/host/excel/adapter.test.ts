@@ -149,6 +149,27 @@ describe("pictures and charts", () => {
   });
 });
 
+describe("the look of a sheet", () => {
+  it("has widths in points, bold rows, one page in width and a footer whose ampersands are words", async () => {
+    const { workbook, state } = excelHost(PLAN);
+    await workbook.presentSheet!("Plan", { columnWidths: [8.43, 20], boldRows: [0, 3], footer: "Rates & costs" });
+    expect(Object.fromEntries(state.looks)).toEqual({
+      // 48 points is the host's own standard width of 8.43 characters.
+      "Plan column 0": expect.closeTo(48, 1),
+      "Plan column 1": 108.75,
+      "Plan row 0, 2 columns": true,
+      "Plan row 3, 2 columns": true,
+      "Plan zoom": { horizontalFitToPages: 1 },
+      "Plan footer": "Rates && costs",
+    });
+    await expect(workbook.presentSheet!("Nowhere", { columnWidths: [], boldRows: [], footer: "" })).rejects.toThrow('There is no sheet "Nowhere" any more.');
+  });
+
+  it("comes with the name of the workbook", async () => {
+    expect(await excelHost(PLAN).workbook.name!()).toBe("Plans.xlsx");
+  });
+});
+
 describe("the store", () => {
   it("leaves what is damaged as it is, and says so", async () => {
     const { workbook, state } = excelHost(PLAN);
