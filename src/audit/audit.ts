@@ -132,7 +132,7 @@ function insideOf(cells: Cells, inner: Recognised, options: AuditOptions, first:
   const about = [...totalsSelected(inner, spanOf), ...layoutAsides(inner, spanOf)].map((finding) => placed(finding, null));
   if (inner.amount === "counts" || !inner.reading.layout) return about;
   const facts = options.facts && innerFacts(options.facts, inner);
-  const aside = inner.asides.flatMap(({ label, texts, role }) => (role === "total" ? [] : [label, ...texts]));
+  const aside = inner.asides.flatMap(({ label, texts, role }) => (role === "total" ? [] : role === "units" ? [label, ...texts] : [label])); // a note may speak of anything
   const rules = rulesOn(inner.cells, inner.reading, inner.reading.layout, { ...options, facts }, aside);
   const faults = findingsFrom(inner.reading.problems).map((finding) => placed(finding, inner.reading.layout));
   const own = [...explained(faults, rules, false), ...rules].map((finding) => outward(finding, inner));

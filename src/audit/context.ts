@@ -77,7 +77,8 @@ export function contextOf(cells: Cells, reading: Reading, layout: Layout, option
 }
 
 function captionsOf(cells: Cells, layout: Layout, facts: SheetFacts | undefined): string[] {
-  const above = (facts?.neighbours?.above ?? []).map(textOf);
+  const filled = (facts?.neighbours?.above ?? []).map(textOf).filter((text) => text !== "");
+  const above = filled.length === 1 ? filled : []; // a title; several cells belong to something else
   if (layout.form === "list") return [...above, ...(layout.headings === "top" ? (cells[0] ?? []).map(textOf) : [])];
   return layout.headings === "both" ? [...above, textOf(cells[0]?.[0])] : above;
 }

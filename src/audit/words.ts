@@ -32,7 +32,7 @@ export function meansFinalAmong(text: string, names: readonly string[]): boolean
   return meansFinal(text) || (/^d$/iu.test(text.trim()) && names.filter((name) => /^(a{1,3}|b{1,3}|c{1,3})[+-]?\d?$/iu.test(name.trim())).length >= 2);
 }
 
-const PROBABILITY = /(\bprob(s|ability|abilities|\.)?\b|\brisks?\b|\bchances?\b|\blikelihood\b|\bper cycle\b|%|\bper ?cent\b|\bp\s*\(|\bmigration\b|\btransition matrix\b)/iu;
+const PROBABILITY = /(\bprob(s|ability|abilities|\.)?\b|\brisks?\b|\bchances?\b|\blikelihood\b|%|\bper ?cent\b|\bp\s*\()/iu;
 
 export function meansProbability(text: string): boolean {
   return PROBABILITY.test(text);

@@ -50,7 +50,7 @@ export function* cleanTables(count: number, seed: number): Generator<CleanTable>
       const [arrival, service] = [figure(0.5, 60), figure(0.5, 40)];
       return {
         kind: "queue",
-        names: Array.from({ length: places + 1 }, (_, k) => pick(["", ""]) + `${k} ${pick(["present"])}`),
+        names: Array.from({ length: places + 1 }, (_, k) => `${k} present`),
         rates: table(places + 1, (i, j) => (j === i + 1 ? arrival : j === i - 1 ? Math.min(i, servers) * service : 0)),
         unit: "per half hour",
       };
@@ -97,7 +97,7 @@ export function* cleanTables(count: number, seed: number): Generator<CleanTable>
         kind: "cohort",
         names: ["Well", "Mild", "Moderate", "Severe", "Critical", "Bedridden"].slice(0, grades).concat(["Dead"]),
         rates: table(grades + 1, (i, j) => (i === grades ? 0 : j === grades ? die[i] : j === i + 1 ? figure(0.02, 0.9) : back && j === i - 1 ? figure(0.02, 0.6) : 0)),
-        unit: "per cycle rate",
+        unit: "per cycle",
       };
     },
     () => {
@@ -106,7 +106,7 @@ export function* cleanTables(count: number, seed: number): Generator<CleanTable>
         kind: "grades",
         names: ["Grade A", "Grade B", "Grade C", "Grade D", "Grade E", "Grade F", "Grade G", "Grade H"].slice(0, grades).concat(["Default"]),
         rates: table(grades + 1, (i, j) => (i === grades ? 0 : figure(0.0005, 0.4) * 3 ** -Math.abs(i - j))),
-        unit: "rate per year",
+        unit: "per year",
       };
     },
     () => {

@@ -1,10 +1,10 @@
 import { expect, it } from "vitest";
 import { audit } from "../../src/audit/audit";
 import { findTables } from "../../src/audit/tables-in-sheet";
-import type { CellValue } from "../../src/table/rate-table";
+import type { Cells, CellValue } from "../../src/table/rate-table";
 import { read } from "../../src/table/read";
 import { battery } from "../reference/battery";
-import { cleanTables } from "./clean-tables";
+import { cleanTables, seeded } from "./clean-tables";
 
 const TABLES = 1000;
 
@@ -68,3 +68,44 @@ it("chains made by others raise no stop and no warning but for several closed gr
   console.log(`${battery.length} chains of the reference battery: ${alarms.length} alarms without cause.`);
   expect(alarms).toEqual([]);
 });
+
+it("tables with totals, notes, units or titles around them raise nothing but the layout's own stop", () => {
+  const random = seeded(9);
+  const own = new Set(["totalsSelected", "linesAside", "listWithMore"]);
+  const alarms: string[] = [];
+  const missed: string[] = [];
+  let tables = 0;
+  const noted = (rows: Cells): Cells => rows.map((row, i) => [...row, i === 0 ? "Source" : `log ${2030 + i}`]);
+  const dressings: Readonly<Record<string, (rows: Cells, size: number) => Cells>> = {
+    "total column": (rows, size) => rows.map((row, i) => [...row, i === 0 ? "Total" : i <= size ? sum(row.slice(1)) : null]),
+    "total row and column": (rows, size) => {
+      const wide = dressings["total column"](rows, size);
+      const body = wide.slice(1, size + 1);
+      return [...wide.slice(0, size + 1), ["Total", ...wide[0].slice(1).map((_, j) => sum(body.map((row) => row[j + 1])))]];
+    },
+    "note column": (rows) => noted(rows),
+    "title": (rows) => [["Rates of the year, as agreed", ...rows[0].slice(1).map(() => null)], ...rows],
+    "heading over the headings": (rows) => [[null, "to state", ...rows[0].slice(2).map(() => null)], ...rows],
+    "unit row": (rows) => [["", ...rows[0].slice(1)], [null, ...rows[0].slice(1).map(() => "1/h")], ...rows.slice(1)],
+  };
+  for (const { kind, layout, cells } of cleanTables(1000, 4711)) {
+    if (layout !== "both" && layout !== "list with headings") continue;
+    tables++;
+    const names = Object.keys(dressings);
+    const name = layout === "both" ? names[Math.floor(random() * names.length)] : "note column";
+    const filled = cells.filter((row) => row.some((value) => value !== null));
+    const dressed = (dressings[name] ?? noted)(filled, filled.length - 1);
+    const refused = read(dressed).problems.map(({ code }) => code);
+    const found = audit(dressed).filter(({ severity }) => severity !== "note").map(({ code }) => code);
+    if (!found.some((code) => own.has(code))) missed.push(`${kind}, ${name}: ${found.join()} ${JSON.stringify(dressed)}`);
+    const other = found.filter((code, k) => !own.has(code) && !(k === 0 && code === refused[0]));
+    if (other.length > 0) alarms.push(`${kind}, ${name}: ${found.join()} ${JSON.stringify(dressed)}`);
+  }
+  console.log(`${tables} dressed tables: layout recognised in ${tables - missed.length}, ${alarms.length} false alarms.${[...missed, ...alarms].slice(0, 5).map((text) => `\n${text.slice(0, 400)}`).join("")}`);
+  expect(missed).toEqual([]);
+  expect(alarms).toEqual([]);
+});
+
+function sum(row: readonly CellValue[]): number {
+  return row.reduce<number>((total, value) => (typeof value === "number" ? total + value : total), 0);
+}

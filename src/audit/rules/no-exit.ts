@@ -1,9 +1,11 @@
-import { rowSpan, stateName, type Rule } from "../context";
+import { communicatingClasses } from "../../chain/classes";
+import { rowSpan, stateName, type Context, type Rule } from "../context";
 import { meansFinalAmong, unitsIn } from "../words";
 
 /**
  * A row without exits whose label does not sound final (mistake 16): a forgotten repair, or a final state under a name that the
- * audit does not know. Without names nothing can be told from a single such row: a note. A table without any arrow is one finding.
+ * audit does not know. Without names nothing can be told from such a row: a note, and so it is for a mere code ("S4") at the end of a
+ * chain that never returns to any state, such as wear without repair. A table without any arrow is one finding.
  */
 export const noExit: Rule = (context) => {
   const { chain, body, kind, layout } = context;
@@ -17,8 +19,8 @@ export const noExit: Rule = (context) => {
   const ends: number[] = [];
   for (let i = 0; i < chain.size; i++)
     if (chain.rowStart[i] === chain.rowStart[i + 1] && !unreadableRow(context, i) && entered[i]) ends.push(i);
-  const named = layout.names !== null;
-  const doubtful = named ? ends.filter((state) => !meansFinalAmong(body.nameOf(state), layout.names ?? []) && !allDown(context, state)) : ends;
+  const named = layout.names !== null && !(ends.every((state) => saysNothing(body.nameOf(state))) && neverReturns(chain));
+  const doubtful = layout.names !== null ? ends.filter((state) => !meansFinalAmong(body.nameOf(state), layout.names ?? []) && !allDown(context, state)) : ends;
   if (doubtful.length === 0) return [];
   const [span, ...also] = doubtful.map((state) => rowSpan(context, state));
   return [
@@ -33,7 +35,7 @@ export const noExit: Rule = (context) => {
 };
 
 /** "3 down" of three units in a group without any repair is final by design, such as a group with no crew. */
-function allDown(context: Parameters<Rule>[0], state: number): boolean {
+function allDown(context: Context, state: number): boolean {
   const counts = Array.from({ length: context.body.size }, (_, i) => unitsIn(context.body.nameOf(i)));
   if (counts.some((count) => count === null)) return false;
   const down = counts.map((count) => (count!.down ? count!.count : -count!.count));
@@ -42,7 +44,15 @@ function allDown(context: Parameters<Rule>[0], state: number): boolean {
   return true;
 }
 
-function unreadableRow({ body }: Parameters<Rule>[0], state: number): boolean {
+function saysNothing(name: string): boolean {
+  return !/\p{L}{3,}/u.test(name.replace(/\b(state|stage|level|step|class|grade|node)\b/giu, ""));
+}
+
+function neverReturns(chain: Context["chain"]): boolean {
+  return communicatingClasses(chain).classes.length === chain.size;
+}
+
+function unreadableRow({ body }: Context, state: number): boolean {
   for (let j = 0; j < body.size; j++) if (Number.isNaN(body.values[state * body.size + j]) || body.values[state * body.size + j] < 0) return true;
   return false;
 }

@@ -138,6 +138,11 @@ describe("mistake 16: absorbing by mistake", () => {
     expect(complaints(headed("", ["AAA", "BB+", "D"], grades))).toEqual([]);
     expect(complaints(headed("", ["Dock", "Sea", "D"], grades))).toEqual(["noExit"]);
   });
+  it("warns of the repair forgotten in the smallest table, and only notes a code at the end of wear without repair", () => {
+    expect(complaints(headed("", ["Up", "Down"], [[null, 0.1], [null, null]]))).toEqual(["noExit"]);
+    expect(complaints(headed("", ["S0", "S1", "S2"], [[null, 0.1, 0], [0, null, 0.2], [0, 0, null]]))).toEqual([]);
+    expect(complaints(headed("", ["S0", "S1", "S2"], [[null, 0.1, 0], [1, null, 0.2], [0, 0, null]]))).toEqual(["noExit"]);
+  });
   it("only notes it where the table has no names", () => {
     expect(audit([[0, 1, 1], [1, 0, 1], [0, 0, 0]]).find((finding) => finding.code === "noExit")?.severity).toBe("note");
   });

@@ -246,6 +246,11 @@ describe("tables as people keep them", () => {
     only([["", "To", "", ""], ["From", ...three], ...rows], "linesAside");
     only([["Line 3, rates per h", "", "", ""], ["", ...three], ...rows], "linesAside");
   });
+  it("does not take what notes speak of for what the table holds", () => {
+    only([["", ...three, "Source"], ...rows.map((row, i) => [...row, ["MTBF 50 h, plate", "10 % above last year", "MTTR (days) by crew"][i]])], "linesAside");
+    expect(complaints(headed("", three, rates), { facts: { neighbours: { above: ["Target", null, "95 %", null], below: [], left: [], right: [] } } })).toEqual([]);
+    expect(complaints(headed("", three, rates), { facts: { neighbours: { above: ["Mean times of line 3 (h)", null, null, null], below: [], left: [], right: [] } } })).toEqual(["meanTimes"]);
+  });
   it("audits the table inside", () => {
     const faulty: Cells = [["", ...three, "Source"], ...rows.map((row, i) => [...row.map((value) => (value === 0.02 ? -0.02 : value)), `log ${i}`])];
     expect(findingOf(faulty, "rateNegative")).toMatchObject({ span: { row: 1, column: 2 } });
