@@ -50,7 +50,7 @@ export function* passageQuantiles(
     if (walked || n > LARGEST_STORED) return walked;
   }
   const dense = denseOf(chain);
-  const squarings = yield* Squarings.open(dense, options.kernel ?? kernelFor(n), 1 / dense.largestExit);
+  const squarings = yield* Squarings.open(dense, options.kernel ?? kernelFor(n), (4 * n) / dense.largestExit);
   const times: number[] = [];
   for (const goal of goals) {
     times.push(yield* quantileBySquarings(chain, squarings, start, values, goal));

@@ -1,6 +1,6 @@
 import type { DenseRates } from "./dense-transition";
 import type { MatrixKernel } from "./matrix-kernel";
-import { cheaperMethod, kernelFor, type Method } from "./method-choice";
+import { chooseMethod, kernelFor, type Method } from "./method-choice";
 import { occupancyWeights, poissonWeights } from "./poisson";
 import { binaryDigits, rowTimesMatrix, Squarings } from "./squarings";
 import { JumpWalk, uniformizedSums, uniformizedValues, type SparseRates } from "./uniformization";
@@ -158,7 +158,7 @@ function* openSquarings(chain: ChainRates, times: ArrayLike<number>, options: Ro
 function methodFor(walk: JumpWalk, chain: ChainRates, times: ArrayLike<number>, options: RowOptions, values?: number): Method {
   const jumps = walk.largestExit * longest(times);
   if (jumps === 0) return "row";
-  return options.method ?? cheaperMethod(walk.order.length, chain.rate.length, jumps, values ? values / chain.size : times.length);
+  return options.method ?? chooseMethod(walk.order.length, chain.rate.length, jumps, values ? values / chain.size : times.length);
 }
 
 function longest(times: ArrayLike<number>): number {

@@ -1,5 +1,6 @@
-import { denseTransition, unchangedTolerance, type DenseRates } from "./dense-transition";
+import { denseTransition, rateSpread, unchangedTolerance, type DenseRates } from "./dense-transition";
 import { agree, load, multiplySteps, repairRow, unpadded, type MatrixKernel } from "./matrix-kernel";
+import { planTaylor } from "./taylor-plan";
 
 /**
  * P(h), P(2h), P(4h), …, kept, so that a row can be taken to any time by its binary digits. Grows on demand; once a
@@ -24,9 +25,16 @@ export class Squarings {
     this.scratch = new Float64Array(size);
   }
 
-  /** Starts the list with h = horizon/2^k, Λh ≤ 1: below one step a row is moved jump by jump. */
+  /**
+   * Starts the list for times up to `horizon`, with h = horizon/2^k for the largest k that costs no squaring more than going
+   * there at once: each further one would add its rounding error. Below one step a row is moved jump by jump.
+   */
   static *open(chain: DenseRates, kernel: MatrixKernel, horizon: number): globalThis.Generator<number, Squarings, void> {
-    const halvings = Math.max(0, Math.ceil(Math.log2(chain.largestExit * horizon)));
+    const spread = rateSpread(chain);
+    const squaringsTo = (time: number): number => planTaylor(chain.size, chain.largestExit * time, spread).squarings;
+    const total = squaringsTo(horizon);
+    let halvings = 0;
+    while (halvings < total && squaringsTo(horizon / 2 ** (halvings + 1)) + halvings + 1 <= total) halvings++;
     const step = horizon / 2 ** halvings;
     return new Squarings(chain.size, kernel, step, yield* denseTransition(chain, step, kernel));
   }

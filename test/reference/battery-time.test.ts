@@ -86,13 +86,17 @@ describe.each(battery.map((c) => [c.id, c] as const))("battery %s", (id, c) => {
         for (let i = 0; i < n; i++)
           for (let j = 0; j < n; j++)
             near(elasticity(d[i * n + j], p[i * n + j]), p[i * n + j], elasticity(Number(e.dP[i][j]), Number(e.P[i][j])), `${id} ${i},${j}`);
-      if (e.ddist_t)
-        for (let j = 0; j < n; j++) {
-          const up = maskOf(n, [j]);
-          const found = shareElasticityAt(generator, up, start, c.t)[from * n + to];
-          const probability = Number(e.dist_t[j]);
-          near(probability > FLOOR ? found : 0, probability, elasticity(Number(e.ddist_t[j]), probability), `${id} ${j}`);
-        }
+      for (let j = 0; e.ddist_t && j < n; j++) {
+        const probability = Number(e.dist_t[j]);
+        const change = start.reduce((sum, weight, i) => sum + weight * d[i * n + j], 0);
+        near(elasticity(change, probability), probability, elasticity(Number(e.ddist_t[j]), probability), `${id} ${j}`);
+      }
+      if (!e.ddist_t) return;
+      const up = e.dist_t.findIndex((text: string, j: number) => Number(text) > FLOOR && Number(e.ddist_t[j]) !== 0);
+      if (up < 0) return;
+      const probability = Number(e.dist_t[up]);
+      const found = shareElasticityAt(generator, maskOf(n, [up]), start, c.t)[from * n + to];
+      near(found, probability, elasticity(Number(e.ddist_t[up]), probability), `${id} share ${up}`);
     });
 
   it("occupancy", () => {
