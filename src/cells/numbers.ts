@@ -14,6 +14,9 @@ export interface Domain {
 
 export const NOT_NEGATIVE: Domain = { least: 0 };
 
+/** Seeds: whole numbers that a double holds exactly. */
+export const SEED: Domain = { least: 0, most: Number.MAX_SAFE_INTEGER, whole: true };
+
 /** Numbers in the shape they were given in; blank cells are 0, as the host may send them. */
 export interface NumberRange {
   readonly values: Float64Array;

@@ -1,5 +1,6 @@
 import { withNames, type Answer, type AnswerCell } from "../cells/answer";
 import type { Argument } from "../cells/argument";
+import { readCounts } from "../cells/counts";
 import { Problem } from "../chain/problem";
 import type { Steps } from "../chain/steps";
 import { readRateTable } from "../table/read";
@@ -20,6 +21,15 @@ export function tableIn(rates: Argument, name = "rates"): RateTable {
   if (rates === null) throw new Problem("argumentMissing", { argument: name });
   return readOnce("table", rates, (cells) => {
     const table = readRateTable(cells);
+    return { value: table, bytes: 400 + 120 * table.generator.arrowCount + 64 * table.size };
+  });
+}
+
+/** The counts of jumps in a range, as a table whose "rates" they are. @throws as `readCounts` */
+export function countsIn(counts: Argument): RateTable {
+  if (counts === null) throw new Problem("argumentMissing", { argument: "counts" });
+  return readOnce("counts", counts, (cells) => {
+    const table = readCounts(cells);
     return { value: table, bytes: 400 + 120 * table.generator.arrowCount + 64 * table.size };
   });
 }

@@ -1,12 +1,14 @@
+import { cellsFrom } from "../cells/answer";
 import { readJumpCosts } from "../cells/matrix";
-import { NOT_NEGATIVE, readNumber, readStateCosts } from "../cells/numbers";
+import { NOT_NEGATIVE, readNumber, readNumbers, readStateCosts, SEED } from "../cells/numbers";
 import { readStart, readStartIfGiven } from "../cells/start";
 import { readState, readStates } from "../cells/states";
 import { readTargets } from "../cells/targets";
+import { availabilityBandSteps } from "../chain/availability-band";
 import { costElasticitySteps, meanTimeElasticitySteps, shareElasticitySteps } from "../chain/elasticity";
 import { rateForGoalSteps } from "../chain/rate-for-goal";
 import { shareElasticityAtSteps } from "../chain/transition-derivative";
-import { ask, tableIn } from "./asking";
+import { ask, countsIn, tableIn } from "./asking";
 import { square } from "./shapes";
 
 // Section E: which rate matters, and how sure?
@@ -93,4 +95,42 @@ export function rateForGoal(rates: any[][], from: any[][], to: any[][], up: any[
   const at = time ? readNumber(time, "time", NOT_NEGATIVE) : undefined;
   const begin = at === undefined ? readStartIfGiven(start ?? null, states) : readStart(start ?? null, states);
   return ask(states, () => rateForGoalSteps(states.generator, tail, head, working, share, begin, at), (rate) => rate);
+}
+
+/**
+ * Band of the share in the up states that counted jumps leave open: lower end, median, upper end of seeded draws.
+ * @customfunction AVAILABILITYBAND
+ * @cancelable
+ * @param counts Number of jumps: from-rows by to-columns with a blank diagonal, or a list of from, to, count.
+ * @param timeInState Time observed in each state, in a row or column, in the table's order.
+ * @param up The states that count as up: names, numbers, or one TRUE/FALSE for each state.
+ * @param [start] A state by name or number, or one probability for each state; at a time the first state when left out.
+ * @param [time] One time, 0 or more; the long run when left out, but time 0 when it points at a blank cell.
+ * @param [confidence] Between 0 and 1; 0.9 when left out.
+ * @param [draws] Number of draws; 2,000 when left out.
+ * @param [seed] A whole number, 0 or more; 1 when left out. The same seed gives the same figures.
+ * @returns {any[][]} One row: lower end, median, upper end.
+ */
+export function availabilityBand(
+  counts: any[][],
+  timeInState: any[][],
+  up: any[][],
+  start?: any[][],
+  time?: any[][],
+  confidence?: any[][],
+  draws?: any[][],
+  seed?: any[][],
+): any[][] {
+  const states = countsIn(counts);
+  const times = readNumbers(timeInState, "timeInState", NOT_NEGATIVE).values;
+  const working = readStates(up, "up", states);
+  const at = time ? readNumber(time, "time", NOT_NEGATIVE) : undefined;
+  const options = {
+    start: at === undefined ? readStartIfGiven(start ?? null, states) : readStart(start ?? null, states),
+    time: at,
+    confidence: readNumber(confidence ?? null, "confidence", { above: 0, below: 1 }, 0.9),
+    draws: readNumber(draws ?? null, "draws", { least: 1, most: 1_000_000, whole: true }, 2000),
+    seed: readNumber(seed ?? null, "seed", SEED, 1),
+  };
+  return ask(states, () => availabilityBandSteps(states, times, working, options), ({ lower, median, upper }) => cellsFrom([lower, median, upper], 1, 3));
 }

@@ -43,7 +43,7 @@ register({
   MEANTIMEELASTICITY: sensitivity.meanTimeElasticity,
   COSTELASTICITY: sensitivity.costElasticity,
   RATEFORGOAL: sensitivity.rateForGoal,
-  AVAILABILITYBAND: data.availabilityBand,
+  AVAILABILITYBAND: sensitivity.availabilityBand,
 
   GENERATOR: building.generator,
   FROMLIST: building.fromList,

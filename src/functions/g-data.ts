@@ -1,23 +1,17 @@
 import { cellsFrom } from "../cells/answer";
-import { readFlag, type Argument } from "../cells/argument";
-import { readCounts } from "../cells/counts";
+import { readFlag } from "../cells/argument";
 import { generatorValues } from "../cells/generator-cells";
 import { readLog } from "../cells/log";
 import { NOT_NEGATIVE, readNumber, readNumbers } from "../cells/numbers";
 import { readProbabilities } from "../cells/probabilities";
-import { readStart, readStartIfGiven } from "../cells/start";
-import { readStates } from "../cells/states";
-import { availabilityBandSteps } from "../chain/availability-band";
 import { fromCounts as chainFromCounts } from "../chain/counts";
 import { embeddingGapSteps, generatorFromProbabilitySteps } from "../chain/from-probability";
 import { fromLog as chainFromLog } from "../chain/log";
-import { Problem } from "../chain/problem";
 import { rateInterval as intervalOfRate } from "../chain/rate-interval";
-import type { RateTable } from "../table/rate-table";
-import { ask, readOnce } from "./asking";
+import { ask, countsIn } from "./asking";
 import { square } from "./shapes";
 
-// Section G: rates from data, and how sure they are
+// Section G: rates from data
 
 /**
  * Rates that give a table of one-period transition probabilities, or the nearest rates where none give it exactly.
@@ -93,53 +87,4 @@ export function rateInterval(count: any[][], exposure: any[][], confidence?: any
   const sure = readNumber(confidence ?? null, "confidence", { above: 0, below: 1 }, 0.9);
   const atEvent = readFlag(failureTruncated ?? null, "failureTruncated");
   return ask(null, () => intervalOfRate(events, time, sure, atEvent), ({ lower, estimate, upper }) => cellsFrom([lower, estimate, upper], 1, 3));
-}
-
-/**
- * Band of the share in the up states that counted jumps leave open: lower end, median, upper end of seeded draws.
- * @customfunction AVAILABILITYBAND
- * @cancelable
- * @param counts Number of jumps: from-rows by to-columns with a blank diagonal, or a list of from, to, count.
- * @param timeInState Time observed in each state, in a row or column, in the table's order.
- * @param up The states that count as up: names, numbers, or one TRUE/FALSE for each state.
- * @param [start] A state by name or number, or one probability for each state; at a time the first state when left out.
- * @param [time] One time, 0 or more; the long run when left out, but time 0 when it points at a blank cell.
- * @param [confidence] Between 0 and 1; 0.9 when left out.
- * @param [draws] Number of draws; 2,000 when left out.
- * @param [seed] A whole number, 0 or more; 1 when left out. The same seed gives the same figures.
- * @returns {any[][]} One row: lower end, median, upper end.
- */
-export function availabilityBand(
-  counts: any[][],
-  timeInState: any[][],
-  up: any[][],
-  start?: any[][],
-  time?: any[][],
-  confidence?: any[][],
-  draws?: any[][],
-  seed?: any[][],
-): any[][] {
-  const states = countsIn(counts);
-  const times = readNumbers(timeInState, "timeInState", NOT_NEGATIVE).values;
-  const working = readStates(up, "up", states);
-  const at = time ? readNumber(time, "time", NOT_NEGATIVE) : undefined;
-  const options = {
-    start: at === undefined ? readStartIfGiven(start ?? null, states) : readStart(start ?? null, states),
-    time: at,
-    confidence: readNumber(confidence ?? null, "confidence", { above: 0, below: 1 }, 0.9),
-    draws: readNumber(draws ?? null, "draws", { least: 1, most: 1_000_000, whole: true }, 2000),
-    seed: readNumber(seed ?? null, "seed", SEED, 1),
-  };
-  return ask(states, () => availabilityBandSteps(states, times, working, options), ({ lower, median, upper }) => cellsFrom([lower, median, upper], 1, 3));
-}
-
-/** Seeds that a double holds exactly. */
-export const SEED = { least: 0, most: Number.MAX_SAFE_INTEGER, whole: true };
-
-function countsIn(counts: Argument): RateTable {
-  if (counts === null) throw new Problem("argumentMissing", { argument: "counts" });
-  return readOnce("counts", counts, (cells) => {
-    const table = readCounts(cells);
-    return { value: table, bytes: 400 + 120 * table.generator.arrowCount + 64 * table.size };
-  });
 }

@@ -1,7 +1,7 @@
 import { auditReading } from "../audit/audit";
 import { checkSpill, refusal, type Answer } from "../cells/answer";
 import { readFlag, type Argument } from "../cells/argument";
-import { NOT_NEGATIVE, readNumber } from "../cells/numbers";
+import { NOT_NEGATIVE, readNumber, SEED } from "../cells/numbers";
 import { findingTexts } from "../cells/sentences/findings";
 import { readStart } from "../cells/start";
 import { labelsOf } from "../cells/states";
@@ -15,7 +15,6 @@ import { fingerprint as fingerprintOf } from "../table/fingerprint";
 import { read } from "../table/read";
 import type { RateTable } from "../table/rate-table";
 import { ask, tableIn } from "./asking";
-import { SEED } from "./g-data";
 import { column, square, table } from "./shapes";
 
 // Section H: looking into a table
