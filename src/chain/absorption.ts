@@ -119,7 +119,7 @@ export function* everReachedSteps(generator: Generator, targets: StateSet): Step
  * *Cost*: elimination + 2 k n² dense. *Accuracy*: `test/reference/battery-chain.test.ts`.
  *
  * @example absorptionProbability(Generator.fromArrows(3, [[0, 1, 1], [0, 2, 3]]), Uint8Array.of(0, 1, 1)).probability
- * // rows [0.25, 0.75], [1, 0], [0, 1]
+ * // [0.25, 0.75, 1, 0, 0, 1]
  */
 export function absorptionProbability(
   generator: Generator, targets: StateSet,

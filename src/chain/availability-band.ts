@@ -45,7 +45,8 @@ export interface BandOptions {
  * (1996) 361–365). *Cost*: one availability a draw. *Accuracy*: a two-state case against its beta-prime quantiles,
  * `test/unit/chain/availability-band.test.ts`.
  *
- * @example availabilityBand({ generator: Generator.fromArrows(2, [[0, 1, 4], [1, 0, 4]]), names: null }, [990, 10], Uint8Array.of(1, 0))
+ * @example availabilityBand({ generator: Generator.fromArrows(2, [[0, 1, 4], [1, 0, 4]]), names: null }, [990, 10], Uint8Array.of(1, 0)).median
+ * // 0.9896168914156549
  */
 export function availabilityBand(
   counts: Named, timeInState: ArrayLike<number>, up: StateSet, options: BandOptions = {},

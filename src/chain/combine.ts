@@ -12,7 +12,8 @@ import { nameOf, type Built, type Named } from "./named";
  *
  * *Method*: Kronecker sum (common practice).
  *
- * @example combine({ generator: Generator.fromArrows(2, [[0, 1, 3]]), names: ["up", "down"] }, other).names[0] // "up + day"
+ * @example combine({ generator: Generator.fromArrows(1, []), names: ["up"] }, { generator: Generator.fromArrows(1, []), names: null }).names
+ * // ["up + State 1"]
  */
 export function combine(a: Named, b: Named): Built {
   const [m, n] = [a.generator.size, b.generator.size];

@@ -18,7 +18,7 @@ import { finish, type Steps } from "./steps";
  * `numerics/rows.ts`. *Cost*: Λt · arrows, or about (9 + log2(Λt)) n³ and log2(Λt) n² more a time. *Accuracy*: as
  * `transitionMatrix`, `test/reference/battery-time.test.ts`.
  *
- * @example distributions(Generator.fromArrows(2, [[0, 1, 2]]), Float64Array.of(1, 0), [0, 1]) // [[1, 0], [e⁻², 1 − e⁻²]]
+ * @example distributions(Generator.fromArrows(2, [[0, 1, 2]]), Float64Array.of(1, 0), [0, 1]) // [[1, 0], [Math.exp(-2), -Math.expm1(-2)]]
  */
 export function distributions(generator: Generator, start: Float64Array, times: ArrayLike<number>): Float64Array[] {
   return finish(distributionsSteps(generator, start, times));

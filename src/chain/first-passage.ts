@@ -21,7 +21,7 @@ import { finish, type Steps } from "./steps";
  * a survival of 1e-200 keeps its digits. *Cost*: one row, see `distributions`. *Accuracy*:
  * `test/reference/battery-time.test.ts`.
  *
- * @example survival(Generator.fromArrows(2, [[0, 1, 2]]), Float64Array.of(1, 0), Uint8Array.of(0, 1), [100]) // [e⁻²⁰⁰]
+ * @example survival(Generator.fromArrows(2, [[0, 1, 2]]), Float64Array.of(1, 0), Uint8Array.of(0, 1), [100]) // [Math.exp(-200)]
  */
 export function survival(generator: Generator, start: Float64Array, targets: StateSet, times: ArrayLike<number>): Float64Array {
   return finish(survivalSteps(generator, start, targets, times));

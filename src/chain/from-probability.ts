@@ -30,7 +30,7 @@ const ROUNDING_SHARE = 1e-10;
  * *Cost*: some 10 inverses of order n a square root. *Accuracy*: exp(Q · period) agrees with p to 1e-12 where exact,
  * `test/unit/chain/from-probability.test.ts`.
  *
- * @example generatorFromProbability(2, Float64Array.of(0.8, 0.2, 0, 1), 1).generator.rateOf(0, 1) // −ln 0.8
+ * @example generatorFromProbability(2, Float64Array.of(0.8, 0.2, 0, 1), 1).generator.rateOf(0, 1) // -Math.log(0.8)
  */
 export function generatorFromProbability(size: number, p: Float64Array, period: number): FromProbability {
   return finish(generatorFromProbabilitySteps(size, p, period));
@@ -103,7 +103,7 @@ function generatorOf(n: number, rates: Float64Array, period: number): Generator 
  *
  * Parameters, problems, method and cost as there.
  *
- * @example embeddingGap(2, Float64Array.of(0.8, 0.2, 0, 1), 1) // 0 to rounding
+ * @example embeddingGap(2, Float64Array.of(0.8, 0.2, 0, 1), 1) < 1e-15 // true
  */
 export function embeddingGap(size: number, p: Float64Array, period: number): number {
   return finish(embeddingGapSteps(size, p, period));

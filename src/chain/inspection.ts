@@ -24,7 +24,7 @@ import { transitionMatrixSteps } from "./transition";
  * interval. *Cost*: P(T), one product, n³/3, one occupancy. *Accuracy*: relative error at most 1e-13,
  * `test/unit/chain/inspection.test.ts`.
  *
- * @example inspectionShares(Generator.fromArrows(2, [[0, 1, 0.1]]), Float64Array.of(1, 0, 1, 0), 5) // [(1 − e^(−½)) / ½, …]
+ * @example inspectionShares(Generator.fromArrows(2, [[0, 1, 0.1]]), Float64Array.of(1, 0, 1, 0), 5)[0] // -Math.expm1(-0.5) / 0.5
  */
 export function inspectionShares(generator: Generator, resets: Float64Array, interval: number): Float64Array {
   return finish(inspectionSharesSteps(generator, resets, interval));

@@ -30,7 +30,7 @@ export interface Percentiles {
  * jump. *Cost*: about log2(Λt) products of order n, once for all fractions. *Accuracy*: relative error at most 5e-14,
  * `test/reference/battery-time.test.ts`.
  *
- * @example percentiles(Generator.fromArrows(2, [[0, 1, 2]]), Float64Array.of(1, 0), Uint8Array.of(0, 1), [0.5]).times // [ln 2 / 2]
+ * @example percentiles(Generator.fromArrows(2, [[0, 1, 2]]), Float64Array.of(1, 0), Uint8Array.of(0, 1), [0.5]).times // [Math.LN2 / 2]
  */
 export function percentiles(
   generator: Generator,

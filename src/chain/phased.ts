@@ -16,7 +16,8 @@ import { finish, within, type Steps } from "./steps";
  *
  * *Method*: the row is taken through the phases in order. Cost and accuracy as `distributions`, added up.
  *
- * @example phasedDistributions([g, g], [1, 2], start)[1] // distributions(g, start, [3])[0] to rounding
+ * @example phasedDistributions([Generator.fromArrows(2, [[0, 1, 2]]), Generator.fromArrows(2, [])], [1, 9], Float64Array.of(1, 0))[1]
+ * // [Math.exp(-2), -Math.expm1(-2)]
  */
 export function phasedDistributions(
   generators: readonly Generator[],
@@ -46,7 +47,7 @@ export function* phasedDistributionsSteps(
  *
  * Parameters and problems as `phasedDistributions`; result: for each phase, n times that sum to its duration.
  *
- * @example phasedOccupancies([g], [5], start) // occupancies(g, start, [5])
+ * @example phasedOccupancies([Generator.fromArrows(2, [[0, 1, 2]])], [1e9], Float64Array.of(1, 0)) // [[0.5, 999999999.5]]
  */
 export function phasedOccupancies(
   generators: readonly Generator[],

@@ -24,7 +24,7 @@ export interface RateInterval {
  * *Method*: Garwood, Biometrika 28 (1936) 437–442; the chi-square points as Poisson means, `numerics/poisson-tail.ts`.
  * *Accuracy*: 1e-14 against mpmath, and the published factors F02, F03, F05, in `test/unit/chain/rate-interval.test.ts`.
  *
- * @example rateInterval(2, 800).upper // 0.00786989…
+ * @example rateInterval(2, 800).upper // 0.007869742027339987
  */
 export function rateInterval(count: number, exposure: number, confidence = 0.9, failureTruncated = false): RateInterval {
   wholeNumber("count", count, 0);

@@ -20,7 +20,7 @@ import { finish, type Steps } from "./steps";
  * 2 log2(Λt) + 10 products of order n. *Accuracy*: `test/unit/chain/settling.test.ts` against closed forms, 1e-12 relative
  * for tolerances above 1e-3; the distance itself is a difference of probabilities, known to 1e-16.
  *
- * @example settlingTime(Generator.fromArrows(2, [[0, 1, 1], [1, 0, 3]]), 0.01) // ln(75) / 4
+ * @example settlingTime(Generator.fromArrows(2, [[0, 1, 1], [1, 0, 3]]), 0.01) // Math.log(75) / 4
  */
 export function settlingTime(generator: Generator, tolerance: number): number {
   return finish(settlingTimeSteps(generator, tolerance));

@@ -22,7 +22,7 @@ import { finish, type Steps } from "./steps";
  * `numerics/transition-derivative.ts`. *Cost*: arrows · 2 products a squaring of P(t). *Accuracy*: absolute error at most
  * 2e-14 (1 + |ln s|)(1 + |e|), `test/reference/battery-time.test.ts`.
  *
- * @example shareElasticityAt(Generator.fromArrows(2, [[0, 1, 2]]), Uint8Array.of(1, 0), Float64Array.of(1, 0), 3)[1] // −6
+ * @example shareElasticityAt(Generator.fromArrows(2, [[0, 1, 2]]), Uint8Array.of(1, 0), Float64Array.of(1, 0), 3)[1] // -6
  */
 export function shareElasticityAt(
   generator: Generator,

@@ -20,7 +20,7 @@ import { finish, type Steps } from "./steps";
  * error at most 4e-15 (1 + |ln p|) for p ≥ 1e-280, below about 1e-290 products leave the double range;
  * `test/reference/battery-time.test.ts`.
  *
- * @example transitionMatrix(Generator.fromArrows(2, [[0, 1, 1], [1, 0, 3]]), 0.5) // [0.78, 0.22; 0.65, 0.35] to 2 digits
+ * @example transitionMatrix(Generator.fromArrows(2, [[0, 1, 1], [1, 0, 3]]), 0.5)[1] // -Math.expm1(-2) / 4
  */
 export function transitionMatrix(generator: Generator, time: number): Float64Array {
   return finish(transitionMatrixSteps(generator, time));
