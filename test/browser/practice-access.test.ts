@@ -35,6 +35,8 @@ describe("everyone can use the practice workbook", () => {
     await page.keyboard.press("Tab");
     expect(await focused()).toBe("Sheet");
     await page.keyboard.press("Enter");
+    await focus(/^Plan$/);
+    await page.keyboard.press("n");
     await focus(/^New sheet/);
     await page.keyboard.press("Enter");
     await focus(/^Sheet Sheet$/);

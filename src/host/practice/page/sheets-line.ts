@@ -20,6 +20,8 @@ export class SheetsLine {
     this.menu = new Menu("Sheet", () => this.items(), focusGrid);
     this.element = el("nav", { class: "sheets-line", "aria-label": "Sheets" }, this.tabs, this.menu.button);
     this.tabs.addEventListener("keydown", (event) => this.key(event));
+    // A wheel over more sheets than fit moves along them.
+    this.tabs.addEventListener("wheel", (event) => this.tabs.scrollBy({ left: event.deltaX + event.deltaY }), { passive: true });
     session.on("sheet", () => this.draw());
     session.book.on("sheets", () => this.draw());
     this.draw();
@@ -77,6 +79,9 @@ export class SheetsLine {
     const then = (act: () => void) => (): void => void (this.editor.commit() && act());
     const perform = session.perform.bind(session);
     return [
+      sheets
+        .filter((sheet) => !sheet.hidden)
+        .map((sheet) => ({ text: sheet.name, checked: sheet.id === session.sheet, act: () => this.show(sheet.id) })),
       [
         { text: "New sheet", act: then(() => this.add()) },
         { text: "Rename", act: then(() => this.rename()), keys: "F2" },
