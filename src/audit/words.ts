@@ -32,6 +32,11 @@ export function meansFinalAmong(text: string, names: readonly string[]): boolean
   return meansFinal(text) || (/^d$/iu.test(text.trim()) && names.filter((name) => /^(a{1,3}|b{1,3}|c{1,3})[+-]?\d?$/iu.test(name.trim())).length >= 2);
 }
 
+/** Words of states in which things begin. */
+export function meansBeginning(text: string): boolean {
+  return /\b(new|start|started|begin|initial|entry|entered|fresh|healthy|well|good as new|unused|intact|sound|undamaged|fault free|born|arrival|arrived|enrolled|hired|opened|installed|commissioned|origin)\b/u.test(plainWords(text));
+}
+
 const PROBABILITY = /(\bprob(s|ability|abilities|\.)?\b|\brisks?\b|\bchances?\b|\blikelihood\b|%|\bper ?cent\b|\bp\s*\()/iu;
 
 export function meansProbability(text: string): boolean {

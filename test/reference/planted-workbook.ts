@@ -218,7 +218,7 @@ export const plantedWorkbook: readonly PlantedSheet[] = [
     name: "Depot", layout: "square, blank diagonal",
     lines: [["", "In service", "Workshop", "Spare"], ["In service", B, 0.2, 0], ["Workshop", 0.7, B, B], ["Spare", 2, 0, B]],
     facts: { hiddenRows: [2], hiddenColumns: [] },
-    faults: [{ mistake: 23, codes: ["blanksAmongZeros"], at: [2, 3] }, { mistake: 24, codes: ["hiddenLines"], at: [2, 0] }],
+    faults: [{ mistake: 23, codes: ["blanksAmongZeros"], at: [2, 3] }, { mistake: 24, codes: ["hiddenLines"], at: [2, 0] }, { mistake: 15, codes: ["unreachable"], at: [3, 1] }],
   },
   {
     name: "Depot 2", layout: "two-row heading",

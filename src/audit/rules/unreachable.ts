@@ -2,12 +2,13 @@ import { communicatingClasses } from "../../chain/classes";
 import type { Generator } from "../../chain/generator";
 import { possibleArrows } from "../body";
 import { rowSpan, stateName, type Context, type Rule } from "../context";
+import { meansBeginning, meansFinal } from "../words";
 
 /**
- * States that the chain never enters (mistake 15). With a start: what no path from it reaches. Without one a table has one beginning:
- * a single group without arrows in is taken for it, unless it is one state in the middle of a square table (worst state first is
- * common, the beginning in the middle is not; in a list the order says nothing). Of several such groups the one with the first state is the beginning; where none holds it, any may be.
- * One finding for all. Cells that cannot be read count as arrows.
+ * States that the chain never enters (mistake 15). With a start: what no path from it reaches. Without one the beginning is taken to
+ * be the group without arrows in that holds the first state. A single state without arrows in that stands elsewhere may still be the
+ * beginning: by its name ("As new"), in a list, whose order says nothing, or last in a table that puts its worst state first. One
+ * finding for all. Cells that cannot be read count as arrows.
  */
 export const unreachable: Rule = (context) => {
   const { chain, kind, start } = context;
@@ -32,15 +33,28 @@ function beyond({ body }: Context, start: Float64Array): number[] {
   return states.filter((i) => !seen[i]);
 }
 
-function withoutEntry({ body }: Context): number[] {
-  const chain = possibleArrows(body);
+function withoutEntry(context: Context): number[] {
+  const chain = possibleArrows(context.body);
   const { classOf, classes } = communicatingClasses(chain);
   const entered = new Uint8Array(classes.length);
   for (const [from, to] of chain.arrows()) if (classOf[from] !== classOf[to]) entered[classOf[to]] = 1;
   const sources = classes.filter((_, k) => !entered[k]);
   const first = sources.find((members) => members.includes(0));
-  if (sources.length === 1 && (first || body.form === "list" || sources[0].length > 1 || sources[0].includes(body.size - 1))) return [];
+  if (sources.length === 1 && (first || mayBegin(context, sources[0]))) return [];
   return sources.filter((members) => members !== first).flatMap((members) => [...members]).sort((a, b) => a - b);
+}
+
+function mayBegin({ body, chain }: Context, members: Int32Array): boolean {
+  const [state] = members;
+  if (members.length > 1 || body.form === "list" || meansBeginning(body.nameOf(state))) return true;
+  if (state !== body.size - 1) return false;
+  let back = 0;
+  let on = 0;
+  for (const [from, to] of chain.arrows()) if (from !== state) {
+    if (to < from) back++;
+    else on++;
+  }
+  return chain.exitRate[0] === 0 || meansFinal(body.nameOf(0)) || back > on;
 }
 
 function reach(chain: Generator, from: readonly number[]): Uint8Array {

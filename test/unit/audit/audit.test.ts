@@ -117,6 +117,12 @@ describe("mistake 15: an unreachable state", () => {
     expect(findingOf(middle, "unreachable")).toMatchObject({ details: { names: ["Odd"] } });
     expect(complaints([["Up", "Down", 1], ["Odd", "Up", 1], ["Down", "Up", 2], ["Down", "Lost", 2]])).toEqual([]);
   });
+  it("warns of a last state without arrows in, unless the table puts its worst state first or the name says beginning", () => {
+    const rows = [[null, 0.1, 0], [1, null, 0], [2, 0, null]];
+    expect(complaints(headed("", ["Running", "Repair", "Parked"], rows))).toEqual(["unreachable"]);
+    expect(complaints(headed("", ["Repair", "Limping", "As new"], rows))).toEqual([]);
+    expect(complaints(headed("", ["Failed", "Limping", "Parked"], rows))).toEqual([]);
+  });
   it("counts a cell that cannot be read as an arrow", () => {
     expect(complaints(headed("", three, [[null, 0.02, "?"], [0.5, null, -1], [1, 0, null]]))).toEqual(["rateNotNumber", "rateNegative"]);
   });
