@@ -26,3 +26,9 @@ export function acceptanceKey(finding: Finding, sheet: string, cells: Cells, rea
 function valuesIn(cells: Cells, { row, column, rows, columns }: Span): (CellValue | undefined)[][] {
   return Array.from({ length: rows }, (_, r) => Array.from({ length: columns }, (_, c) => cells[row + r]?.[column + c] ?? null));
 }
+
+/** The same key for the same finding on a sheet of another name. */
+export function onSheet(key: string, sheet: string): string {
+  const parts = JSON.parse(key) as unknown[];
+  return JSON.stringify([parts[0], sheet, ...parts.slice(2)]);
+}

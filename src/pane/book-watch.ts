@@ -55,6 +55,12 @@ export class BookWatch {
     return at < 0 ? [] : formulas.filter(({ reads }) => reads === at).map(({ address, formula }) => ({ place: placeText(address), formula }));
   }
 
+  /** Whether no table stands at a place any more; false as long as the workbook has not been looked through afresh. */
+  readonly gone = ({ sheet, row, column }: { sheet: string; row: number; column: number }): boolean => {
+    const { scanned, stale } = this.book;
+    return scanned !== null && !stale && !scanned.scan.tables.some(({ address }) => address.sheet === sheet && address.row === row && address.column === column);
+  };
+
   dispose(): void {
     clearTimeout(this.timer);
     this.running?.abort();

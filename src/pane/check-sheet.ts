@@ -23,7 +23,7 @@ export interface CheckSheet {
 }
 
 /** Columns of the sheet: together about the width of a printed page. */
-const WIDTHS = [22, 14, 14, 12, 12, 14, 14];
+const WIDTHS = [22, 14, 14, 11, 11, 16, 14];
 const MOST_FORMULAS = 200;
 
 type Line = readonly (HostValue | null)[];

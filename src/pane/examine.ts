@@ -65,9 +65,20 @@ export interface Looked {
   readonly changes: readonly CompareRow[] | null;
 }
 
-export function examine(reading: RangeReading, entry: TableMemory, context: Pick<AuditOptions, "asked" | "others"> = {}): Looked {
+/**
+ * @param entryOf - what is kept for the table, by its state names
+ * @param context - what the rest of the workbook asks of it and holds beside it
+ */
+export function examine(
+  reading: RangeReading,
+  entryOf: (states: readonly string[] | null) => TableMemory,
+  context: Pick<AuditOptions, "asked" | "others"> = {},
+): Looked {
   const cells = cellsFrom(reading.values);
   const table = read(cells);
+  const inner = table.layout ? null : recognise(cells);
+  const layout = table.layout ?? inner?.reading.layout ?? null;
+  const entry = entryOf(layout?.names ?? null);
   const facts = sheetFacts(reading);
   const findings = auditReading(cells, table, { ...context, facts, answers: entry.answers ?? {} });
   const sheet = reading.address.sheet;
@@ -101,14 +112,13 @@ export function examine(reading: RangeReading, entry: TableMemory, context: Pick
       remedy: remedy ? { remedy, ...remedyTexts(remedy) } : null,
     });
   });
-  const inner = table.layout ? null : recognise(cells);
   const innerClaims = inner?.reading.layout ? claimsOf(inner.cells, inner.reading) : [];
   const print = table.table ? fingerprint(table.table) : null;
   return {
     reading,
     cells,
     table,
-    layout: table.layout ?? inner?.reading.layout ?? null,
+    layout,
     entry,
     findings,
     open: items.filter((item) => !item.accepted),

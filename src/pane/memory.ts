@@ -1,3 +1,4 @@
+import { onSheet } from "../audit/acceptance";
 import { LARGEST_RATE, SMALLEST_RATE } from "../chain/generator";
 import type { Workbook } from "./workbook";
 
@@ -37,6 +38,8 @@ export interface TableMemory {
   readonly sheet: string;
   readonly row: number;
   readonly column: number;
+  /** State names when it was last written, so that the entry is found again when the table has moved. */
+  readonly states?: readonly string[];
   readonly unit?: string;
   readonly answers?: Readonly<Record<string, string>>;
   readonly accepted?: readonly Accepted[];
@@ -83,22 +86,27 @@ export class Memory {
     return this.inTurn(async () => this.take(await this.store.get(MEMORY_KEY)));
   }
 
-  table(place: Place): TableMemory {
-    return this.document.tables.find((entry) => samePlace(entry, place)) ?? { sheet: place.sheet, row: place.row, column: place.column };
-  }
-
-  get tables(): readonly TableMemory[] {
-    return this.document.tables;
+  /**
+   * What is kept for the table at a place; else what is kept for a table of the same states that is no longer where it was (its
+   * sheet was renamed, rows were inserted above): the entry follows, and moves for good with the next `update`.
+   *
+   * @param moved - whether no table stands at that place any more
+   */
+  table(place: Place, states: readonly string[] | null = null, moved: (from: Place) => boolean = () => false): TableMemory {
+    const own = this.document.tables.find((entry) => samePlace(entry, place));
+    if (own || !states) return own ?? bare(place);
+    const lost = this.document.tables.filter((entry) => sameStates(entry.states, states) && moved(entry));
+    return lost.length === 1 ? movedTo(lost[0], place) : bare(place);
   }
 
   /** Changes what is kept for one table and stores the document; `change` gets the entry as stored at that moment. */
-  update(place: Place, change: (entry: TableMemory) => TableMemory): Promise<void> {
+  update(place: Place, change: (entry: TableMemory) => TableMemory, states: readonly string[] | null = null, moved: (from: Place) => boolean = () => false): Promise<void> {
     return this.inTurn(async () => {
       this.take(await this.store.get(MEMORY_KEY));
       if (this.current === "newer") return;
-      const entry = this.table(place);
-      const others = this.document.tables.filter((other) => !samePlace(other, place));
-      const document = { ...this.document, tables: [...others, change(entry)] };
+      const entry = change(this.table(place, states, moved));
+      const others = this.document.tables.filter((other) => !samePlace(other, place) && !(sameStates(other.states, states) && moved(other)));
+      const document = { ...this.document, tables: [...others, states ? { ...entry, states } : entry] };
       await this.store.set(MEMORY_KEY, document);
       this.document = document;
     });
@@ -146,6 +154,7 @@ function readEntry(entry: TableMemory & Record<string, unknown>): { readable: Ta
     lost[field] = readable[field];
     delete readable[field];
   };
+  if ("states" in readable && !isTexts(readable.states)) drop("states");
   if ("unit" in readable && typeof readable.unit !== "string") drop("unit");
   if ("answers" in readable && !(isRecord(readable.answers) && Object.values(readable.answers).every((value) => typeof value === "string"))) drop("answers");
   if ("signOff" in readable && !isSignOff(readable.signOff)) drop("signOff");
@@ -164,6 +173,19 @@ function readEntry(entry: TableMemory & Record<string, unknown>): { readable: Ta
   return { readable: readable as unknown as TableMemory, unreadable: Object.keys(lost).length ? { ...place, ...lost } : null };
 }
 
+function bare({ sheet, row, column }: Place): TableMemory {
+  return { sheet, row, column };
+}
+
+function movedTo(entry: TableMemory, { sheet, row, column }: Place): TableMemory {
+  const accepted = entry.accepted?.map((one) => ({ ...one, key: onSheet(one.key, sheet) }));
+  return { ...entry, sheet, row, column, ...(accepted ? { accepted } : {}) };
+}
+
+function sameStates(a: readonly string[] | undefined | null, b: readonly string[] | null): boolean {
+  return !!a && !!b && a.length === b.length && a.every((name, at) => name === b[at]);
+}
+
 function samePlace(a: Place, b: Place): boolean {
   return a.sheet === b.sheet && a.row === b.row && a.column === b.column;
 }
@@ -180,12 +202,16 @@ function isAccepted(value: unknown): value is Accepted {
   return isRecord(value) && ["key", "code", "sentence", "reason", "initials", "date"].every((field) => typeof value[field] === "string");
 }
 
+function isTexts(value: unknown): boolean {
+  return Array.isArray(value) && value.every((text) => typeof text === "string");
+}
+
 function isSignOff(value: unknown): value is SignOff {
   return (
     isRecord(value) &&
     ["fingerprint", "date", "checker"].every((field) => typeof value[field] === "string") &&
     Number.isInteger(value.size) &&
-    (value.names === null || (Array.isArray(value.names) && value.names.every((name) => typeof name === "string"))) &&
+    (value.names === null || isTexts(value.names)) &&
     Array.isArray(value.arrows) &&
     value.arrows.every((arrow) => isArrow(arrow, value.size as number))
   );

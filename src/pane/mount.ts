@@ -12,8 +12,6 @@ import type { Workbook } from "./workbook";
 export interface PaneOptions {
   /** The host's theme; without it the reader's own preference decides. */
   readonly theme?: "light" | "dark";
-  /** The add-in's version, for check sheets. */
-  readonly version?: string;
   now?(): Date;
 }
 
@@ -40,7 +38,10 @@ export function mountPane(root: HTMLElement, workbook: Workbook, options: PaneOp
     if (shown !== view && panel) panel.scrollTop = 0;
     shown = view;
     // A form or preview that has just opened takes the focus.
-    if (opened && (!before || openedName(before) !== openedName(opened))) root.querySelector<HTMLElement>("[data-autofocus]")?.focus();
+    if (!opened || (before && openedName(before) === openedName(opened))) return;
+    const first = root.querySelector<HTMLElement>("[data-autofocus]");
+    first?.focus();
+    if (first instanceof HTMLInputElement) first.select();
   };
 
   const setTheme = (theme: "light" | "dark" | null): void => {

@@ -1,6 +1,7 @@
 import { cellText, sameRange, within } from "./address";
 import { BookWatch } from "./book-watch";
 import { contentsOf, usedPart } from "./contents";
+import { unitAbove } from "./unit-above";
 import { examine, type Item, type Question } from "./examine";
 import { Memory, type TableMemory } from "./memory";
 import { cellsWrite, shownChanges, putBack, rangeOf, spilledInto, tableWrite } from "./remedy-write";
@@ -8,12 +9,12 @@ import { act, sharingOf, type SharingAct } from "./sharing";
 import { signOffOf } from "./sign-off";
 import { START, type PaneState, type Preview, type View } from "./state";
 import { chooseSubject, followSubject, type Subject } from "./subject";
+import { VERSION } from "./version";
 import type { RangeAddress, RangeReading, Workbook } from "./workbook";
 import { checkSheet } from "./check-sheet";
 import { plainUnit } from "../cells/sentences/arrows";
 
 export interface SessionOptions {
-  readonly version?: string;
   now?(): Date;
 }
 
@@ -133,6 +134,16 @@ export class Session {
     this.set({ drawn: { ...this.current.drawn, [list]: count } });
   }
 
+  /** Opens the form for the unit, with the unit that the labels above the table speak of, if they do. */
+  async openUnit(): Promise<void> {
+    const { subject, looked } = this.current;
+    if (!subject || !looked) return;
+    await this.attempt(async () => {
+      const suggestion = looked.entry.unit ?? (await unitAbove(this.workbook, subject.address));
+      this.set({ opened: { kind: "unit", suggestion } });
+    });
+  }
+
   setUnit(typed: string): Promise<void> {
     const unit = plainUnit(typed);
     return this.keep((entry) => (unit === "" ? without(entry, "unit") : { ...entry, unit }));
@@ -238,7 +249,7 @@ export class Session {
     this.set({ busy: true });
     await this.attempt(async () => {
       const sheet = await checkSheet(looked, {
-        version: this.options.version ?? "",
+        version: VERSION,
         date: this.today(),
         workbook: (await this.workbook.name?.()) ?? "",
         formulas: this.watch.readersOf(looked.reading.address),
@@ -302,7 +313,7 @@ export class Session {
     const reading = await this.workbook.read(subject.address);
     if (turn !== this.turn) return;
     const moved = !sameRange(subject.address, this.current.subject?.address ?? null);
-    const looked = examine(reading, this.memory.table(subject.address), this.watch.contextOf(subject.address));
+    const looked = examine(reading, (states) => this.memory.table(subject.address, states, this.watch.gone), this.watch.contextOf(subject.address));
     const { opened } = this.current;
     const stays = opened && !moved && (!("key" in opened) || looked.open.some((item) => item.key === opened.key));
     this.set({ subject, looked, opened: stays ? opened : null, ...(moved ? { drawn: {} } : {}) });
@@ -339,10 +350,10 @@ export class Session {
   }
 
   private async keep(change: (entry: TableMemory) => TableMemory): Promise<void> {
-    const { subject } = this.current;
+    const { subject, looked } = this.current;
     if (!subject) return;
     await this.attempt(async () => {
-      await this.memory.update(subject.address, change);
+      await this.memory.update(subject.address, change, looked?.layout?.names ?? null, this.watch.gone);
       this.set({ opened: null, memory: this.memory.state, setAside: this.memory.setAside });
       await this.look(subject);
     });

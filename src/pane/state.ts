@@ -45,7 +45,7 @@ export type Undo =
 export type Opened =
   | { readonly kind: "accept"; readonly key: string }
   | { readonly kind: "remedy"; readonly key: string; readonly preview: Preview }
-  | { readonly kind: "unit" }
+  | { readonly kind: "unit"; readonly suggestion: string }
   | { readonly kind: "signOff" }
   | { readonly kind: "freeze" };
 

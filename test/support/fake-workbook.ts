@@ -136,6 +136,11 @@ export class FakeWorkbook implements Workbook {
     this.emit("change");
   }
 
+  rename(sheet: string, name: string): void {
+    this.grids = new Map([...this.grids].map(([old, grid]) => [old === sheet ? name : old, grid]));
+    this.emit("sheets");
+  }
+
   value(sheet: string, row: number, column: number): HostValue {
     return this.grid(sheet).get(`${row},${column}`)?.value ?? "";
   }

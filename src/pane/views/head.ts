@@ -39,12 +39,14 @@ export function head(session: Session): VElement {
       layout ? count(layout.size, "state") : "not read as a table",
       layout ? ` · ${count(looked.claims.length, "arrow")}` : "",
       " · ",
-      word(unit === "" ? "unit not set" : perUnit(unit), () => session.open({ kind: "unit" }), {
-        key: "unit",
-        "data-opens": "unit",
-        "aria-expanded": opened?.kind === "unit" ? "true" : "false",
-        "aria-label": unit === "" ? "Unit not set. Set the unit of this table" : `${perUnit(unit)}. Change the unit of this table`,
-      }),
+      session.state.memory === "ready"
+        ? word(unit === "" ? "unit not set" : perUnit(unit), () => void session.openUnit(), {
+            key: "unit",
+            "data-opens": "unit",
+            "aria-expanded": opened?.kind === "unit" ? "true" : "false",
+            "aria-label": unit === "" ? "Unit not set. Set the unit of this table" : `${perUnit(unit)}. Change the unit of this table`,
+          })
+        : "unit not known",
       layout ? ` · ${formWords(layout)}` : "",
       " ",
       h(
@@ -65,7 +67,7 @@ export function head(session: Session): VElement {
     opened?.kind === "unit" &&
       form(
         "unit-form",
-        [{ name: "unit", label: "Rates are per", value: unit, size: 12, hint: "One word, such as day, h or 1e6 h. It is only shown, never used to convert." }],
+        [{ name: "unit", label: "Rates are per", value: opened.suggestion, size: 12, hint: "One word, such as day, h or 1e6 h. It is only shown, never used to convert." }],
         "Keep",
         ({ unit: typed }) => void session.setUnit(typed),
         () => session.open(null),

@@ -3,6 +3,8 @@ import { checkSheet, sheetName } from "../../../src/pane/check-sheet";
 import { examine } from "../../../src/pane/examine";
 import type { TableMemory } from "../../../src/pane/memory";
 import { signOffOf } from "../../../src/pane/sign-off";
+import { VERSION } from "../../../src/pane/version";
+import packageFile from "../../../package.json";
 import { FakeWorkbook, type Typed } from "../../support/fake-workbook";
 
 const PUMP: Typed[][] = [
@@ -15,13 +17,17 @@ const PUMP: Typed[][] = [
 async function sheetOf(rows: Typed[][], entry: Partial<TableMemory> = {}, size = rows.length) {
   const place = { sheet: "Pump", row: 0, column: 0 };
   const reading = await new FakeWorkbook({ Pump: rows }).read({ ...place, rows: size, columns: rows[0].length });
-  const looked = examine(reading, { ...place, ...entry });
+  const looked = examine(reading, () => ({ ...place, ...entry }));
   const sheet = await checkSheet(looked, { version: "1.0.0", date: "2026-12-01", workbook: "plant.xlsx", formulas: [{ place: "Plan B4", formula: "=CTMC.STATIONARY(Pump!A1:D4)" }] });
   const after = (label: string): unknown[] => sheet.cells.find((row) => row[0] === label)?.slice(1) as unknown[];
   return { looked, sheet, after, text: sheet.cells.flat().filter((cell) => cell !== null).join("\n") };
 }
 
 describe("check sheet", () => {
+  it("names the version of the package", () => {
+    expect(VERSION).toBe(packageFile.version);
+  });
+
   it("says where, what, when and with what", async () => {
     const { after, looked } = await sheetOf(PUMP, { unit: "day" });
     expect(after("Workbook")[0]).toBe("plant.xlsx");

@@ -43,6 +43,24 @@ describe("what is kept with the workbook", () => {
     expect(memory.table(place)).toEqual({ ...place, unit: "day", answers: { largestArrow: "right" } });
   });
 
+  it("follows a table that has moved, and no other table of the same states", async () => {
+    const kept = store();
+    const memory = new Memory(kept);
+    await memory.load();
+    const states = ["Up", "Down"];
+    const key = JSON.stringify(["noExit", "Rates", states]);
+    await memory.update(place, (entry) => ({ ...entry, unit: "day", accepted: [{ ...accepted, key }] }), states);
+    const lower = { ...place, sheet: "Rates 2027", row: 4 };
+    // The old place still holds a table: the other one is a copy and has nothing kept.
+    expect(memory.table(lower, states, () => false)).toEqual(lower);
+    expect(memory.table(lower, ["Up", "Off"], () => true)).toEqual(lower);
+    const found = memory.table(lower, states, () => true);
+    expect(found).toMatchObject({ ...lower, unit: "day" });
+    expect(found.accepted?.[0].key).toBe(JSON.stringify(["noExit", "Rates 2027", states]));
+    await memory.update(lower, (entry) => ({ ...entry, answers: { a: "b" } }), states, () => true);
+    expect(await kept.get()).toEqual({ version: 1, tables: [{ ...found, answers: { a: "b" } }] });
+  });
+
   it("takes in what another pane has written meanwhile", async () => {
     const kept = store();
     const [one, other] = [new Memory(kept), new Memory(kept)];

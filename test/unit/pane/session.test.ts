@@ -31,7 +31,7 @@ async function settled(): Promise<void> {
 
 async function started(sheets: Record<string, Typed[][]> = { Pump: PUMP }, hidden: string[] = []) {
   const workbook = new FakeWorkbook(sheets, hidden);
-  const session = new Session(workbook, { now: () => new Date(2026, 11, 1, 10), version: "1.0.0" });
+  const session = new Session(workbook, { now: () => new Date(2026, 11, 1, 10) });
   await session.start();
   await settled();
   const place = () => (session.state.subject ? placeText(session.state.subject.address) : null);
@@ -156,7 +156,7 @@ describe("what is kept with the table", () => {
     expect(session.state.looked?.questions).toEqual([]);
     expect(workbook.kept.get(MEMORY_KEY)).toEqual({
       version: 1,
-      tables: [{ sheet: "Pump", row: 1, column: 1, unit: "day", answers: { [question.code]: question.choices[0].answer } }],
+      tables: [{ sheet: "Pump", row: 1, column: 1, states: ["Running", "Degraded", "Repair"], unit: "day", answers: { [question.code]: question.choices[0].answer } }],
     });
     await session.forgetAnswers();
     expect(session.state.looked?.questions).toHaveLength(1);
@@ -180,6 +180,26 @@ describe("what is kept with the table", () => {
     expect(session.state.looked?.entry.accepted).toHaveLength(1);
     await session.takeBack(session.state.looked!.accepted[0]);
     expect(codes()).toContain(code);
+  });
+
+  it("follows a renamed sheet: unit, accepted findings and sign-off stay with the table", async () => {
+    const { workbook, session, select, open } = await started();
+    await select(cell("Pump", 2, 3));
+    await session.setUnit("day");
+    await session.accept(open("diagonalBlank"), "by habit", "AB");
+    await session.signOff("A. Berg");
+    workbook.rename("Pump", "Pump 2027");
+    await settled();
+    await select(cell("Pump 2027", 2, 3));
+    expect(session.state.looked?.entry).toMatchObject({ sheet: "Pump 2027", unit: "day", signOff: { checker: "A. Berg" } });
+    expect(session.state.looked?.accepted.map(({ finding }) => finding.code)).toEqual(["diagonalBlank"]);
+  });
+
+  it("suggests the unit that the labels above the table speak of", async () => {
+    const { session, select } = await started();
+    await select(cell("Pump", 2, 3));
+    await session.openUnit();
+    expect(session.state.opened).toEqual({ kind: "unit", suggestion: "day" });
   });
 
   it("signs off, and lists the arrows that differ afterwards", async () => {
