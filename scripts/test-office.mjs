@@ -1,6 +1,7 @@
 /**
  * `npm run test:office`: saves workbooks as .xlsx, has LibreOffice read them without a window, and compares what it
- * shows with what the practice workbook shows. Installs LibreOffice Calc from Debian when it is absent and this is root.
+ * shows with what the practice workbook shows. LibreOffice works tables out anew, so the values that the file keeps
+ * for programs without the add-in are read by openpyxl. Installs both from Debian when they are absent and this is root.
  */
 import { spawnSync } from "node:child_process";
 import { existsSync, mkdtempSync, readdirSync, readFileSync, rmSync, writeFileSync } from "node:fs";
@@ -13,7 +14,17 @@ import { DIST, ROOT } from "./paths.mjs";
 /** Largest relative difference of two numbers that count as the same, where LibreOffice prints 15 digits; measured worst: 1.9e-13. */
 const TOLERANCE = 1e-12;
 
+const READER = `
+import json, sys, openpyxl
+from openpyxl.utils.datetime import to_excel
+book = openpyxl.load_workbook(sys.argv[1], data_only=True)
+def plain(value):
+    return value if value is None or isinstance(value, (bool, int, float, str)) else to_excel(value)
+print(json.dumps({sheet.title: [[plain(cell.value) for cell in row] for row in sheet.iter_rows()] for sheet in book}))
+`;
+
 const office = findOffice();
+const python = findReader();
 await buildIfStale();
 // A loader of the sources only: it listens nowhere and watches nothing.
 const loader = await createServer({ root: ROOT, configFile: false, appType: "custom", logLevel: "error", server: { middlewareMode: true, ws: false, watch: null }, optimizeDeps: { noDiscovery: true } });
@@ -38,15 +49,25 @@ function findOffice() {
       return name;
     }
   }
-  if (process.getuid?.() !== 0 || !existsSync("/usr/bin/apt-get")) {
-    throw new Error("This test needs LibreOffice Calc. Install it, so that the command soffice is there, and try again.");
-  }
-  console.log("LibreOffice is not here; installing Debian's package libreoffice-calc-nogui.");
-  const run = (/** @type {string[]} */ args) => spawnSync("apt-get", args, { stdio: ["ignore", "ignore", "inherit"], env: { ...process.env, DEBIAN_FRONTEND: "noninteractive" } }).status === 0;
-  if (!((run(["install", "-y", "--no-install-recommends", "libreoffice-calc-nogui"]) || (run(["update"]) && run(["install", "-y", "--no-install-recommends", "libreoffice-calc-nogui"]))))) {
-    throw new Error("Debian's package libreoffice-calc-nogui could not be installed.");
-  }
+  if (!install("libreoffice-calc-nogui")) throw new Error("This test needs LibreOffice Calc. Install it, so that the command soffice is there, and try again.");
   return "soffice";
+}
+
+/** @returns {string | null} */
+function findReader() {
+  const find = () => ["/usr/bin/python3", "python3", "python"].find((name) => spawnSync(name, ["-c", "import openpyxl"]).status === 0) ?? null;
+  const found = find() ?? (install("python3-openpyxl") ? find() : null);
+  if (!found) console.log("openpyxl is not here; the values kept in the files are not checked.");
+  return found;
+}
+
+/** @param {string} name of a Debian package */
+function install(name) {
+  if (process.getuid?.() !== 0 || !existsSync("/usr/bin/apt-get")) return false;
+  console.log(`Installing Debian's package ${name}.`);
+  const apt = (/** @type {string[]} */ ...args) => spawnSync("apt-get", args, { stdio: ["ignore", "ignore", "inherit"], env: { ...process.env, DEBIAN_FRONTEND: "noninteractive" } }).status === 0;
+  const get = () => apt("install", "-y", "--no-install-recommends", name);
+  return get() || (apt("update") && get());
 }
 
 /** @param {string} file @param {string} kind @param {string} to */
@@ -56,7 +77,7 @@ function convert(file, kind, to) {
   if (result.status !== 0) throw new Error(`LibreOffice could not convert ${file}: ${result.stderr || result.error?.message}`);
 }
 
-/** @param {{ name: string, bytes: Uint8Array, sheets: { name: string, rows: { value: number | string | boolean, text: string, formula: string | null }[][] }[] }} file */
+/** @param {{ name: string, bytes: Uint8Array, kept: boolean, sheets: { name: string, rows: { value: number | string | boolean, text: string, formula: string | null }[][] }[] }} file */
 async function check(file) {
   const source = path.join(folder, `${file.name}.xlsx`);
   writeFileSync(source, file.bytes);
@@ -90,6 +111,7 @@ async function check(file) {
       }),
     );
   }
+  if (file.kept) differences += checkKept(file, source);
   const back = path.join(folder, `${file.name}-back`);
   convert(source, "xlsx:Calc MS Excel 2007 XML", back);
   const again = await module.reopened(new Uint8Array(readFileSync(path.join(back, `${file.name}.xlsx`))));
@@ -99,6 +121,33 @@ async function check(file) {
     console.error(`${file.name}: after LibreOffice saved the file its sheets are ${again.sheets.join(", ")}.`);
   }
   console.log(`${file.name}: ${compared} cells agree or differ as listed, ${computed} of them filled by formulas; ${unknown} more are filled by the add-in's functions, which it does not know; worst relative difference ${worst.toExponential(1)}; saved again by LibreOffice it has ${again.formulas} formulas and ${Object.keys(again.store).length} kept entries.`);
+  return differences;
+}
+
+/**
+ * The values that the file keeps beside its formulas, read by a program that calculates nothing.
+ * @param {{ name: string, sheets: { name: string, rows: { value: number | string | boolean, formula: string | null }[][] }[] }} file
+ * @param {string} source
+ */
+function checkKept(file, source) {
+  if (!python) return 0;
+  const { stdout, stderr, status } = spawnSync(python, ["-c", READER, source], { encoding: "utf8", maxBuffer: 1e8 });
+  if (status !== 0) throw new Error(`openpyxl could not read ${file.name}: ${stderr}`);
+  const kept = JSON.parse(stdout);
+  let differences = 0;
+  let filled = 0;
+  for (const sheet of file.sheets) {
+    sheet.rows.forEach((row, r) =>
+      row.forEach(({ value, formula }, c) => {
+        if (formula !== null) filled++;
+        const theirs = kept[sheet.name]?.[r]?.[c] ?? "";
+        if (theirs === value) return;
+        differences++;
+        console.error(`${file.name}, ${sheet.name}, row ${r + 1}, column ${c + 1}: ours ${JSON.stringify(value)}, kept ${JSON.stringify(theirs)}`);
+      }),
+    );
+  }
+  console.log(`${file.name}: the file keeps the values of all ${filled} cells filled by formulas, bit for bit${differences ? `, but for ${differences}` : ""} (openpyxl).`);
   return differences;
 }
 

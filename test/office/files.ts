@@ -11,6 +11,8 @@ import { unzip, zip } from "../../src/host/practice/exchange/zip";
 export interface OfficeFile {
   readonly name: string;
   readonly bytes: Uint8Array;
+  /** The file keeps values beside its formulas. */
+  readonly kept: boolean;
   /** Values by sheet, row by row; "" is blank. Formulas of ordinary functions carry their text. */
   readonly sheets: readonly { readonly name: string; readonly rows: readonly (readonly Expected[])[] }[];
 }
@@ -30,8 +32,8 @@ export async function officeFiles(dist: string): Promise<OfficeFile[]> {
   demo.store.set("ctmc.audit", { version: 1, unit: "day" });
   const ordinary = Book.fromJSON(ordinaryFile());
   return [
-    { name: "demo", bytes: await saveXlsx(demo), sheets: expected(demo) },
-    { name: "ordinary", bytes: await withoutValues(await saveXlsx(ordinary)), sheets: expected(ordinary) },
+    { name: "demo", bytes: await saveXlsx(demo), kept: true, sheets: expected(demo) },
+    { name: "ordinary", bytes: await withoutValues(await saveXlsx(ordinary)), kept: false, sheets: expected(ordinary) },
   ];
 }
 

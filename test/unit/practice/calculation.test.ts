@@ -31,6 +31,23 @@ describe("following", () => {
     expect(book.view("s1", 0, 0).value).toBe(length);
   });
 
+  test("a range of very many formulas, all still to be worked out", () => {
+    const length = 150_000;
+    const book = new Book();
+    const edits: Edit[] = Array.from({ length }, (_, row) => ({ kind: "put", sheet: "s1", row, column: 1, value: "=1" }));
+    book.apply([{ kind: "put", sheet: "s1", row: 0, column: 0, value: `=SUM(B1:B${length})+SUM(B:B)` }, ...edits], "Fill");
+    expect(book.view("s1", 0, 0).value).toBe(2 * length);
+  });
+
+  test("a change of formats alone works nothing out again", () => {
+    const { book } = sheet({ A1: "1", B1: "=A1+1" });
+    let cells = -1;
+    book.on("change", (event) => (cells = event.cells.get("s1")?.size ?? 0));
+    book.apply([{ kind: "format", area: { sheet: "s1", row: 0, column: 0, rows: 1, columns: 1 }, format: "0.0" }], "Format");
+    expect(cells).toBe(1);
+    expect(book.view("s1", 0, 0).text).toBe("1.0");
+  });
+
   test("ranges, whole columns and other sheets are followed", () => {
     const { book, value } = sheet({ A1: "1", A2: "2", C1: "=SUM(A:A)", C2: "=SUM(A1:A3)" });
     const [second] = book.apply([{ kind: "addSheet", name: "My plan" }], "Add").addedSheets;

@@ -17,6 +17,8 @@ describe("typing", () => {
     [CANONICAL, "1,234.50", 1234.5, "#,##0.00"],
     [CANONICAL, "1.5e-3", 0.0015, "0.0E+00"],
     [CANONICAL, "1E400", "1E400", null],
+    [CANONICAL, "9007199254740991", 9007199254740991, null],
+    [CANONICAL, "123456789012345678", "123456789012345678", null],
     [CANONICAL, "2026-03-01", 46082, "yyyy-mm-dd"],
     [CANONICAL, "3/1/2026", 46082, "mm/dd/yyyy"],
     [CANONICAL, "2026-03-01 06:00", 46082.25, "yyyy-mm-dd hh:mm"],

@@ -274,7 +274,13 @@ export class Book {
     const layout = change.order !== null || change.properties.size > 0;
     if (change.order || renamed) this.calculation.restart();
     else {
-      change.cells.forEach((entries, sheet) => entries.forEach((_, key) => this.calculation.contentChanged(sheet, rowOf(key), columnOf(key))));
+      change.cells.forEach((entries, sheet) =>
+        entries.forEach(({ before = EMPTY, after = EMPTY }, key) => {
+          // Formats alone change what is drawn, not what follows.
+          if (before.value === after.value && before.formula === after.formula) this.calculation.note(sheet, key);
+          else this.calculation.contentChanged(sheet, rowOf(key), columnOf(key));
+        }),
+      );
       change.properties.forEach((entry, sheet) => {
         for (const rect of [...entry.before.merged, ...entry.after.merged]) this.calculation.areaChanged({ sheet: sheet.id, ...rect });
       });

@@ -219,7 +219,7 @@ export class Calculation {
   private giveWay(to: readonly FormulaCell[], stack: FormulaCell[]): void {
     const met = to.find((cell) => cell.waiting);
     if (!met) {
-      stack.push(...to);
+      for (const cell of to) stack.push(cell);
       return;
     }
     const open = stack.slice(stack.lastIndexOf(met)).filter((cell) => cell.waiting && cell.marked);
@@ -239,25 +239,23 @@ export class Calculation {
     const found = new Set<FormulaCell>();
     for (const area of cell.reads) {
       const sheet = this.around.sheetById(area.sheet);
-      if (sheet) for (const entry of this.markedWithin(sheet, area)) found.add(entry);
+      if (sheet) this.collectMarked(sheet, area, found);
     }
     return [...found];
   }
 
-  private markedWithin(sheet: Sheet, area: Rect): FormulaCell[] {
-    const found: FormulaCell[] = [];
+  private collectMarked(sheet: Sheet, area: Rect, found: Set<FormulaCell>): void {
     if (area.rows * area.columns > this.marks.size) {
-      for (const cell of this.marks) if (cell.sheet === sheet && overlap(cell.extent, area)) found.push(cell);
-      return found;
+      for (const cell of this.marks) if (cell.sheet === sheet && overlap(cell.extent, area)) found.add(cell);
+      return;
     }
     for (let column = area.column; column < area.column + area.columns; column++) {
       for (let row = area.row; row < area.row + area.rows; row++) {
         const key = keyOf(row, column);
         const cell = sheet.formulas.get(key) ?? sheet.spilled.get(key)?.owner;
-        if (cell?.marked && !found.includes(cell)) found.push(cell);
+        if (cell?.marked) found.add(cell);
       }
     }
-    return found;
   }
 
   private evaluate(cell: FormulaCell): Scalar | Grid {
@@ -299,8 +297,9 @@ export class Calculation {
       grid: (area) => {
         const sheet = sheetOf(area.sheet);
         noteRead(area);
-        const marked = this.markedWithin(sheet, area);
-        if (marked.length > 0) throw new GiveWay(marked);
+        const marked = new Set<FormulaCell>();
+        this.collectMarked(sheet, area, marked);
+        if (marked.size > 0) throw new GiveWay([...marked]);
         return readGrid(sheet, area);
       },
       spill: (id, row, column) => {
@@ -412,7 +411,8 @@ export class Calculation {
     if (area) this.watchers.add(area, cell);
   }
 
-  private note(sheet: Sheet, key: number): void {
+  /** Takes note that a cell looks different, for those who draw it. */
+  note(sheet: Sheet, key: number): void {
     const keys = this.changes.get(sheet.id);
     if (keys) keys.add(key);
     else this.changes.set(sheet.id, new Set([key]));

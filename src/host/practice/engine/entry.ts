@@ -52,6 +52,8 @@ function readNumber(text: string, locale: Locale): Quantity | null {
   // A percent sign moves the decimal point of the text itself, so that 12% is the double nearest to 0.12.
   const result = Number(`${sign}${whole || "0"}.${decimals || "0"}e${Number(exponent ?? 0) - (percent === undefined ? 0 : 2)}`);
   if (!Number.isFinite(result)) return null;
+  // A whole number that no cell holds exactly, such as a long serial number, stays text, so that no digit is lost.
+  if (decimals === "" && exponent === undefined && percent === undefined && !Number.isSafeInteger(result)) return null;
   const fraction = decimals === "" ? "" : `.${"0".repeat(decimals.length)}`;
   const format = percent !== undefined ? `0${fraction}%` : exponent !== undefined ? `0${fraction}E+00` : split.grouped ? `#,##0${fraction}` : null;
   return { value: result, format };

@@ -129,7 +129,7 @@ function clipBlock(clip: Clip): Block {
 function textBlock(book: Book, fields: readonly (readonly string[])[]): Block {
   return {
     rows: fields.length,
-    columns: Math.max(...fields.map((line) => line.length)),
+    columns: fields.reduce((most, line) => Math.max(most, line.length), 1),
     content: (row, column, _atRow, _atColumn, before) => {
       const entry = readEntry(fields[row]![column] ?? "", book.locale);
       const format = entry.format !== null && before.format === "General" ? entry.format : before.format;
@@ -198,7 +198,7 @@ function evenStep(pattern: readonly Content[]): number | null {
   if (pattern.length < 2 || pattern.some((content) => content.formula !== null || typeof content.value !== "number")) return null;
   const values = pattern.map((content) => content.value as number);
   const step = values[1]! - values[0]!;
-  const scale = Math.max(...values.map(Math.abs));
+  const scale = values.reduce((most, value) => Math.max(most, Math.abs(value)), 0);
   return values.every((value, index) => index === 0 || Math.abs(value - values[index - 1]! - step) <= 1e-12 * scale) ? step : null;
 }
 

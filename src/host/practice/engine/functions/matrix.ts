@@ -11,7 +11,7 @@ export function product(left: readonly (readonly number[])[], right: readonly (r
 export function invert(matrix: readonly (readonly number[])[]): { inverse: number[][] | null; determinant: number } {
   const size = matrix.length;
   const rows = matrix.map((row, at) => [...row, ...row.map((_, column) => (column === at ? 1 : 0))]);
-  const scale = Math.max(...matrix.flat().map(Math.abs));
+  const scale = matrix.reduce((most, row) => row.reduce((least, entry) => Math.max(least, Math.abs(entry)), most), 0);
   let determinant = 1;
   for (let step = 0; step < size; step++) {
     let pivot = step;
