@@ -14,6 +14,7 @@ import { commonCause } from "./rules/common-cause";
 import { competingExits } from "./rules/competing-exits";
 import { cycleLength } from "./rules/cycle-length";
 import { diagonalBlank } from "./rules/diagonal-blank";
+import { shownAsZero } from "./rules/display";
 import { hidden } from "./rules/hidden";
 import { horizon } from "./rules/horizon";
 import { largestArrow } from "./rules/largest-arrow";
@@ -57,6 +58,7 @@ const RULES: readonly Rule[] = [
   pastedConstants,
   diagonalBlank,
   blanks,
+  shownAsZero,
   commonCause,
   longRun,
   zeroEvents,
@@ -173,7 +175,12 @@ function whereaboutsOf(span: Span, layout: Layout | null): Whereabouts | undefin
   if (!layout || layout.form === "list") return linesOf(span);
   const row = span.row - layout.body.row;
   const column = span.column - layout.body.column;
-  if (row < 0 || column < 0 || row >= layout.size || column >= layout.size) return linesOf(span);
+  const inRows = row >= 0 && row < layout.size;
+  const inColumns = column >= 0 && column < layout.size;
+  const single = span.rows === 1 && span.columns === 1;
+  if (single && column === -1 && inRows) return { heading: true, row: row + 1 };
+  if (single && row === -1 && inColumns) return { heading: true, column: column + 1 };
+  if (!inRows || !inColumns) return linesOf(span);
   const name = (state: number): string | undefined => layout.names?.[state];
   return {
     ...(span.rows === 1 ? { row: row + 1, rowName: name(row) } : {}),

@@ -18,6 +18,8 @@ export interface Whereabouts {
   readonly columnName?: string;
   /** True where row and column count the lines of the given range, headings included. */
   readonly inRange?: boolean;
+  /** True for the heading of that row or column. */
+  readonly heading?: boolean;
 }
 
 /** A finding is data: the sentence catalogue in `cells/sentences` words it, the pane offers its remedy. */

@@ -43,7 +43,7 @@ function whereOf({ where }: Finding): string {
     where.column === undefined ? "" : `column ${where.column}${name(where.columnName)}`,
   ].filter((line) => line !== "");
   if (lines.length === 0) return "table";
-  return lines.join(", ") + (where.inRange ? " of the range" : "");
+  return (where.heading ? "heading of " : "") + lines.join(", ") + (where.inRange ? " of the range" : "");
 }
 
 /** A finding's details as the sentences need them. */
@@ -292,6 +292,10 @@ const WORDS: Readonly<Record<string, Words>> = {
   blanksAmongZeros: {
     finding: (f) => `${plural(f.number("blanks"), "blank cell")} beside ${plural(f.number("said"), "typed zero or dash", "typed zeros or dashes")}: no arrow, or not known?`,
     remedy: () => "Blank counts as no arrow. Type 0 where that is meant.",
+  },
+  shownAsZero: {
+    finding: (f) => `${plural(f.number("rates"), "rate")} ${f.number("rates") === 1 ? "is" : "are"} shown as 0 and ${f.number("rates") === 1 ? "is" : "are"} not.`,
+    remedy: () => "Show more digits, or a scientific format.",
   },
   hiddenLines: {
     finding: (f) => `${listed([f.number("rows") > 0 ? plural(f.number("rows"), "row") : "", f.number("columns") > 0 ? plural(f.number("columns"), "column") : ""].filter(Boolean))} of the range ${f.number("rows") + f.number("columns") === 1 ? "is" : "are"} hidden or filtered out, and read all the same.`,

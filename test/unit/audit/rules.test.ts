@@ -150,6 +150,12 @@ describe("mistakes 23 to 26: seen on the sheet only", () => {
     expect(findingOf(headed("", three, [[null, 0.02, null], [0.5, null, null], [1, null, null]]), "blanksAmongZeros", { facts: {} })).toBeUndefined();
     expect(findingOf(table, "blanksAmongZeros")).toBeUndefined();
   });
+  it("notes a rate that is shown as 0", () => {
+    const small = headed("", three, [[null, 0.0004, 0.01], [0.5, null, 0], [1, 0, null]]);
+    const texts = small.map((row) => row.map((value) => (typeof value === "number" ? value.toFixed(2) : "")));
+    expect(findingOf(small, "shownAsZero", { facts: { texts } })).toMatchObject({ severity: "note", span: { row: 1, column: 2 }, details: { rates: 1 } });
+    expect(findingOf(small, "shownAsZero", { facts: { texts: small.map((row) => row.map(String)) } })).toBeUndefined();
+  });
   it("warns of hidden rows and columns inside, not outside", () => {
     expect(findingOf(table, "hiddenLines", { facts: { hiddenRows: [2], hiddenColumns: [] } })).toMatchObject({ severity: "warning", span: { row: 2 } });
     expect(complaints(table, { facts: { hiddenRows: [7], hiddenColumns: [-1, 4] } })).toEqual([]);

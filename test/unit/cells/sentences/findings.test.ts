@@ -75,6 +75,8 @@ describe("sentences", () => {
   it("say where in states, or in lines of the range", () => {
     const cells = headed("", ["Running", "Failed"], [[null, -1], [2, null]]);
     expect(findingTexts(audit(cells)[0]).where).toBe("row 1 (Running), column 2 (Failed)");
+    const differ: Cells = [["", "A", "B"], ["A", 0, 1], ["C", 2, 0]];
+    expect(findingTexts(audit(differ)[0]).where).toBe("heading of row 2");
     const list: Cells = [["A", "B", 1], ["A", "B", 2]];
     expect(findingTexts(audit(list)[0]).where).toBe("row 2 of the range");
   });
