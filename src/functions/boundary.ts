@@ -164,7 +164,15 @@ function argumentOf(given: unknown): Argument {
   if (given === null || given === undefined || isInvocation(given)) return null;
   if (!Array.isArray(given)) return [[cellOf(given)]];
   if (!Array.isArray(given[0])) return [given.map(cellOf)];
-  return (given as unknown[][]).map((row) => row.map(cellOf));
+  let last: CellValue[] = [];
+  return (given as unknown[][]).map((row) => (isRepeated(row, last) ? last : (last = row.map(cellOf))));
+}
+
+/** Whole columns end in a million blank rows: equal ones of those share one array, which the digest takes at a stride. */
+function isRepeated(row: readonly unknown[], last: readonly CellValue[]): boolean {
+  if (row.length !== last.length || (last[0] !== "" && last[0] !== 0)) return false;
+  for (let k = 0; k < row.length; k++) if (last[k] !== last[0] || (row[k] ?? "") !== last[0]) return false;
+  return true;
 }
 
 function cellOf(value: unknown): CellValue {

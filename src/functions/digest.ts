@@ -39,7 +39,10 @@ class Hash {
       return;
     }
     this.word(0x5a11 + cells.length);
-    for (const row of cells) {
+    for (let i = 0; i < cells.length; i++) {
+      const row = cells[i];
+      if (i > 0 && row === cells[i - 1]) continue; // the same array again: rows before and after tell how often
+      this.word(i);
       this.word(0x7000 + row.length);
       for (const cell of row) this.cell(cell);
     }
@@ -76,7 +79,11 @@ export function sameArguments(left: readonly Argument[], right: readonly Argumen
 function sameCells(left: Argument, right: Argument): boolean {
   if (left === right) return true;
   if (left === null || right === null || left.length !== right.length) return false;
-  return left.every((row, i) => row.length === right[i].length && row.every((cell, j) => sameCell(cell, right[i][j])));
+  return left.every((row, i) => {
+    const other = right[i];
+    if (i > 0 && row === left[i - 1] && other === right[i - 1]) return true;
+    return row.length === other.length && row.every((cell, j) => sameCell(cell, other[j]));
+  });
 }
 
 function sameCell(left: CellValue, right: CellValue): boolean {
@@ -87,8 +94,12 @@ function sameCell(left: CellValue, right: CellValue): boolean {
 /** Rough size of cells in memory, for the bound of the cache. */
 export function bytesOf(cells: readonly (readonly unknown[])[] | null): number {
   let bytes = 64;
+  let last: readonly unknown[] | null = null;
   for (const row of cells ?? []) {
-    bytes += 32;
+    bytes += 8;
+    if (row === last) continue;
+    last = row;
+    bytes += 24;
     for (const cell of row) bytes += typeof cell === "string" ? 24 + 2 * cell.length : 12;
   }
   return bytes;
