@@ -32,7 +32,8 @@ export interface QuasiStationary {
  * Math. 17 (1971) 382–386), every step an elimination with leak: with v > 0 from (M − σI)v = u, the scaled matrix
  * V⁻¹(M − σI)V has the row sums u/v ≥ 0, which is what the elimination needs instead of a diagonal (Alfa, Xue & Ye 2002). Bounds
  * min u/v and max u/v (Collatz & Wielandt) end it.
- * *Cost*: some 5 to 10 eliminations a class. *Accuracy*: 3e-15 against sines, `test/unit/chain/quasi-stationary.test.ts`.
+ * *Cost*: some 5 to 10 eliminations a class. *Accuracy*: 3e-15, `test/reference/sensitivity.test.ts` and sines in
+ * `test/unit/chain/quasi-stationary.test.ts`.
  *
  * @example quasiStationary(Generator.fromArrows(2, [[0, 1, 0.25]]), Uint8Array.of(0, 1)) // { shares: [1, 0], decayRate: 0.25 }
  */

@@ -1,5 +1,6 @@
 import { describe, expect, test } from "vitest";
 import { Generator, type Arrow } from "../../../src/chain/generator";
+import { stationaryShares } from "../../../src/chain/stationary";
 import { finish } from "../../../src/chain/steps";
 import { subchain } from "../../../src/chain/subchain";
 import { eliminateDense } from "../../../src/numerics/dense-elimination";
@@ -87,6 +88,18 @@ describe("shares beyond the double range", () => {
     });
     expect(Math.abs(shares[0] / shares[600] - 1)).toBeLessThan(1e-12);
     expect(shares[300]).toBe(0);
+  });
+});
+
+describe("shares of a full table with a valley beyond the double range", () => {
+  test("as in a sparse one", () => {
+    const n = 161; // below the size from which sparse elimination is tried
+    const arrows: Arrow[] = [];
+    for (let i = 0; i + 1 < n; i++) arrows.push([i, i + 1, i < 80 ? 1 : 1e5], [i + 1, i, i < 80 ? 1e5 : 1]);
+    const shares = stationaryShares(Generator.fromArrows(n, arrows));
+    expect(Math.abs(shares[0] / shares[n - 1] - 1)).toBeLessThan(1e-12);
+    expect(shares[80]).toBe(0); // 1e-400
+    expect(Math.abs(shares.reduce((a, b) => a + b, 0) - 1)).toBeLessThan(1e-14);
   });
 });
 
