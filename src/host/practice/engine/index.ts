@@ -1,5 +1,5 @@
 /** The engine of the practice workbook, as its page and its file exchange use it. */
-export { areaText, cellText, columnFromText, columnText, COLUMN_LIMIT, columnOf, keyOf, parseArea, quoteSheet, ROW_LIMIT, rowOf, type Area, type Rect } from "./address";
+export { areaText, cellText, columnFromText, columnText, COLUMN_LIMIT, columnOf, keyOf, parseArea, quoteSheet, ROW_LIMIT, rowOf, splitSheet, type Area, type Rect } from "./address";
 export { Book, DEFAULT_WIDTH, type BookOptions, type CellsChanged, type CellView, type SheetView } from "./book";
 export { functionList, type FunctionHelp } from "./completion";
 export { CustomFunctionHost, type Conventions, type FunctionMetadata, type FunctionsFile } from "./custom-functions";

@@ -1,6 +1,7 @@
 /** An .xlsx file as a workbook record. The file is judged before the library sees it; the open workbook is not touched. */
 import type { CellObject, WorkBook, WorkSheet } from "@e965/xlsx";
 import { DEFAULT_WIDTH, FILE_VERSION, isDateFormat, parseArea, sheetNameProblem, type BookFile, type CellRecord, type ContentRecord, type Rect, type SheetRecord } from "../engine";
+import { markOldReading } from "./old-formulas";
 import { ExchangeRefused } from "./refused";
 import { fromFileSpelling } from "./spelling";
 import { boldStyles, cellsWithStyles } from "./styles-part";
@@ -138,7 +139,10 @@ function cellRecord(row: number, column: number, content: ContentRecord, format:
 }
 
 function contentOf(cell: CellObject, row: number, column: number, fromOldCalendar: boolean): ContentRecord {
-  if (typeof cell.f === "string" && cell.f !== "") return `=${fromFileSpelling(cell.f).slice(1)}`;
+  if (typeof cell.f === "string" && cell.f !== "") {
+    const formula = fromFileSpelling(cell.f);
+    return cell.F === undefined ? markOldReading(formula) : formula;
+  }
   if (typeof cell.F === "string" && !isHead(cell.F, row, column)) return null; // filled by another cell's formula
   switch (cell.t) {
     case "n": return typeof cell.v === "number" && Number.isFinite(cell.v) ? cell.v + (fromOldCalendar ? FROM_1904 : 0) : null;

@@ -2,6 +2,7 @@ import { describe, expect, test } from "vitest";
 import { Book, CustomFunctionHost, type BookFile, type Edit } from "../../../../src/host/practice/engine";
 import { ExchangeRefused, openXlsx, saveXlsx } from "../../../../src/host/practice/exchange";
 import { fromFileSpelling, toFileSpelling } from "../../../../src/host/practice/exchange/spelling";
+import { markOldReading } from "../../../../src/host/practice/exchange/old-formulas";
 import { mayUseArrays } from "../../../../src/host/practice/exchange/array-use";
 import { unzip } from "../../../../src/host/practice/exchange/zip";
 import { place } from "../formulas.helper";
@@ -115,6 +116,28 @@ test("formulas are marked as able to spill when they work on tables", () => {
   for (const formula of ["=A1+1", "=SUM(A1:A3)", "=SUM(A1:A3)/COUNT(A1:A3)", "=IF(SUM(A1:A3)>0,A1,B1)", "=ROUND(AVERAGE(A:A),2)", "=TODAY()+1", '="a"&B1']) {
     expect(mayUseArrays(formula), formula).toBe(false);
   }
+});
+
+describe("formulas not marked as able to spill are read the old way", () => {
+  test.each([
+    ["=A1:A9*2", "=@A1:A9*2"],
+    ["=A:A", "=@A:A"],
+    ["=SUM(A1:A9)", "=SUM(A1:A9)"],
+    ["=SUM(A1:A9*B1:B9)", "=SUM(@A1:A9*@B1:B9)"],
+    ["=SUMPRODUCT(A1:A9*(B1:B9>0))", "=SUMPRODUCT(A1:A9*(B1:B9>0))"],
+    ["=IF('My plan'!A1:A9>0,1,-B1:B9)", "=IF(@'My plan'!A1:A9>0,1,-@B1:B9)"],
+    ["=INDEX(A1:B9,2,1)&\"A1:A9\"", "=INDEX(A1:B9,2,1)&\"A1:A9\""],
+    ["=CTMC.AVAILABILITY(B3:F7*24,A1:A2)", "=CTMC.AVAILABILITY(B3:F7*24,A1:A2)"],
+    ["=VLOOKUP(A1,B1:C9,2,FALSE)", "=VLOOKUP(A1,B1:C9,2,FALSE)"],
+    ["=VLOOKUP(A1:A9,B1:C9,2,FALSE)", "=VLOOKUP(@A1:A9,B1:C9,2,FALSE)"],
+    ["=1+(", "=1+("],
+  ])("%s", (written, read) => expect(markOldReading(written)).toBe(read));
+
+  test("what is saved from here comes back unmarked", () => {
+    for (const formula of ["=SUM(A1:A9)", "=ROUND(AVERAGE(A1:A9),2)", "=IF(SUM(A1:A3)>0,A1,B1)", "=COUNTIF(A1:A9,\">1\")", "=A1+1"]) {
+      expect(mayUseArrays(formula) || markOldReading(formula) === formula, formula).toBe(true);
+    }
+  });
 });
 
 test("a text longer than files keep is refused with its place", async () => {
