@@ -77,9 +77,8 @@ export function tableCard(session: Session, { address, hidden, size, arrows, sto
     "li",
     { key: place, class: stop ? "sr-card sr-edge-stop" : "sr-card", "data-table": place },
     h("div", { class: "sr-card-head" }, h("span", null, h("strong", null, address.sheet), hidden ? " (hidden sheet)" : ""), jump(session, address)),
-    facts !== "" && h("p", { class: "sr-soft" }, facts),
     stop && h("p", null, severityMark("stop"), ` ${findingTexts(stop).finding}`),
-    h("div", { class: "sr-words" }, word("Check it", () => void session.lookAt(address), { "aria-label": `Check ${place}` })),
+    h("div", { class: "sr-card-head" }, h("span", { class: "sr-soft" }, facts), word("Check it", () => void session.lookAt(address), { "aria-label": `Check ${place}` })),
   );
 }
 

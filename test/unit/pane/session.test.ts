@@ -2,7 +2,7 @@ import { afterEach, beforeEach, describe, expect, it, vi } from "vitest";
 import { cellText, placeText } from "../../../src/pane/address";
 import { MEMORY_KEY } from "../../../src/pane/memory";
 import { Session } from "../../../src/pane/session";
-import type { RangeAddress } from "../../../src/pane/workbook";
+import type { RangeAddress, SharedWorkbook } from "../../../src/pane/workbook";
 import { FakeWorkbook, type Typed } from "../../support/fake-workbook";
 
 /** A pump station of our own: a title above, a note beside, results below the table. */
@@ -295,6 +295,47 @@ describe("remedies", () => {
     expect(place()).not.toBe(before);
     await session.undo();
     expect(place()).toBe(before);
+  });
+});
+
+describe("life with people who have no add-in", () => {
+  it("relinks, freezes and puts back, and repeats what the host refuses", async () => {
+    const { workbook, session } = await started();
+    const place = { sheet: "Plan", row: 3, column: 1, formula: "=CTMC.STATIONARY(B2:E5)" };
+    let frozen: { sheet: string; row: number; column: number; formula: string; rows: number; columns: number; date: string; fingerprint: null }[] = [];
+    let unlinked = [place];
+    const shared: SharedWorkbook = {
+      calculation: async () => "manual",
+      recalculate: async () => undefined,
+      unlinked: async () => unlinked,
+      relink: async () => {
+        unlinked = [];
+        return { done: 1, refused: ["The sheet Old is protected; 2 formulas there stay as they are."] };
+      },
+      frozen: async () => frozen,
+      freeze: async (now) => {
+        frozen = [{ ...place, rows: 1, columns: 3, date: now.toISOString(), fingerprint: null }];
+        return { done: 1, refused: [], sheet: "Frozen formulas" };
+      },
+      thaw: async () => {
+        frozen = [];
+        return { done: 1, refused: [] };
+      },
+    };
+    Object.assign(workbook, { shared });
+    session.show("book");
+    await settled();
+    expect(session.state.sharing).toEqual({ calculation: "manual", unlinked: [place], frozen: [] });
+    await session.share("relink");
+    expect(session.state.notice?.text).toBe("1 formula relinked. The sheet Old is protected; 2 formulas there stay as they are.");
+    expect(session.state.sharing?.unlinked).toEqual([]);
+    await session.share("freeze");
+    expect(session.state.notice?.text).toBe("1 formula frozen. They are listed on the sheet Frozen formulas.");
+    expect(session.state.sharing?.frozen).toHaveLength(1);
+    await session.share("thaw");
+    expect(session.state.sharing?.frozen).toEqual([]);
+    await session.share("recalculate");
+    expect(session.state.notice?.text).toBe("Recalculated.");
   });
 });
 
