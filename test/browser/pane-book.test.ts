@@ -74,9 +74,9 @@ describe("the pane looks through the workbook", () => {
     await sheet.pasteText(
       ["from\tRunning\tDegraded\tWaiting\tRepair\tOverhaul", "Running\t\t0.02\t0.004\t\t0.0027", "Degraded\t0.1\t\t0.02", "Waiting\t\t\t\t0.5", "Repair\t0.25", "Overhaul\t0.07"].join("\n"),
     );
-    const pair = pane.root.locator("section", { hasText: "Alike, but different" });
-    await pair.waitFor();
-    expect(await pair.innerText()).toContain("Degraded → Waiting: was 0.015 per time unit, now 0.02 per time unit");
+    const pair = pane.root.locator('[data-pair="Chiller rates A4:F9 | Sheet A1:F6"]');
+    await pair.locator("summary").click();
+    expect(await pair.locator("ul").innerText()).toBe("Degraded → Waiting: was 0.015 per time unit, now 0.02 per time unit");
     await closed(open);
   });
 

@@ -1,4 +1,4 @@
-import type { BookFinding, BookFormula, BookScan, BookTable } from "../../audit/book";
+import type { BookFinding, BookFormula, BookPair, BookScan, BookTable } from "../../audit/book";
 import { shortText } from "../../cells/sentences/book";
 import { findingTexts } from "../../cells/sentences/findings";
 import { cellText, placeText } from "../address";
@@ -93,14 +93,19 @@ function formulaFinding(session: Session, { sheet, finding }: BookFinding, at: n
   );
 }
 
-function pairCard(session: Session, scan: BookScan, { a, b, rows }: BookScan["pairs"][number], at: number): VElement {
+function pairCard(session: Session, scan: BookScan, { a, b, rows }: BookPair, at: number): VElement {
   const [before, after] = [scan.tables[a], scan.tables[b]];
   return h(
     "li",
-    { key: `${a}-${b}`, class: "sr-card" },
+    { key: `${a}-${b}`, class: "sr-card", "data-pair": `${placeText(before.address)} | ${placeText(after.address)}` },
     h("p", null, "First ", jump(session, before.address, true)),
     h("p", null, "then ", jump(session, after.address, true)),
-    h("ul", { class: "sr-changes" }, ...inParts(session, `pair-${at}`, rows, SHOWN_ROWS, (row) => h("li", null, changeWords(row, "")))),
+    h(
+      "details",
+      { key: "rows" },
+      h("summary", null, rows.length === 1 ? "1 difference" : `${rows.length} differences`),
+      h("ul", { class: "sr-changes" }, ...inParts(session, `pair-${at}`, rows, SHOWN_ROWS, (row) => h("li", null, changeWords(row, "")))),
+    ),
   );
 }
 
