@@ -4,7 +4,7 @@ import { effectiveCosts, type JumpCosts } from "./cost";
 import { certainty } from "./absorption";
 import type { Generator } from "./generator";
 import { Problem } from "./problem";
-import { classShares, classWeights } from "./stationary";
+import { classShares, classWeights, needOneClosedClass } from "./stationary";
 import { finish, type Steps } from "./steps";
 import { eliminated, membersOf, subchain, type Subchain } from "./subchain";
 
@@ -115,10 +115,7 @@ function* rewardDerivatives(
   const jumpReward = (from: number, to: number): number => (jumpRewards ? jumpRewards[from * n + to] : 0);
   const classes = communicatingClasses(generator);
   const several = classes.closed.filter(Boolean).length > 1;
-  if (several && !start) {
-    const closed = classes.classes.filter((_, c) => classes.closed[c]).map((members) => Array.from(members));
-    throw new Problem("severalClosedClasses", { classes: closed }, "noAnswer");
-  }
+  if (!start) needOneClosedClass(classes);
   const weights = yield* classWeights(generator, start ?? new Float64Array(n), classes);
   const rates = new Float64Array(weights.length);
   const derivatives = new Float64Array(generator.arrowCount);

@@ -4,7 +4,7 @@ import { communicatingClasses, type StateSet } from "./classes";
 import { Generator, type Arrow } from "./generator";
 import { checkTimes } from "./horizon";
 import { Problem } from "./problem";
-import { classShares, classWeights } from "./stationary";
+import { classShares, classWeights, needOneClosedClass } from "./stationary";
 import { finish, type Steps } from "./steps";
 import { eliminated, membersOf, subchain } from "./subchain";
 
@@ -98,11 +98,7 @@ function* longRunShare(
   const present = generator.rateOf(from, to);
   const chain = present > 0 ? generator : withRate(generator, from, to, 1);
   const classes = communicatingClasses(chain);
-  const closedCount = classes.closed.filter(Boolean).length;
-  if (closedCount > 1 && !start) {
-    const closed = classes.classes.filter((_, c) => classes.closed[c]).map((members) => Array.from(members));
-    throw new Problem("severalClosedClasses", { classes: closed }, "noAnswer");
-  }
+  if (!start) needOneClosedClass(classes);
   const begin = start ?? Float64Array.from(up, (_, i) => (i === 0 ? 1 : 0));
   const recurrent = classes.closed[classes.classOf[from]] ? classes.classOf[from] : -1;
   const share: RationalShare =

@@ -73,9 +73,14 @@ export function* classWeights(generator: Generator, start: Float64Array, classes
   return weights;
 }
 
-function onlyClosedClass(classes: Classes): Float64Array {
+/** Refuses a long run that depends on a start which is not given. @throws `severalClosedClasses` (no answer) */
+export function needOneClosedClass(classes: Classes): void {
   const closed = classes.classes.filter((_, c) => classes.closed[c]);
   if (closed.length > 1)
     throw new Problem("severalClosedClasses", { classes: closed.map((members) => Array.from(members)) }, "noAnswer");
+}
+
+function onlyClosedClass(classes: Classes): Float64Array {
+  needOneClosedClass(classes);
   return Float64Array.from(classes.closed, (isClosed) => (isClosed ? 1 : 0));
 }

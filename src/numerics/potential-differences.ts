@@ -10,7 +10,7 @@ import type { LeakSystem, Pausable } from "./leak-system";
  * gain less loss after them is rounding: errors of 1e-7 to 1 on the battery, against 1e-15 to 1e-13 this way.
  *
  * *Method*: our own; the potential by state reduction is in Sonin & Thornton, SIAM J. Matrix Anal. Appl. 23 (2001) 209–224.
- * *Cost*: two dense eliminations, 2n²  numbers. *Accuracy*: `test/reference/battery-elasticity.test.ts`.
+ * *Cost*: two dense eliminations, 2n² numbers. *Accuracy*: `test/reference/battery-elasticity.test.ts`.
  */
 export function* potentialDifferences(
   system: LeakSystem, weight: Float64Array, gain: Float64Array, loss?: Float64Array,
