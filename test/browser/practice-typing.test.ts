@@ -204,6 +204,77 @@ describe("the practice workbook's sheet", () => {
     expect(await sheet.cell("K5").getAttribute("aria-label")).toBe("K5, 3, spilled from K3");
   });
 
+  it("says where a spilled value comes from when someone wants to clear it", async () => {
+    await sheet.go("K5");
+    await sheet.page.keyboard.press("Delete");
+    await sheet.says("K5 is filled by the formula in K3");
+    await sheet.shows("K5", "3");
+  });
+
+  it("sets column widths by dragging, double click and keys, and hides and shows rows", async () => {
+    const { page } = sheet;
+    await sheet.type("A20", "a text that is longer than its column");
+    await sheet.type("B20", "next");
+    const width = async (): Promise<number> => (await sheet.cell("A20").boundingBox())!.width;
+    const before = await width();
+    const head = (await page.getByRole("columnheader", { name: "A", exact: true }).boundingBox())!;
+    await page.mouse.move(head.x + head.width - 2, head.y + 10);
+    await page.mouse.down();
+    await page.mouse.move(head.x + head.width + 38, head.y + 10, { steps: 4 });
+    await page.mouse.up();
+    await page.waitForFunction((w) => document.getElementById("r19c0")!.getBoundingClientRect().width === w, before + 40);
+    await page.mouse.dblclick(head.x + head.width + 38, head.y + 10);
+    await page.waitForFunction((w) => document.getElementById("r19c0")!.getBoundingClientRect().width > w, before + 60);
+    const text = await sheet.cell("A20").locator("span").evaluate((span) => span.scrollWidth <= span.clientWidth);
+    expect(text).toBe(true);
+    await sheet.go("A20");
+    const fitted = await width();
+    await page.keyboard.press("Alt+Shift+ArrowLeft");
+    await page.waitForFunction((w) => document.getElementById("r19c0")!.getBoundingClientRect().width === w, fitted - 8);
+    await sheet.go("A21:A22");
+    await page.getByRole("button", { name: "Sheet", exact: true }).click();
+    await page.getByRole("menuitem", { name: "Hide rows" }).click();
+    await sheet.go("A20");
+    await page.keyboard.press("ArrowDown");
+    await sheet.isActive("A23");
+    await sheet.go("A20:A23");
+    await page.getByRole("button", { name: "Sheet", exact: true }).click();
+    await page.getByRole("menuitem", { name: "Show rows in the selection" }).click();
+    await sheet.go("A20");
+    await page.keyboard.press("ArrowDown");
+    await sheet.isActive("A21");
+  });
+
+  it("shows numbers in every named format, with more and fewer decimals, and never cuts one", async () => {
+    const { page } = sheet;
+    const choose = async (name: string): Promise<void> => {
+      await page.getByRole("button", { name: "Numbers" }).click();
+      await page.getByRole("menu").getByText(name, { exact: true }).click();
+    };
+    await sheet.type("C20", "46508.125");
+    await sheet.go("C20");
+    await choose("Fixed decimals");
+    await sheet.shows("C20", "46508.125");
+    await choose("Fewer decimals");
+    await sheet.shows("C20", /^46508\.1[23]$/);
+    await choose("Scientific");
+    await sheet.shows("C20", "4.65E+04");
+    await choose("More decimals");
+    await sheet.shows("C20", "4.651E+04");
+    await choose("Percent");
+    await sheet.shows("C20", "4650812.5%");
+    await choose("Date");
+    await sheet.shows("C20", "2027-05-01");
+    await choose("General");
+    await sheet.shows("C20", /^46508\.1/);
+    // Too narrow for any form: a sign that something is there, and the number for the ear.
+    await sheet.type("C20", "123456789012345");
+    await sheet.go("C20");
+    for (let i = 0; i < 8; i += 1) await page.keyboard.press("Alt+Shift+ArrowLeft");
+    await sheet.shows("C20", "…");
+    expect(await sheet.cell("C20").getAttribute("aria-label")).toBe("C20, 1.23457E+14");
+  });
+
   it("keeps any garbage as it was typed and never breaks", async () => {
     const { page } = sheet;
     const garbage = ["=", "=(", "=SUM(", "=A1:", "='x", '="', "={1,2;3}", "=1/0", "=#REF!", "=A5#", "=LET(x,", "=CTMC.", "=CTMC.TRANSITION(", `=${"(".repeat(300)}`, "@", "1e999", "-", "--1", "50%%", "=ZZZZ99999999", "=Nowhere!A1", "=M23", "a\tb"];

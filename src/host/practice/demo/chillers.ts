@@ -24,7 +24,7 @@ export const chillerRates: DemoSheet = {
   },
   bold: ["A1", "A4:F4", "A5:A9", "A13"],
   formats: { "B5:F9": "0.0000" },
-  widths: { A: 118, C: 96 },
+  widths: { A: 118 },
 };
 
 export const plan: DemoSheet = {
@@ -58,7 +58,7 @@ export const plan: DemoSheet = {
   },
   bold: ["A1", "A7", "A8:I8", "A15", "C16:G16", "H16", "A19", "A20:A24", "A26", "A27:G27"],
   formats: { B3: "yyyy-mm-dd", "A9:A13": "yyyy-mm-dd", "C9:I13": "0.0000", "C17:H17": "0.0000", "B20:B24": "0.0", "C28:G29": "0.0" },
-  widths: { A: 118, B: 104, D: 96, H: 96, I: 112 },
+  widths: { A: 118, B: 104, I: 112 },
 };
 
 /**
@@ -84,5 +84,5 @@ export const fromColleague: DemoSheet = {
   },
   bold: ["A1", "A3:F3", "A4:A8", "A13"],
   formats: { C10: "0.0000", C11: "0.0" },
-  widths: { A: 118, C: 96 },
+  widths: { A: 118 },
 };

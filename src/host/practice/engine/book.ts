@@ -12,7 +12,7 @@ import { EMPTY, newProperties, Sheet, type Content } from "./sheet";
 import { apply, Transaction, type Change } from "./transaction";
 import { Fault, type Scalar } from "./value";
 
-export const DEFAULT_WIDTH = 88;
+export const DEFAULT_WIDTH = 98;
 const UNDO_LIMIT = 200;
 
 export interface CellView {

@@ -139,7 +139,14 @@ export function buildPage({ book, host, storage, demo, unreadable }: PageParts):
       return session.readOnly;
     },
     settle: () => session.settle(),
-    select: (area) => commands.select(area),
+    select: (area) => {
+      commands.select(area);
+      // Where the pane lies over the whole sheet, it makes way for what it leads to.
+      if (page.classList.contains("with-pane") && window.innerWidth < 560) {
+        showPane(false);
+        focusGrid();
+      }
+    },
     onSelection: (listener) => session.on("selection", listener),
   });
   void import("../../../pane/mount").then(({ mountPane }) => mountPane(paneBody, workbook));

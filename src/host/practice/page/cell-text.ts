@@ -1,7 +1,9 @@
 /** How a cell's text fits into its width. */
 import type { CellView } from "../engine";
 
-const padding = 18; // 8 px on each side and the grid line, of practice.css
+/** Beside a text: 8 px on each side and the grid line (grid.css); a number may come nearer to its left. */
+const PADDING = 18;
+const NUMBER_PADDING = 12;
 
 /** Widths of texts in the page's font, remembered. */
 export class TextMeasure {
@@ -30,12 +32,12 @@ export class TextMeasure {
 
   /** Column width that shows a text in full. */
   needed(text: string, bold: boolean): number {
-    return Math.ceil(this.width(text, bold)) + padding;
+    return Math.ceil(this.width(text, bold)) + PADDING;
   }
 
-  fits(text: string, bold: boolean, columnWidth: number): boolean {
+  fits(text: string, bold: boolean, columnWidth: number, padding = PADDING): boolean {
     // The common case costs nothing: no character of the font is wider than its size.
-    return text.length * 13 + padding <= columnWidth || this.needed(text, bold) <= columnWidth;
+    return text.length * 13 + padding <= columnWidth || Math.ceil(this.width(text, bold)) + padding <= columnWidth;
   }
 }
 
@@ -44,11 +46,11 @@ export class TextMeasure {
  * and one that fits in no form is replaced by "…", since a cut number reads as another number.
  */
 export function fitted(view: CellView, columnWidth: number, measure: TextMeasure, decimal: string): string {
-  if (view.kind !== "number" || measure.fits(view.text, view.bold, columnWidth)) return view.text;
+  if (view.kind !== "number" || measure.fits(view.text, view.bold, columnWidth, NUMBER_PADDING)) return view.text;
   if (view.format === "General" && typeof view.value === "number") {
     for (let digits = 12; digits >= 1; digits -= 1) {
       const text = general(view.value, digits, decimal);
-      if (measure.fits(text, view.bold, columnWidth)) return text;
+      if (measure.fits(text, view.bold, columnWidth, NUMBER_PADDING)) return text;
     }
   }
   return "…";

@@ -1,5 +1,5 @@
 /** What words, menus and keys do. Each takes the open edit into its cell first, so that nothing typed is passed over. */
-import { areaText, fillDown, fillRight, type Area } from "../engine";
+import { areaText, cellText, fillDown, fillRight, type Area } from "../engine";
 import type { Editor } from "./editor";
 import { withDecimals, type NumberStyle, formatOf } from "./formats";
 import type { Grid } from "./grid";
@@ -56,7 +56,10 @@ export class Commands {
   clear(): void {
     this.run(() => {
       const area = this.worked();
-      this.session.perform([{ kind: "clear", area }], `clearing ${areaText(area, null)}`);
+      const { session } = this;
+      const { anchor } = session.book.view(session.sheet, session.active.row, session.active.column);
+      if (anchor && area.rows * area.columns === 1) session.say(`${areaText(area)} is filled by the formula in ${cellText(anchor.row, anchor.column)}. Change or clear it there.`);
+      else session.perform([{ kind: "clear", area }], `clearing ${areaText(area)}`);
     });
   }
 

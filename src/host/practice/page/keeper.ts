@@ -8,6 +8,8 @@ import { RECORD_VERSION, type Storage } from "./storage";
 
 const LOCK = "stayrate.practice";
 const DELAY = 150;
+/** Storing takes at most about this share of the time: a large workbook is stored less often. */
+const SHARE = 0.1;
 /** How long a tab that is asked to hand over may take before the lock is taken from it. */
 const PATIENCE = 3_000;
 
@@ -19,6 +21,7 @@ type Message = { readonly kind: "stored" } | { readonly kind: "handOver" };
 export class Keeper {
   private timer: ReturnType<typeof setTimeout> | null = null;
   private dirty = false;
+  private lastCost = 0;
   private role: Role = "reader";
   private release: (() => void) | null = null;
   private readonly channel = new BroadcastChannel(LOCK);
@@ -109,7 +112,7 @@ export class Keeper {
     if (this.role !== "writer" || !this.storage) return;
     this.dirty = true;
     this.tell("keeping");
-    if (this.timer === null) this.timer = setTimeout(() => void this.now(), DELAY);
+    if (this.timer === null) this.timer = setTimeout(() => void this.now(), Math.max(DELAY, this.lastCost / SHARE));
   }
 
   /** Stores what has changed, at once. */
@@ -118,8 +121,10 @@ export class Keeper {
     this.timer = null;
     if (!this.dirty || this.role !== "writer" || !this.storage) return;
     this.dirty = false;
+    const begun = performance.now();
     try {
       await this.storage.write({ version: RECORD_VERSION, savedAt: new Date().toISOString(), book: this.book.toJSON() });
+      this.lastCost = performance.now() - begun;
       if (this.dirty) return;
       this.drafts.stored();
       this.tell("kept");
