@@ -9,7 +9,7 @@ import { BUSY } from "./formula-cell";
 import { CANONICAL, type Locale } from "./locale";
 import { formatValue } from "./number-format";
 import { EMPTY, newProperties, Sheet, type Content } from "./sheet";
-import { apply, Transaction, type Change } from "./transaction";
+import { apply, Transaction, type Change, type Ground } from "./transaction";
 import { Fault, type Scalar } from "./value";
 
 export const DEFAULT_WIDTH = 98;
@@ -68,6 +68,7 @@ export class Book {
   readonly locale: Locale;
   readonly store: { get(key: string): unknown; set(key: string, value: unknown): void };
   private readonly list: Sheet[] = [];
+  private readonly ground: Ground = { sheets: this.list, names: [] };
   private byId = new Map<string, Sheet>();
   private readonly calculation: Calculation;
   private readonly undoStack: Change[] = [];
@@ -87,7 +88,11 @@ export class Book {
       functions: options.functions ?? null,
       sheets: () => this.list,
       sheetById: (id) => this.byId.get(id),
-      sheetId: (name) => this.sheetNamed(name)?.id ?? null,
+      sheetId: (name) => this.list.find((sheet) => sheet.properties.name.toLowerCase() === name.toLowerCase())?.id ?? null,
+      named: (name, sheet) => {
+        const found = this.ground.names.filter((entry) => entry.name.toUpperCase() === name && (entry.sheet === undefined || entry.sheet === sheet));
+        return (found.find((entry) => entry.sheet !== undefined) ?? found[0])?.formula ?? null;
+      },
       now: options.now ?? (() => new Date()),
       random: options.random ?? Math.random,
       settled: () => this.schedule(),
@@ -222,7 +227,7 @@ export class Book {
 
   /** For operations that work on contents directly; the same rules as `apply`. */
   change(label: string, work: (transaction: Transaction, sheetById: (id: string) => Sheet) => void): void {
-    const transaction = new Transaction(label, this.list);
+    const transaction = new Transaction(label, this.ground);
     try {
       work(transaction, (id) => {
         const sheet = this.list.find((entry) => entry.id === id);
@@ -262,7 +267,7 @@ export class Book {
     const change = from.pop();
     if (!change) return null;
     to.push(change);
-    apply(change, side, this.list);
+    apply(change, side, this.ground);
     this.follow(change);
     return { label: change.label, touched: touchedBy(change) };
   }
@@ -337,7 +342,8 @@ export class Book {
   }
 
   toJSON(): BookFile {
-    return { version: FILE_VERSION, sheets: this.list.map(writeSheet), store: this.kept };
+    const { names } = this.ground;
+    return { version: FILE_VERSION, ...(names.length > 0 && { names }), sheets: this.list.map(writeSheet), store: this.kept };
   }
 
   /** @throws FileRefused with a sentence when the record is damaged. */
@@ -349,8 +355,9 @@ export class Book {
 
   /** Opens another workbook in place of this one; undo starts afresh. @throws FileRefused, and leaves the book as it was. */
   replaceWith(file: unknown): void {
-    const { sheets, store } = readFile(file);
+    const { sheets, names, store } = readFile(file);
     this.kept = store;
+    this.ground.names = names;
     this.replaceSheets(sheets);
   }
 

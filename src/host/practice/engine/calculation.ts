@@ -34,6 +34,8 @@ export interface Surroundings {
   readonly sheets: () => readonly Sheet[];
   readonly sheetById: (id: string) => Sheet | undefined;
   readonly sheetId: (name: string) => string | null;
+  /** The formula that a name stands for on a sheet. */
+  readonly named: (name: string, sheet: string) => string | null;
   readonly now: () => Date;
   readonly random: () => number;
   /** Called with the cells whose value changed, when an answer came late. */
@@ -281,6 +283,7 @@ export class Calculation {
       here: { sheet: cell.sheet.id, row: cell.row, column: cell.column, rows: 1, columns: 1 },
       locale: around.locale,
       sheetId: around.sheetId,
+      named: (name) => around.named(name, cell.sheet.id),
       ordinary: ordinaryFunction,
       now: around.now,
       random: around.random,

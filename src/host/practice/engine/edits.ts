@@ -205,6 +205,7 @@ function editSheets(edit: SheetEdit, ground: EditGround): void {
           if (formula !== content.formula) transaction.setContent(other, key, { ...content, formula });
         }
       }
+      transaction.changeNames((formula) => renameInFormula(formula, from, edit.name));
       return;
     }
     case "removeSheet":

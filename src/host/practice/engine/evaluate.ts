@@ -1,6 +1,7 @@
 /** The value of a formula's expression, given a view of the workbook. */
 import { contains, enclosing, overlap, type Area } from "./address";
 import type { Expression } from "./expression";
+import { readFormula } from "./formula";
 import type { Locale } from "./locale";
 import { binary, unary } from "./operators";
 import { Fault, isGrid, Lambda, Reference, type Grid, type Scalar, type Scope, type Value } from "./value";
@@ -15,6 +16,8 @@ export interface Sight {
   grid(area: Area): Grid;
   /** The area that the formula in this cell fills; null when it fills none. */
   spill(sheet: string, row: number, column: number): Area | null;
+  /** The formula that a name of the workbook stands for. */
+  named(name: string): string | null;
   /** The ordinary function of that name. */
   ordinary(name: string): OrdinaryFunction | null;
   /** Calls a custom function; null when there is none of that name. */
@@ -47,7 +50,7 @@ export class Evaluation {
       case "literal": return expression.value;
       case "array": return expression.rows;
       case "reference": return this.reference(expression);
-      case "name": return this.scope.get(expression.name) ?? new Fault("#NAME?", `The name ${expression.name} is not known.`);
+      case "name": return this.scope.get(expression.name) ?? this.named(expression.name);
       case "unary": return this.unary(expression.operator, expression.operand);
       case "binary": return this.binary(expression);
       case "call": return this.call(expression.name, expression.parameters);
@@ -97,6 +100,14 @@ export class Evaluation {
     const sheet = expression.sheetName === null ? this.sight.here.sheet : this.sight.sheetId(expression.sheetName);
     if (sheet === null) return new Fault("#REF!", `There is no sheet named "${expression.sheetName}".`);
     return new Reference({ sheet, ...expression.rect });
+  }
+
+  private named(name: string): Value {
+    const formula = this.sight.named(name);
+    if (formula === null) return new Fault("#NAME?", `The name ${name} is not known.`);
+    if (this.depth >= LAMBDA_DEPTH_LIMIT) return new Fault("#REF!", `The name ${name} stands for itself.`);
+    const { expression, problem } = readFormula(formula);
+    return expression ? this.within(new Map(), 1).value(expression) : new Fault("#NAME?", problem ?? undefined);
   }
 
   private unary(operator: "+" | "-" | "%" | "#" | "@", operand: Expression): Value {

@@ -20,8 +20,18 @@ export interface SheetRecord {
   readonly merged?: readonly Rect[];
 }
 
+/** A name for cells, as workbooks from elsewhere bring it along: it stands for a formula, on one sheet or on all. */
+export interface NameRecord {
+  readonly name: string;
+  /** Canonical spelling with its equals sign. */
+  readonly formula: string;
+  /** Id of the only sheet where it holds. */
+  readonly sheet?: string;
+}
+
 export interface BookFile {
   readonly version: typeof FILE_VERSION;
+  readonly names?: readonly NameRecord[];
   readonly sheets: readonly SheetRecord[];
   readonly store: Readonly<Record<string, unknown>>;
 }
@@ -53,13 +63,16 @@ export class FileRefused extends Error {
   override readonly name = "FileRefused";
 }
 
-export function readFile(file: unknown): { sheets: Sheet[]; store: Record<string, unknown> } {
+export function readFile(file: unknown): { sheets: Sheet[]; names: NameRecord[]; store: Record<string, unknown> } {
   if (!isRecord(file)) throw new FileRefused("The saved workbook is damaged: it is no workbook record.");
   if (file.version !== FILE_VERSION) throw new FileRefused(`The saved workbook is of version ${String(file.version)}; this page reads version ${FILE_VERSION}.`);
   if (!Array.isArray(file.sheets) || file.sheets.length === 0) throw new FileRefused("The saved workbook is damaged: it has no sheets.");
   const sheets = file.sheets.map(readSheet);
   if (new Set(sheets.map((sheet) => sheet.id)).size < sheets.length) throw new FileRefused("The saved workbook is damaged: two sheets share an id.");
-  return { sheets, store: isRecord(file.store) ? { ...file.store } : {} };
+  const names = (Array.isArray(file.names) ? (file.names as unknown[]) : []).filter(
+    (entry): entry is NameRecord & Record<string, unknown> => isRecord(entry) && typeof entry.name === "string" && typeof entry.formula === "string" && entry.formula.startsWith("="),
+  );
+  return { sheets, names, store: isRecord(file.store) ? { ...file.store } : {} };
 }
 
 const isRecord = (value: unknown): value is Record<string, unknown> => typeof value === "object" && value !== null && !Array.isArray(value);

@@ -5,7 +5,7 @@ export { functionList, type FunctionHelp } from "./completion";
 export { CustomFunctionHost, type Conventions, type FunctionMetadata, type FunctionsFile } from "./custom-functions";
 export { EditRefused, sheetNameProblem, type Edit } from "./edits";
 export { readEntry } from "./entry";
-export { FILE_VERSION, FileRefused, type BookFile, type CellRecord, type ContentRecord, type SheetRecord } from "./file";
+export { FILE_VERSION, FileRefused, type BookFile, type CellRecord, type ContentRecord, type NameRecord, type SheetRecord } from "./file";
 export { shiftFormula } from "./formula";
 export { callAt, pieces, type CallAt, type Piece, type PieceKind } from "./formula-text";
 export { CANONICAL, localeOf, toCanonical, toLocal, type Locale } from "./locale";

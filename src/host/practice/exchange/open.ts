@@ -1,6 +1,6 @@
 /** An .xlsx file as a workbook record. The file is judged before the library sees it; the open workbook is not touched. */
 import type { CellObject, WorkBook, WorkSheet } from "@e965/xlsx";
-import { DEFAULT_WIDTH, FILE_VERSION, isDateFormat, parseArea, sheetNameProblem, type BookFile, type CellRecord, type ContentRecord, type Rect, type SheetRecord } from "../engine";
+import { DEFAULT_WIDTH, FILE_VERSION, isDateFormat, parseArea, sheetNameProblem, type BookFile, type CellRecord, type ContentRecord, type NameRecord, type Rect, type SheetRecord } from "../engine";
 import { markOldReading } from "./old-formulas";
 import { ExchangeRefused } from "./refused";
 import { fromFileSpelling } from "./spelling";
@@ -55,7 +55,8 @@ export async function openXlsx(bytes: Uint8Array, limits: ZipLimits = LIMITS): P
     return sheetRecord(`s${index + 1}`, name, workbook, new Set(cellsWithStyles(xml, bold)));
   });
   if (sheets.length === 0) throw new ExchangeRefused("The file has no sheets.");
-  return { file: { version: FILE_VERSION, sheets, store: readStore(parts) }, notes };
+  const defined = namesOf(workbook);
+  return { file: { version: FILE_VERSION, ...(defined.length > 0 && { names: defined }), sheets, store: readStore(parts) }, notes };
 }
 
 const decode = (content: Uint8Array | undefined): string => (content ? new TextDecoder().decode(content) : "");
@@ -186,6 +187,13 @@ function layoutOf(sheet: WorkSheet): Partial<SheetRecord> {
   };
 }
 
+/** Names for cells; those that programs make for themselves (print areas, filters) begin with "_xlnm." and are left. */
+function namesOf(workbook: WorkBook): NameRecord[] {
+  return (workbook.Workbook?.Names ?? [])
+    .filter((entry) => !/^_xl/i.test(entry.Name) && typeof entry.Ref === "string" && entry.Ref !== "")
+    .map((entry) => ({ name: entry.Name, formula: fromFileSpelling(entry.Ref), ...(entry.Sheet !== undefined && { sheet: `s${entry.Sheet + 1}` }) }));
+}
+
 /** What there is in the file that the practice workbook has no place for. */
 function notesOn(parts: ReadonlyMap<string, Uint8Array>, workbook: WorkBook): string[] {
   const names = [...parts.keys()];
@@ -201,8 +209,6 @@ function notesOn(parts: ReadonlyMap<string, Uint8Array>, workbook: WorkBook): st
   if (some(/^xl\/externalLinks\//i)) lost.push("links to other workbooks");
   if (some(/^xl\/chartsheets\//i)) lost.push("chart sheets");
   if (lost.length > 0) notes.push(`Not opened here, and not kept when you save: ${lost.join(", ")}.`);
-  const defined = (workbook.Workbook?.Names ?? []).filter((entry) => !entry.Name.startsWith("_xlnm."));
-  if (defined.length > 0) notes.push(`Names for cells are not known here; formulas that use ${defined.slice(0, 3).map((entry) => entry.Name).join(", ")}${defined.length > 3 ? " …" : ""} show #NAME?.`);
   if (workbook.Workbook?.WBProps?.date1904 === true) notes.push("The file counts days from 1904; its dates were brought to the calendar used here.");
   return notes;
 }

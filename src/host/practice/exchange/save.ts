@@ -24,7 +24,14 @@ export async function saveXlsx(book: Book): Promise<Uint8Array> {
   const workbook: WorkBook = {
     SheetNames: file.sheets.map((sheet) => sheet.name),
     Sheets: Object.fromEntries(file.sheets.map((sheet) => [sheet.name, sheetOf(book, sheet)])),
-    Workbook: { Sheets: file.sheets.map((sheet) => ({ name: sheet.name, Hidden: sheet.hidden ? 1 : 0 })) },
+    Workbook: {
+      Sheets: file.sheets.map((sheet) => ({ name: sheet.name, Hidden: sheet.hidden ? 1 : 0 })),
+      Names: (file.names ?? []).map(({ name, formula, sheet }) => ({
+        Name: name,
+        Ref: toFileSpelling(formula),
+        ...(sheet !== undefined && { Sheet: file.sheets.findIndex((entry) => entry.id === sheet) }),
+      })),
+    },
     Props: { Application: "Stayrate" },
   };
   const written = new Uint8Array(library.write(workbook, { type: "array", bookType: "xlsx", bookSST: true, compression: false }) as ArrayBuffer);

@@ -76,6 +76,30 @@ test("a workbook comes back from its file with contents, values, formats, layout
   expect(values(again)).toEqual(shown);
 });
 
+test("names for cells come along, follow their cells and their sheet's name, and go back into the file", async () => {
+  const record: BookFile = {
+    version: 1,
+    names: [{ name: "repair_rate", formula: "=Rates!$A$1" }, { name: "all", formula: "=Rates!$A$1:$A$2" }, { name: "all", formula: "=10", sheet: "s2" }, { name: "loop", formula: "=loop" }],
+    sheets: [
+      { id: "s1", name: "Rates", cells: [[0, 0, 4], [1, 0, 5], [0, 1, "=SUM(all)*Repair_Rate"], [1, 1, "=loop"]] },
+      { id: "s2", name: "Plan", cells: [[0, 0, "=all+repair_rate"]] },
+    ],
+    store: {},
+  };
+  const book = Book.fromJSON((await openXlsx(await saveXlsx(Book.fromJSON(record)))).file);
+  expect(book.toJSON().names).toEqual(record.names);
+  expect([book.view("s1", 0, 1).value, book.view("s2", 0, 0).value]).toEqual([36, 14]);
+  expect(book.view("s1", 1, 1).sentence).toBe("The name LOOP stands for itself.");
+  book.apply([{ kind: "put", sheet: "s1", row: 0, column: 0, value: 5 }], "Write");
+  expect([book.view("s1", 0, 1).value, book.view("s2", 0, 0).value]).toEqual([50, 15]);
+  book.apply([{ kind: "renameSheet", sheet: "s1", name: "New rates" }], "Rename");
+  expect(book.view("s2", 0, 0).value).toBe(15);
+  expect(book.toJSON().names![0]).toEqual({ name: "repair_rate", formula: "='New rates'!$A$1" });
+  book.undo();
+  expect(book.toJSON().names).toEqual(record.names);
+  expect(book.view("s2", 0, 0).value).toBe(15);
+});
+
 test("the file spells formulas as files do, with their values beside them", async () => {
   const parts = await unzip(await saveXlsx(sample()));
   const xml = (name: string) => new TextDecoder().decode(parts.get(name));
