@@ -1,4 +1,4 @@
-import type { StateSet } from "./classes";
+import { statesReached, type StateSet } from "./classes";
 import { Generator, type Arrow } from "./generator";
 
 /**
@@ -17,11 +17,15 @@ export interface Passage {
   readonly outside: Int32Array;
 }
 
-/** Builds the stopped chain. Rates into several targets from one state are added. */
+/**
+ * Builds the stopped chain of the states that can be met from the start; of a long list that may be few. Rates into several
+ * targets from one state are added.
+ */
 export function passage(generator: Generator, start: Float64Array, targets: StateSet): Passage {
+  const reached = statesReached(generator, Uint8Array.from(start, (p) => (p > 0 ? 1 : 0)), targets);
   const number = new Int32Array(generator.size);
   let met = 0;
-  for (let i = 0; i < generator.size; i++) if (!targets[i]) number[i] = met++;
+  for (let i = 0; i < generator.size; i++) if (reached[i] && !targets[i]) number[i] = met++;
   const outside = new Int32Array(met);
   const begin = new Float64Array(met + 1);
   const rateIn = new Float64Array(met + 1);
@@ -31,6 +35,7 @@ export function passage(generator: Generator, start: Float64Array, targets: Stat
       begin[met] += start[i];
       continue;
     }
+    if (!reached[i]) continue;
     outside[number[i]] = i;
     begin[number[i]] = start[i];
     for (let k = generator.rowStart[i]; k < generator.rowStart[i + 1]; k++) {

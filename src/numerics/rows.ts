@@ -155,9 +155,12 @@ function* openSquarings(chain: ChainRates, times: ArrayLike<number>, options: Ro
   return yield* Squarings.open(denseOf(chain), kernel, longest(times));
 }
 
+/** A matrix of more states is not squared: its powers would take gigabytes. */
+const LARGEST_SQUARED = 3000;
+
 function methodFor(walk: JumpWalk, chain: ChainRates, times: ArrayLike<number>, options: RowOptions, values?: number): Method {
   const jumps = walk.largestExit * longest(times);
-  if (jumps === 0) return "row";
+  if (jumps === 0 || chain.size > LARGEST_SQUARED) return "row";
   return options.method ?? chooseMethod(walk.order.length, chain.rate.length, jumps, values ? values / chain.size : times.length);
 }
 
