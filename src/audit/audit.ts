@@ -1,7 +1,7 @@
 import { Problem } from "../chain/problem";
 import { read } from "../table/read";
 import type { Cells, Layout, Reading } from "../table/rate-table";
-import { contextOf, type AuditOptions, type Rule, type SheetRule } from "./context";
+import { contextOf, type AuditOptions, type OtherRole, type Rule, type SheetRule } from "./context";
 import { findingsFrom } from "./from-problem";
 import type { SheetFacts } from "./facts";
 import type { Finding, Severity, Span, Whereabouts } from "./finding";
@@ -36,7 +36,7 @@ import { unreachable } from "./rules/unreachable";
 import { zeroEvents } from "./rules/zero-events";
 import { meansTotal } from "./words";
 
-export type { AuditOptions, AskedQuestion, OtherTable } from "./context";
+export type { AuditOptions, AskedQuestion, OtherRole, OtherTable } from "./context";
 
 /** In the order in which findings of one severity are listed: what spoils every answer first. */
 const RULES: readonly Rule[] = [
@@ -86,15 +86,37 @@ export function audit(cells: Cells, options: AuditOptions = {}): Finding[] {
 
 /** As `audit`, for a range that was read already. */
 export function auditReading(cells: Cells, reading: Reading, options: AuditOptions = {}): Finding[] {
-  const { facts } = options;
+  const { facts, role } = options;
+  if (role) return byRank([...inOtherRole(cells, reading, options, role), ...sheetFindings(cells, reading, facts)]);
   const refusals = findingsFrom(reading.problems).map((finding) => placed(finding, reading.layout));
   const inner = mayHoldMore(reading) ? recognise(cells) : null;
   const within = inner !== null && inner.asides.length > 0 ? insideOf(cells, inner, options, refusals[0]) : null;
   const found = within ?? (reading.layout ? rulesOn(cells, reading, reading.layout, options) : []);
-  if (facts) found.push(...SHEET_RULES.flatMap((rule) => rule({ cells, layout: reading.layout, facts })).map((finding) => placed(finding, null)));
+  found.push(...sheetFindings(cells, reading, facts));
   if (!reading.layout && !within && !found.some(({ code }) => code === "rangeShort")) found.push(...labelAlone(cells).map((finding) => placed(finding, null)));
+  return [...explained(refusals, found, within !== null), ...startRefusal(options), ...byRank(found)];
+}
+
+function byRank(findings: readonly Finding[]): Finding[] {
   const order = (finding: Finding): number => RANK[finding.severity] + (finding.asks ? 0.5 : 0);
-  return [...explained(refusals, found, within !== null), ...startRefusal(options), ...found.sort((a, b) => order(a) - order(b))];
+  return [...findings].sort((a, b) => order(a) - order(b));
+}
+
+function sheetFindings(cells: Cells, reading: Reading, facts: SheetFacts | undefined): Finding[] {
+  return facts ? SHEET_RULES.flatMap((rule) => rule({ cells, layout: reading.layout, facts })).map((finding) => placed(finding, null)) : [];
+}
+
+/** Rules that judge a table of probabilities as such. */
+const PROBABILITY_RULES: readonly Rule[] = [probabilityTable, competingExits, cycleLength];
+
+/** A range that formulas take for costs, counts, resets or probabilities: said once, and judged as that as far as rules go. */
+function inOtherRole(cells: Cells, reading: Reading, options: AuditOptions, { role, name, where }: OtherRole): Finding[] {
+  const said: Finding = { code: "readAsOther", severity: "note", span: null, details: { role, name, where } };
+  if (role !== "probabilities" || !reading.layout) return [said];
+  const { layout } = reading;
+  const context = contextOf(cells, reading, layout, options);
+  const found = PROBABILITY_RULES.flatMap((rule) => rule(context)).filter(({ code }) => code !== "probabilityTable");
+  return [said, ...found.map((finding) => placed(finding, layout))];
 }
 
 /** Stops that say why a diagonal cannot agree: clearing it would hide the mistake instead of mending it. */

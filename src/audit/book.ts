@@ -1,15 +1,15 @@
 import type { Steps } from "../chain/steps";
 import { compareTables, type CompareRow } from "../table/compare";
-import { nameKey } from "../table/cell";
+import { isEmpty, nameKey } from "../table/cell";
 import { read } from "../table/read";
 import type { Cells, CellValue, Reading } from "../table/rate-table";
 import { rangeName, sheetPrefix } from "./a1";
-import { audit } from "./audit";
+import { auditReading } from "./audit";
 import { readBody } from "./body";
-import type { AskedQuestion, OtherTable } from "./context";
+import type { AskedQuestion, OtherRole, OtherTable } from "./context";
 import { cellsFrom } from "./facts";
 import type { Finding, Span } from "./finding";
-import { BUILDERS, callsIn, numbersIn, positionsOf, referencesIn, type Call, type Reference } from "./formula-calls";
+import { BUILDERS, callsIn, numbersIn, positionsOf, referencesIn, tablesIn, type Call, type Reference, type Role } from "./formula-calls";
 import { kindOf, type Kind } from "./kind";
 import { exponentialsOver, formulaShort, meanTimeName } from "./rules/book-formulas";
 import { findTablesSteps } from "./tables-in-sheet";
@@ -36,9 +36,13 @@ export interface BookTable {
   readonly reading: Reading;
   readonly hidden: boolean;
   readonly kind: Kind;
+  /** What the formulas that read it take it for; rates where none does. */
+  readonly role: Role;
+  /** The formula that says so, unless the role is rates. */
+  readonly roleSaid: { readonly name: string; readonly where: string } | null;
   readonly size: number;
   readonly arrows: number;
-  /** The first stop that the audit reports of the table by itself; null where there is none. */
+  /** The first stop that the audit reports of the table by itself, in its role; null where there is none. */
   readonly stop: Finding | null;
 }
 
@@ -98,7 +102,7 @@ interface Seen {
  * *Cost*: a few passes over the cells.
  */
 export function* scanBook(sheets: readonly BookSheet[]): Steps<BookScan> {
-  const tables: BookTable[] = [];
+  const drafts: Draft[] = [];
   const formulas: BookFormula[] = [];
   const seen: Seen[] = [];
   for (const [at, sheet] of sheets.entries()) {
@@ -107,7 +111,7 @@ export function* scanBook(sheets: readonly BookSheet[]): Steps<BookScan> {
     yield at / (2 * sheets.length);
     for (const { span } of yield* findTablesSteps(cells)) {
       if (isAnswer(sheet, span)) continue;
-      tables.push(bookTable(sheet, cells, span));
+      drafts.push(draftOf(sheet, cells, span));
       yield at / (2 * sheets.length);
     }
   }
@@ -118,7 +122,7 @@ export function* scanBook(sheets: readonly BookSheet[]): Steps<BookScan> {
       for (let column = 0; column < line.length; column++) {
         const formula = line[column];
         if (!formula.startsWith("=") || !/CTMC[._]/iu.test(formula)) continue;
-        const found = bookFormula(sheet, cells, row, column, formula, tables, seen);
+        const found = bookFormula(sheet, cells, row, column, formula, drafts, seen);
         if (!found) continue;
         formulas.push(found);
         findings.push(...formulaShort(found).map((finding) => ({ sheet: sheet.name, finding })));
@@ -126,8 +130,13 @@ export function* scanBook(sheets: readonly BookSheet[]): Steps<BookScan> {
       }
       if (row % 50 === 49) yield 0.5 + (at + row / sheet.formulas.length) / (2.2 * sheets.length);
     }
-    findings.push(...exponentialsOver(sheet, tables).map((finding) => ({ sheet: sheet.name, finding })));
+    findings.push(...exponentialsOver(sheet, drafts).map((finding) => ({ sheet: sheet.name, finding })));
     yield 0.5 + (at + 1) / (2.2 * sheets.length);
+  }
+  const tables: BookTable[] = [];
+  for (const draft of drafts) {
+    tables.push(judged(draft));
+    if (tables.length % 4 === 0) yield 0.95;
   }
   const scan = { tables, formulas, pairs: yield* pairsAmong(tables), findings };
   valuesOf.set(scan, seen);
@@ -154,6 +163,12 @@ export function askedOf(scan: BookScan, table: number): AskedQuestion[] {
         },
       ];
     });
+}
+
+/** What formulas take a table for, where none takes it for rates: for `audit`'s `role`. */
+export function roleOf(scan: BookScan, table: number): OtherRole | undefined {
+  const { role, roleSaid } = scan.tables[table];
+  return role === "rates" || !roleSaid ? undefined : { role, ...roleSaid };
 }
 
 /** The other tables of the workbook: for `audit`'s `others`. */
@@ -189,7 +204,10 @@ function isAnswer(sheet: BookSheet, span: Span): boolean {
   return false;
 }
 
-function bookTable(sheet: BookSheet, cells: Cells, span: Span): BookTable {
+/** A table before all formulas were seen: who reads it decides what it is. */
+type Draft = Omit<BookTable, "role" | "roleSaid" | "stop"> & { readonly roles: Map<Role, { readonly name: string; readonly where: string }> };
+
+function draftOf(sheet: BookSheet, cells: Cells, span: Span): Draft {
   const inside = Array.from({ length: span.rows }, (_, i) => Array.from({ length: span.columns }, (__, j) => cells[span.row + i]?.[span.column + j] ?? null));
   const reading = read(inside);
   const address = { sheet: sheet.name, row: sheet.row + span.row, column: sheet.column + span.column, rows: span.rows, columns: span.columns };
@@ -202,8 +220,16 @@ function bookTable(sheet: BookSheet, cells: Cells, span: Span): BookTable {
     kind: reading.layout ? kindOf(readBody(inside, reading.layout)) : "rates",
     size: reading.layout?.size ?? 0,
     arrows: reading.table?.arrows.length ?? 0,
-    stop: audit(inside).find((finding) => finding.severity === "stop") ?? null,
+    roles: new Map(),
   };
+}
+
+function judged({ roles, ...draft }: Draft): BookTable {
+  const [said] = roles.has("rates") ? [] : [...roles];
+  const role = said?.[0] ?? "rates";
+  const options = said && role !== "rates" ? { role: { role, ...said[1] } } : {};
+  const stop = auditReading(draft.cells, draft.reading, options).find((finding) => finding.severity === "stop") ?? null;
+  return { ...draft, role, roleSaid: role === "rates" ? null : said[1], stop };
 }
 
 function bookFormula(
@@ -212,7 +238,7 @@ function bookFormula(
   row: number,
   column: number,
   formula: string,
-  tables: BookTable[],
+  drafts: Draft[],
   seen: readonly Seen[],
 ): BookFormula | null {
   const calls = callsIn(formula);
@@ -220,27 +246,36 @@ function bookFormula(
   const value = cells[row]?.[column] ?? null;
   const fault = typeof value === "object" && value !== null ? value.fault : null;
   const unregistered = calls.some((call) => call.unregistered) || fault === "#NAME?";
-  const state = unregistered ? "unregistered" : fault === "#BUSY!" || fault === "#GETTING_DATA" || value === null ? "stale" : fault ? "error" : "fine";
+  const waiting = fault === "#BUSY!" || fault === "#GETTING_DATA" || (value === null && isEmpty(cells[row]?.[column + 1] ?? null) && isEmpty(cells[row + 1]?.[column] ?? null));
   const [outer] = calls;
-  const readsText = outer.parameters[0] ?? "";
-  const reader = calls.find(({ name }) => positionsOf(name));
-  const reference = reader ? referencesIn(reader.parameters[0] ?? "", sheet.name)[0] : undefined;
-  const reads = reference ? tableAt(reference, tables, seen) : null;
+  const address = { sheet: sheet.name, row: sheet.row + row, column: sheet.column + column, rows: 1, columns: 1 };
+  let reads: number | null = null;
+  let short: BookFormula["short"] = null;
+  for (const call of calls)
+    for (const { parameter, role } of tablesIn(call)) {
+      const reference = referencesIn(parameter, sheet.name)[0];
+      const at = reference && !/\bCTMC[._]/iu.test(parameter) ? tableAt(reference, drafts, seen) : null;
+      if (at === null) continue;
+      if (!drafts[at].roles.has(role)) drafts[at].roles.set(role, { name: call.name, where: sheetPrefix(sheet.name) + rangeName(address) });
+      if (reads !== null) continue;
+      reads = at;
+      short = reference.spill ? null : shortOf(reference, drafts[at]);
+    }
   return {
-    address: { sheet: sheet.name, row: sheet.row + row, column: sheet.column + column, rows: 1, columns: 1 },
+    address,
     formula,
     name: outer.name,
     calls,
-    state,
+    state: unregistered ? "unregistered" : waiting ? "stale" : fault ? "error" : "fine",
     fault,
     reads,
-    readsText,
-    short: reads === null || !reference || reference.spill ? null : shortOf(reference, tables[reads]),
+    readsText: outer.parameters[0] ?? "",
+    short,
   };
 }
 
 /** The table that a reference reads: the one it shares most cells with; else the range itself joins the tables. */
-function tableAt(reference: Reference, tables: BookTable[], seen: readonly Seen[]): number | null {
+function tableAt(reference: Reference, tables: Draft[], seen: readonly Seen[]): number | null {
   let best = -1;
   let most = 0;
   tables.forEach(({ address }, k) => {
@@ -252,7 +287,7 @@ function tableAt(reference: Reference, tables: BookTable[], seen: readonly Seen[
   const place = seen.find(({ sheet }) => sheet.name === reference.sheet);
   if (reference.spill || !place || reference.rows < 2 || reference.columns < 2) return null;
   const { sheet, cells } = place;
-  return tables.push(bookTable(sheet, cells, { ...reference, row: reference.row - sheet.row, column: reference.column - sheet.column })) - 1;
+  return tables.push(draftOf(sheet, cells, { ...reference, row: reference.row - sheet.row, column: reference.column - sheet.column })) - 1;
 }
 
 function sharedCells(a: Span, b: Span): number {
@@ -262,7 +297,7 @@ function sharedCells(a: Span, b: Span): number {
 }
 
 /** How many rows and columns of the table's body the reference leaves out; headings may be left out. */
-function shortOf(reference: Reference, { address, reading }: BookTable): BookFormula["short"] {
+function shortOf(reference: Reference, { address, reading }: Draft): BookFormula["short"] {
   const { layout } = reading;
   const body = layout?.form === "square" ? layout.body : layout ? { ...layout.body, row: 0, rows: layout.body.row + layout.body.rows } : null;
   if (!body) return null;
@@ -277,9 +312,9 @@ function shortOf(reference: Reference, { address, reading }: BookTable): BookFor
 /** Tables that name the same states, each with the next one in the order of the sheets, where rates differ. */
 function* pairsAmong(tables: readonly BookTable[]): Steps<BookPair[]> {
   const groups = new Map<string, number[]>();
-  tables.forEach(({ reading }, k) => {
+  tables.forEach(({ reading, role }, k) => {
     const names = reading.table?.names;
-    if (!names) return;
+    if (!names || role !== "rates") return;
     const key = names.map(nameKey).sort().join("\n");
     groups.set(key, [...(groups.get(key) ?? []), k]);
   });

@@ -28,6 +28,14 @@ export interface OtherTable {
   readonly cells: Cells;
 }
 
+/** What the workbook's formulas take a range for, when that is not a table of rates. */
+export interface OtherRole {
+  readonly role: "probabilities" | "counts" | "costs" | "resets";
+  /** The function that says so, and where it stands. */
+  readonly name: string;
+  readonly where: string;
+}
+
 export interface AuditOptions {
   /** Where the chain starts: n probabilities; or the `Problem` met in reading it, which becomes a stop. */
   readonly start?: Float64Array | Problem | null;
@@ -37,6 +45,8 @@ export interface AuditOptions {
   readonly answers?: Readonly<Record<string, string>>;
   readonly asked?: readonly AskedQuestion[];
   readonly others?: readonly OtherTable[];
+  /** Set where formulas read the range and none takes it for rates: it is then not judged as rates. */
+  readonly role?: OtherRole;
 }
 
 /** All that a rule may look at. */

@@ -169,6 +169,31 @@ export function positionsOf(name: string): Positions | null {
   return READERS[name] ?? null;
 }
 
+/** What a range is to the formula that reads it. */
+export type Role = "rates" | "probabilities" | "counts" | "costs" | "resets";
+
+/** Arguments that are a table over the states, but not of rates: position from 0. */
+const OTHER_TABLES: Readonly<Record<string, readonly [position: number, role: Role]>> = {
+  COST: [4, "costs"],
+  COSTUNTIL: [4, "costs"],
+  COSTRATE: [2, "costs"],
+  COSTELASTICITY: [2, "costs"],
+  INSPECTION: [1, "resets"],
+  FROMPROBABILITY: [0, "probabilities"],
+  EMBEDDINGGAP: [0, "probabilities"],
+  FROMCOUNTS: [0, "counts"],
+  AVAILABILITYBAND: [0, "counts"],
+};
+
+/** The arguments of a call that are tables, as written, with what they are. */
+export function tablesIn({ name, parameters }: Call): { readonly parameter: string; readonly role: Role }[] {
+  const tables: { parameter: string; role: Role }[] = [];
+  if (positionsOf(name)) tables.push({ parameter: parameters[0] ?? "", role: "rates" });
+  const other = OTHER_TABLES[name];
+  if (other) tables.push({ parameter: parameters[other[0]] ?? "", role: other[1] });
+  return tables.filter(({ parameter }) => parameter !== "");
+}
+
 /** Functions that make a table of rates: what they spill is a table, while what the others spill is an answer. */
 export const BUILDERS: ReadonlySet<string> = new Set([
   "GENERATOR", "FROMLIST", "BIRTHDEATH", "REPAIRGROUP", "QUEUE", "COMBINE", "STAGES", "LUMP", "FROMPROBABILITY", "FROMCOUNTS", "FROMLOG",

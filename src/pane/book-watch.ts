@@ -1,4 +1,4 @@
-import { askedOf, othersOf } from "../audit/book";
+import { askedOf, othersOf, roleOf } from "../audit/book";
 import type { AuditOptions } from "../audit/audit";
 import { overlap, placeText } from "./address";
 import { scanWorkbook, UNASKED_CELLS } from "./book-scan";
@@ -41,11 +41,11 @@ export class BookWatch {
   }
 
   /** What the audit of one table may know of the rest of the workbook. */
-  contextOf(range: RangeAddress): Pick<AuditOptions, "asked" | "others"> {
+  contextOf(range: RangeAddress): Pick<AuditOptions, "asked" | "others" | "role"> {
     const scan = this.book.scanned?.scan;
     const at = this.tableAt(range);
     if (!scan || at < 0) return {};
-    return { asked: askedOf(scan, at), others: othersOf(scan, at) };
+    return { asked: askedOf(scan, at), others: othersOf(scan, at), role: roleOf(scan, at) };
   }
 
   /** The formulas that read a table, with where they stand. */

@@ -72,7 +72,7 @@ export interface Looked {
 export function examine(
   reading: RangeReading,
   entryOf: (states: readonly string[] | null) => TableMemory,
-  context: Pick<AuditOptions, "asked" | "others"> = {},
+  context: Pick<AuditOptions, "asked" | "others" | "role"> = {},
 ): Looked {
   const cells = cellsFrom(reading.values);
   const table = read(cells);

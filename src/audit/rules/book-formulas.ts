@@ -26,7 +26,7 @@ export function meanTimeName(formula: BookFormula, cells: Cells, row: number, co
  * EXP taken over a table of rates cell by cell, elsewhere on the sheets (mistake 27): one formula over several rows and columns of it,
  * or single formulas over more than half of its cells, the diagonal among them. exp(−q·t) of one exit rate is right and left alone.
  */
-export function exponentialsOver(sheet: BookSheet, tables: readonly BookTable[]): Finding[] {
+export function exponentialsOver(sheet: BookSheet, tables: readonly Pick<BookTable, "address" | "reading" | "kind" | "size" | "where">[]): Finding[] {
   const hits = new Map<number, { first: readonly [number, number]; entries: Set<number> }>();
   for (let row = 0; row < sheet.formulas.length; row++)
     for (let column = 0; column < sheet.formulas[row].length; column++) {

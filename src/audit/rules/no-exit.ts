@@ -1,5 +1,6 @@
 import { communicatingClasses } from "../../chain/classes";
 import { rowSpan, stateName, type Context, type Rule } from "../context";
+import { UNTIL } from "./no-target";
 import { meansFinalAmong, unitsIn } from "../words";
 
 /**
@@ -8,8 +9,9 @@ import { meansFinalAmong, unitsIn } from "../words";
  * chain that never returns to any state, such as wear without repair. A table without any arrow is one finding.
  */
 export const noExit: Rule = (context) => {
-  const { chain, body, kind, layout } = context;
+  const { chain, body, kind, layout, options } = context;
   if (kind === "columnsSum" || kind === "complement") return [];
+  if (options.asked?.some(({ name, hasTargets }) => UNTIL.has(name) && !hasTargets)) return []; // a formula waits for these states: they are meant
   const entered = new Uint8Array(chain.size);
   for (const [, to] of chain.arrows()) entered[to] = 1;
   if (chain.arrowCount === 0) {

@@ -2,7 +2,7 @@ import { Problem } from "../../chain/problem";
 import { bodySpan, type Rule } from "../context";
 
 /** Formulas about a time until something, which without targets mean the absorbing states. */
-const UNTIL = new Set(["MEANABSORPTION", "ABSORPTIONSD", "ABSORPTIONPROB", "TIMEBEFORE", "QUASISTATIONARY"]);
+export const UNTIL: ReadonlySet<string> = new Set(["MEANABSORPTION", "ABSORPTIONSD", "ABSORPTIONPROB", "TIMEBEFORE", "QUASISTATIONARY"]);
 
 /**
  * A time to failure asked of a table in which nothing is final, and no target named (mistake 17). Seen only where the formulas that

@@ -293,6 +293,10 @@ const WORDS: Readonly<Record<string, Words>> = {
     finding: (f) => `${plural(f.number("blanks"), "blank cell")} beside ${plural(f.number("said"), "typed zero or dash", "typed zeros or dashes")}: no arrow, or not known?`,
     remedy: () => "Blank counts as no arrow. Type 0 where that is meant.",
   },
+  readAsOther: {
+    finding: (f) => `${f.text("where")} reads this range as ${ROLES[f.text("role")]}, not as rates: CTMC.${f.text("name")}.`,
+    remedy: () => "It is not judged as a table of rates.",
+  },
   shownAsZero: {
     finding: (f) => `${plural(f.number("rates"), "rate")} ${f.number("rates") === 1 ? "is" : "are"} shown as 0 and ${f.number("rates") === 1 ? "is" : "are"} not.`,
     remedy: () => "Show more digits, or a scientific format.",
@@ -326,6 +330,8 @@ const WORDS: Readonly<Record<string, Words>> = {
     remedy: () => "Say whether it is meant so.",
   },
 };
+
+const ROLES: Readonly<Record<string, string>> = { probabilities: "probabilities", counts: "counts of jumps", costs: "costs of arrows", resets: "resets" };
 
 function refusal(remedy: Words["remedy"]): Words {
   return { finding: () => "", remedy };

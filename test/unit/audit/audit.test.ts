@@ -139,6 +139,11 @@ describe("mistake 16: absorbing by mistake", () => {
   it.each(["Dead", "Failed", "In default", "Scrapped", "Retired", "Left", "Done", "Closed", "Lost"])("is silent for %s", (name) => {
     expect(complaints(headed("", ["A", "B", name], [[null, 1, 1], [1, null, 1], [null, null, null]]))).toEqual([]);
   });
+  it("is silent where a formula waits for whatever has no exit", () => {
+    const pump = headed("", ["Fit", "Worn", "Under water"], [[null, 1, 0], [1, null, 1], [null, null, null]]);
+    expect(complaints(pump)).toEqual(["noExit"]);
+    expect(complaints(pump, { asked: [{ name: "MEANABSORPTION", hasTargets: false, hasStart: false, hasTimes: false, times: [], where: "Plan!B2" }] })).toEqual([]);
+  });
   it("takes D for default on a rating scale only", () => {
     const grades = [[null, 0.1, 0.01], [0.1, null, 0.02], [0, 0, null]];
     expect(complaints(headed("", ["AAA", "BB+", "D"], grades))).toEqual([]);

@@ -1,5 +1,6 @@
 import { describe, expect, it } from "vitest";
-import { askedOf, othersOf, scanBook, type BookScan, type BookSheet } from "../../../src/audit/book";
+import { audit } from "../../../src/audit/audit";
+import { askedOf, othersOf, roleOf, scanBook, type BookScan, type BookSheet } from "../../../src/audit/book";
 import { callsIn, numbersIn, referencesIn } from "../../../src/audit/formula-calls";
 import { finish } from "../../../src/chain/steps";
 import { findingTexts } from "../../../src/cells/sentences/findings";
@@ -74,7 +75,7 @@ describe("the whole workbook", () => {
     expect(scan.formulas.map(({ name, state, reads, readsText }) => [name, state, reads, readsText])).toEqual([
       ["AVAILABILITY", "fine", 1, "A1:D4"],
       ["MEANABSORPTION", "fine", 1, "A1:D4"],
-      ["TRANSITION", "stale", 1, "Now!A1:D4"],
+      ["TRANSITION", "fine", 1, "Now!A1:D4"],
       ["DISTRIBUTION", "error", 1, "Now!A1:C3"],
       ["STATIONARY", "unregistered", 1, "Now!B2:D4"],
       ["MEANABSORPTION", "error", 0, "'Old Q1'!B3:E6"],
@@ -104,6 +105,38 @@ describe("the whole workbook", () => {
     expect(found).toMatchObject({ sheet: "Now", finding: { span: { row: 6, column: 1 } } });
     expect(findingTexts(found.finding).finding).toContain('"MTBF"');
     expect(scan.findings.map(({ finding }) => finding.code)).toEqual(["firstFailureAsBetween", "formulaShort"]);
+  });
+});
+
+describe("what formulas take a table for", () => {
+  const names = ["Sound", "Corroded", "Closed"];
+  const square = (rows: (string | number)[][]): (string | number)[][] => [["", ...names], ...rows.map((row, i) => [names[i], ...row])];
+  const costs = square([["", 0, 20], [35, "", 25], [80, 0, ""]]);
+  const yearly = square([[0.9, 0.1, 0], [0, 0.8, 0.2], [0, 0, 1]]);
+  const scan = finish(
+    scanBook([
+      sheet("Rates", square([["", 0.15, 0.01], [0.4, "", 0.1], [1.5, 0, ""]])),
+      sheet("Costs", costs),
+      sheet("Yearly", yearly),
+      sheet("Plan", [
+        [["=CTMC.COST(Rates!A1:D4,1,10,{1,2,3},Costs!A1:D4)", 12], ["=CTMC.AVAILABILITY(CTMC.FROMPROBABILITY(Yearly!A1:D4,1,TRUE),1)", 0.5]],
+        [["=CTMC.STATIONARY(Rates!A1:D4)", ""]],
+      ]),
+    ]),
+  );
+  it("costs and probabilities are no faulty rates, and are paired with none", () => {
+    expect(scan.tables.map(({ where, role, stop }) => [where, role, stop])).toEqual([["Rates!A1:D4", "rates", null], ["Costs!A1:D4", "costs", null], ["Yearly!A1:D4", "probabilities", null]]);
+    expect(scan.pairs).toEqual([]);
+    expect(scan.formulas.map(({ name, reads, state }) => [name, reads, state])).toEqual([["COST", 0, "fine"], ["AVAILABILITY", 2, "fine"], ["STATIONARY", 0, "stale"]]);
+  });
+  it("the audit says so, and judges them as what they are", () => {
+    const role = roleOf(scan, 1);
+    expect(role).toEqual({ role: "costs", name: "COST", where: "Plan!A1" });
+    expect(audit(scan.tables[1].cells, { role }).map(({ code }) => code)).toEqual(["readAsOther"]);
+    expect(findingTexts(audit(scan.tables[1].cells, { role })[0]).finding).toBe("Plan!A1 reads this range as costs of arrows, not as rates: CTMC.COST.");
+    const rounded = square([[0.9, 0.1, 0.01], [0, 0.8, 0.2], [0, 0, 1]]);
+    expect(audit(rounded, { role: roleOf(scan, 2) }).map(({ code }) => code)).toEqual(["probabilitySums", "readAsOther"]);
+    expect(roleOf(scan, 0)).toBeUndefined();
   });
 });
 
