@@ -25,6 +25,8 @@ export interface CheckSheet {
 /** Columns of the sheet: together about the width of a printed page. */
 const WIDTHS = [22, 14, 14, 11, 11, 16, 14];
 const MOST_FORMULAS = 200;
+/** About forty printed pages; beyond, a list of arrows is no longer read. */
+const MOST_ARROWS = 2000;
 
 type Line = readonly (HostValue | null)[];
 
@@ -151,8 +153,9 @@ function arrows(sheet: Sheet, { claims, entry, reading }: Looked): void {
   const unit = entry.unit ? plainUnit(entry.unit) : "";
   sheet.title("Arrows");
   sheet.heading("from", "to", "rate", "cell", "in words");
-  for (const { from, to, rate, row, column } of claims)
+  for (const { from, to, rate, row, column } of claims.slice(0, MOST_ARROWS))
     sheet.line(from, to, rate, cellText(within(reading.address, { row, column, rows: 1, columns: 1 })), arrowClaim(rate, unit));
+  if (claims.length > MOST_ARROWS) sheet.line(`and ${claims.length - MOST_ARROWS} more, in the table itself`);
 }
 
 function formulas(sheet: Sheet, { formulas: all }: CheckSheetContext): void {

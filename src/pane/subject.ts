@@ -13,6 +13,8 @@ export interface Subject {
   readonly address: RangeAddress;
   /** "around": found around a cell, follows the table as it grows; otherwise the extent is a person's choice. */
   readonly how: "selection" | "around" | "adjusted";
+  /** Totals and notes right beside the table that were left out of it: "column Total". */
+  readonly leftOut?: readonly string[];
 }
 
 /** Largest range that is read as one table: a square of about 550 states, or a long list. */
@@ -29,8 +31,7 @@ export async function chooseSubject(workbook: Workbook, selection: RangeAddress,
     if (chosen) return chosen;
     if (current && contains(current.address, selection)) return current;
   }
-  const around = await tableAround(workbook, sheets, selection);
-  return around ? { address: around, how: "around" } : current;
+  return (await tableAround(workbook, sheets, selection)) ?? current;
 }
 
 /** The table that now stands around the corner of one found before, after rows or columns were typed beside it. */
@@ -38,8 +39,7 @@ export async function followSubject(workbook: Workbook, subject: Subject): Promi
   if (subject.how !== "around") return subject;
   const { sheet, row, column } = subject.address;
   const inside = { sheet, row: row + 1, column: column + 1, rows: 1, columns: 1 };
-  const around = await tableAround(workbook, await workbook.sheets(), inside);
-  return around ? { address: around, how: "around" } : subject;
+  return (await tableAround(workbook, await workbook.sheets(), inside)) ?? subject;
 }
 
 async function fromSelection(workbook: Workbook, sheets: readonly SheetInfo[], selection: RangeAddress): Promise<Subject | null> {
@@ -67,7 +67,7 @@ function trimmed(contents: Contents): RangeAddress {
   return !read(inner).layout && read(cells).layout ? address : tight;
 }
 
-async function tableAround(workbook: Workbook, sheets: readonly SheetInfo[], cell: RangeAddress): Promise<RangeAddress | null> {
+async function tableAround(workbook: Workbook, sheets: readonly SheetInfo[], cell: RangeAddress): Promise<Subject | null> {
   for (const half of WINDOWS) {
     const row = Math.max(0, cell.row - half);
     const column = Math.max(0, cell.column - half);
@@ -75,17 +75,16 @@ async function tableAround(workbook: Workbook, sheets: readonly SheetInfo[], cel
     const window = usedPart(sheets, asked);
     if (!window) return null;
     const contents = await contentsOf(workbook, window);
-    const found = findTables(cellsFrom(contents.values))
-      .map((table) => within(window, table.span))
-      .find((range) => contains(range, { ...cell, rows: 1, columns: 1 }));
-    if (!found) return null;
+    const table = findTables(cellsFrom(contents.values)).find(({ span }) => contains(within(window, span), { ...cell, rows: 1, columns: 1 }));
+    if (!table) return null;
+    const found = within(window, table.span);
     const whole = usedPart(sheets, { ...window, row: 0, column: 0, rows: Infinity, columns: Infinity });
     const cut =
       (found.row === window.row && window.row > (whole?.row ?? 0)) ||
       (found.column === window.column && window.column > (whole?.column ?? 0)) ||
       (found.row + found.rows === window.row + window.rows && asked.row + asked.rows === window.row + window.rows) ||
       (found.column + found.columns === window.column + window.columns && asked.column + asked.columns === window.column + window.columns);
-    if (!cut) return found;
+    if (!cut) return { address: found, how: "around", leftOut: table.leftOut.map(({ line, label }) => `${line} ${label}`.trim()) };
   }
   return null;
 }

@@ -20,8 +20,8 @@ export function findingCard(session: Session, item: Item): VElement {
     h("div", { class: "sr-card-head" }, severityMark(item.finding.severity), item.address && jump(session, item.address)),
     h("p", null, item.sentence),
     item.also.length > 0 && alsoIn(session, item),
-    // A refusal says itself what is needed.
-    item.advice !== "" && !item.finding.problem && h("p", { class: "sr-soft" }, item.advice),
+    // A refusal says itself what is needed, unless another finding is its cause.
+    item.advice !== "" && (!item.finding.problem || item.finding.details.explained === true) && h("p", { class: "sr-soft" }, item.advice),
     item.formerly &&
       h("p", { class: "sr-soft" }, `Accepted by ${item.formerly.initials} on ${dateWords(item.formerly.date)} (${item.formerly.reason}), but the values have changed since.`),
     accepting

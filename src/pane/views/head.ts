@@ -48,6 +48,7 @@ export function head(session: Session): VElement {
           })
         : "unit not known",
       layout ? ` · ${formWords(layout)}` : "",
+      ...(subject.leftOut ?? []).map((line) => ` · ${line} left out`),
       " ",
       h(
         "button",

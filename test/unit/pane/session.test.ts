@@ -58,6 +58,14 @@ describe("what the pane looks at", () => {
     expect(session.state.looked?.claims).toHaveLength(5);
   });
 
+  it("leaves a column of totals out and says so", async () => {
+    const totals: Typed[][] = [["from", "Up", "Down", "Total"], ["Up", "", 1, 1], ["Down", 2, "", 2]];
+    const { place, select, session } = await started({ Pump: totals });
+    await select(cell("Pump", 1, 1));
+    expect(place()).toBe("Pump A1:C3");
+    expect(session.state.subject?.leftOut).toEqual(["column Total"]);
+  });
+
   it("keeps the table while a person works elsewhere, and moves on to another table", async () => {
     const other: Typed[][] = [["", "Up", "Down"], ["Up", "", 1], ["Down", 2, ""]];
     const { place, select } = await started({ Pump: PUMP, Other: other });
