@@ -82,6 +82,18 @@ describe("formulas that lead back to themselves", () => {
     expect([value("A1"), value("B1"), value("D1")]).toEqual([5, 5, 5]);
   });
 
+  test("across sheets, and of any length", () => {
+    const book = new Book();
+    book.apply([{ kind: "addSheet", id: "p", name: "My plan" }], "Add");
+    const length = 30_000;
+    const edits: Edit[] = Array.from({ length }, (_, row) => ({ kind: "put", sheet: "s1", row, column: 0, value: row === length - 1 ? "='My plan'!A1" : `=A${row + 2}` }));
+    book.apply([...edits, { kind: "put", sheet: "p", row: 0, column: 0, value: "=Sheet1!A1" }], "Fill");
+    expect(book.view("s1", 17, 0).sentence).toBe("The formula leads back to itself: Sheet1!A1 → Sheet1!A2 → Sheet1!A3 → Sheet1!A4 → … → Sheet1!A1.");
+    expect(book.view("p", 0, 0).value).toBe("#REF!");
+    book.apply([{ kind: "put", sheet: "p", row: 0, column: 0, value: 3 }], "Mend");
+    expect(book.view("s1", 0, 0).value).toBe(3);
+  });
+
   test("a formula that reads itself, directly or in a range", () => {
     const { at } = sheet({ A1: "=A1", B3: "=SUM(B1:B9)" });
     expect(at("A1").sentence).toBe("The formula leads back to itself: A1 → A1.");

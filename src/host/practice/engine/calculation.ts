@@ -5,7 +5,7 @@
  * evaluation are handled alike, and a formula that is met again while it waits is known to lead back to itself.
  * Longer than most files, since marking, evaluating and spilling share one state.
  */
-import { cellText, COLUMN_LIMIT, keyOf, overlap, ROW_LIMIT, type Area, type Rect } from "./address";
+import { cellText, columnOf, COLUMN_LIMIT, keyOf, overlap, quoteSheet, rowOf, ROW_LIMIT, type Area, type Rect } from "./address";
 import type { CustomFunctionHost, CustomOutcome } from "./custom-functions";
 import { DependencyIndex } from "./dependency-index";
 import { Evaluation, type CustomParameter, type Sight } from "./evaluate";
@@ -103,7 +103,7 @@ export class Calculation {
       sheet.formulas.clear();
       sheet.contents.forEach((content, key) => {
         if (content.formula === null) return;
-        this.install(sheet, key % ROW_LIMIT, Math.floor(key / ROW_LIMIT), content.formula);
+        this.install(sheet, rowOf(key), columnOf(key), content.formula);
         this.note(sheet, key);
       });
     }
@@ -224,16 +224,19 @@ export class Calculation {
       for (const cell of to) stack.push(cell);
       return;
     }
-    const open = stack.slice(stack.lastIndexOf(met)).filter((cell) => cell.waiting && cell.marked);
-    const chain = open.filter((cell, index) => open.lastIndexOf(cell) === index);
+    // From the last: a cell asked for twice stands in the stack twice, and waits at the later place.
+    const round = new Set<FormulaCell>();
+    for (let at = stack.length - 1; !round.has(met); at--) if (stack[at]!.waiting && stack[at]!.marked) round.add(stack[at]!);
+    const chain = [...round].reverse();
     const fault = this.circle(chain);
     for (const cell of chain) this.finish(cell, fault);
   }
 
   private circle(chain: readonly FormulaCell[]): Fault {
-    const names = chain.map((cell) => (chain.every((other) => other.sheet === cell.sheet) ? "" : `${cell.sheet.properties.name}!`) + cellText(cell.row, cell.column));
-    const shown = names.length > 5 ? [...names.slice(0, 4), "…"] : names;
-    return new Fault("#REF!", `The formula leads back to itself: ${[...shown, names[0]].join(" → ")}.`);
+    const oneSheet = chain.every((cell) => cell.sheet === chain[0]!.sheet);
+    const name = (cell: FormulaCell) => (oneSheet ? "" : `${quoteSheet(cell.sheet.properties.name)}!`) + cellText(cell.row, cell.column);
+    const shown = chain.length > 5 ? [...chain.slice(0, 4).map(name), "…"] : chain.map(name);
+    return new Fault("#REF!", `The formula leads back to itself: ${[...shown, name(chain[0]!)].join(" → ")}.`);
   }
 
   /** Marked formulas among the cells that a formula names. */
