@@ -245,6 +245,25 @@ describe("the practice workbook's sheet", () => {
     await sheet.isActive("A21");
   });
 
+  it("draws merged cells as one, steps over them, and splits them again", async () => {
+    const { page } = sheet;
+    await sheet.type("P2", "over three");
+    await sheet.go("P2:R3");
+    await page.getByRole("button", { name: "Sheet", exact: true }).click();
+    await page.getByRole("menuitem", { name: "Merge the selected cells" }).click();
+    await page.waitForFunction(() => document.getElementById("r1c15")?.getAttribute("aria-colspan") === "3");
+    expect((await sheet.cell("P2").boundingBox())!.width).toBe(3 * 98);
+    expect((await sheet.cell("P2").boundingBox())!.height).toBe(2 * 27);
+    expect(await sheet.cell("Q3").isVisible()).toBe(false);
+    await sheet.go("P2");
+    await page.keyboard.press("ArrowRight");
+    await sheet.isActive("S2");
+    await page.keyboard.press("ArrowLeft");
+    await sheet.isActive("P2");
+    await page.keyboard.press("Control+z");
+    await page.waitForFunction(() => document.getElementById("r1c15")?.getAttribute("aria-colspan") === null);
+  });
+
   it("shows numbers in every named format, with more and fewer decimals, and never cuts one", async () => {
     const { page } = sheet;
     const choose = async (name: string): Promise<void> => {

@@ -13,10 +13,15 @@ const OWN = "application/x-stayrate-cells";
 
 export function listenToClipboard(session: Session, grid: Grid, outlines: Outlines, editor: Editor): void {
   let cut: Clip | null = null;
+  /** Text selected elsewhere on the page, in the pane say, is copied as such. */
+  const textSelected = (): boolean => {
+    const selection = window.getSelection();
+    return selection !== null && !selection.isCollapsed && !grid.element.contains(selection.anchorNode);
+  };
   const ours = (event: Event): boolean => !editor.open && (event.target === grid.element || event.target === document.body || (event.target instanceof Node && grid.element.contains(event.target)));
 
   const take = (event: ClipboardEvent, isCut: boolean): void => {
-    if (!ours(event) || !event.clipboardData) return;
+    if (!ours(event) || textSelected() || !event.clipboardData) return;
     event.preventDefault();
     let clip: Clip;
     try {

@@ -133,6 +133,10 @@ export class Commands {
     });
   }
 
+  merge(merged: boolean): void {
+    this.run(() => this.session.perform([{ kind: merged ? "merge" : "unmerge", area: this.worked() }], merged ? "merging cells" : "parting cells"));
+  }
+
   nextSheet(by: 1 | -1): void {
     this.run(() => {
       const shown = this.session.book.sheets().filter((sheet) => !sheet.hidden);

@@ -227,7 +227,7 @@ export class Editor {
     const { element } = this.inCell;
     element.classList.toggle("away", away);
     if (away) return;
-    const box = grid.box({ row: edit.row, column: edit.column, rows: 1, columns: 1 });
+    const box = grid.box(this.session.mergedAt(edit.row, edit.column) ?? { row: edit.row, column: edit.column, rows: 1, columns: 1 });
     const left = box.left - grid.element.scrollLeft - GUTTER;
     element.style.left = `${left}px`;
     element.style.top = `${box.top - grid.element.scrollTop - HEADS}px`;

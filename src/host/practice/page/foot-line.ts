@@ -9,6 +9,11 @@ import type { Session } from "./session";
 const SUMMED = 20_000;
 const CALM = 120;
 
+/** Where the command key does what the control key does elsewhere. */
+function onThisKeyboard(keys: string): string {
+  return /^(Mac|iP)/.test(navigator.platform) ? keys.replaceAll("Ctrl", "Cmd") : keys;
+}
+
 export class FootLine {
   readonly element: HTMLElement;
   private readonly follows = el("span", { class: "follows" });
@@ -24,7 +29,7 @@ export class FootLine {
     private readonly startOver: () => void,
   ) {
     const keysWord = word("Keys", () => this.showKeys(this.keys.hidden === true, keysWord), { "aria-expanded": "false", "aria-controls": "keys" });
-    this.keys.append(el("dl", {}, ...KEYS.flatMap(([key, what]) => [el("dt", {}, key), el("dd", {}, what)])));
+    this.keys.append(el("dl", {}, ...KEYS.flatMap(([key, what]) => [el("dt", {}, onThisKeyboard(key)), el("dd", {}, what)])));
     this.keys.addEventListener("keydown", (event) => {
       if (event.key !== "Escape") return;
       this.showKeys(false, keysWord);

@@ -308,12 +308,14 @@ export class Grid {
     }
     const row = parts.at;
     const view = session.book.view(session.sheet, row, column);
-    const width = session.columns.size(column);
+    const merged = session.mergedAt(row, column);
+    const covered = merged !== null && (merged.row !== row || merged.column !== column);
+    const { width, height } = merged ? this.box(merged) : { width: session.columns.size(column), height: ROW_HEIGHT };
     const text = view.kind === "blank" ? "" : fitted(view, width, this.measure, session.book.locale.decimal);
     const chosen = inside(area, { row, column });
     const active = session.active.row === row && session.active.column === column;
     const room = view.kind === "text" && !this.measure.fits(text, view.bold, width) ? this.roomFor(text, view, row, column) : width;
-    const drawn = `${row},${column},${this.left(column)},${width},${room},${view.kind},${view.bold},${view.busy},${chosen},${active},${view.anchor !== null},${view.extent !== null},${text},${view.sentence ?? ""}`;
+    const drawn = `${row},${column},${this.left(column)},${width},${height},${covered},${room},${view.kind},${view.bold},${view.busy},${chosen},${active},${view.anchor !== null},${view.extent !== null},${text},${view.sentence ?? ""}`;
     if (cell.drawn === drawn) return;
     cell.drawn = drawn;
     cell.cell.id = cellId({ row, column });
@@ -321,8 +323,11 @@ export class Grid {
     set(cell.cell, "aria-selected", chosen ? "true" : "false");
     set(cell.cell, "aria-label", active || view.sentence !== null || view.anchor !== null ? spoken(view, row, column) : null);
     cell.cell.className = classes(view, room > width);
-    cell.cell.hidden = width === 0;
+    cell.cell.hidden = width === 0 || covered;
     place(cell.cell, this.left(column), width);
+    cell.cell.style.height = height === ROW_HEIGHT ? "" : `${height}px`;
+    set(cell.cell, "aria-rowspan", merged && merged.rows > 1 ? merged.rows : null);
+    set(cell.cell, "aria-colspan", merged && merged.columns > 1 ? merged.columns : null);
     cell.text.style.width = room > width ? `${room - 1}px` : "";
     if (room > width) cell.text.style.setProperty("--own", `${width - 1}px`);
     if (cell.text.textContent !== text) cell.text.textContent = text;

@@ -56,7 +56,7 @@ export class Outlines {
     const area = areaOf(session.selection);
     const many = area.rows * area.columns > 1;
     this.at(this.selection, many ? area : null);
-    this.at(this.active, { ...active, rows: 1, columns: 1 });
+    this.at(this.active, session.mergedAt(active.row, active.column) ?? { ...active, rows: 1, columns: 1 });
     this.at(this.filling, this.fillArea);
     this.at(this.copied, this.copiedArea?.sheet === session.sheet ? this.copiedArea : null);
     this.at(this.spill, this.spillAround(active.row, active.column));

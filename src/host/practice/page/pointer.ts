@@ -41,7 +41,8 @@ export function listenToPointer(session: Session, grid: Grid, outlines: Outlines
       return { kind: "fill", source, target: source };
     }
     const hit = grid.cellAt(event.clientX, event.clientY);
-    const cell = { row: hit.row, column: hit.column };
+    const merged = session.mergedAt(hit.row, hit.column);
+    const cell = { row: merged?.row ?? hit.row, column: merged?.column ?? hit.column };
     const edge = edgeAt(event);
     if (edge !== null && session.readOnly === null) return { kind: "width", column: edge, x: event.clientX, width: session.columns.size(edge) };
     if (editor.pointing) {

@@ -26,6 +26,8 @@ export interface Ground {
   readonly rows: Axis;
   readonly columns: Axis;
   filled(row: number, column: number): boolean;
+  /** The merged area that a cell lies in, or null. */
+  mergedAt(row: number, column: number): Area | null;
   /** Smallest area from the top left cell on that holds everything filled; 1 × 1 when the sheet is empty. */
   used(): { readonly rows: number; readonly columns: number };
 }
@@ -67,10 +69,16 @@ export function sameArea(a: Area, b: Area): boolean {
   return a.row === b.row && a.column === b.column && a.rows === b.rows && a.columns === b.columns;
 }
 
-/** One shown line on. */
+/** One shown line on; a merged area is one step. */
 export function stepped(ground: Ground, from: Cell, direction: Direction): Cell {
   const { by, axis } = along[direction];
-  return axis === "row" ? { ...from, row: ground.rows.step(from.row, by) } : { ...from, column: ground.columns.step(from.column, by) };
+  const merged = ground.mergedAt(from.row, from.column);
+  const edge = (start: number, count: number): number => (by === 1 ? start + count - 1 : start);
+  const row = merged ? edge(merged.row, merged.rows) : from.row;
+  const column = merged ? edge(merged.column, merged.columns) : from.column;
+  const next = axis === "row" ? { ...from, row: ground.rows.step(row, by) } : { ...from, column: ground.columns.step(column, by) };
+  const met = ground.mergedAt(next.row, next.column);
+  return met ? { row: met.row, column: met.column } : next;
 }
 
 /**

@@ -65,7 +65,8 @@ export class Sentence {
   private draw(): void {
     const { session, grid, element } = this;
     const active = session.book.view(session.sheet, session.active.row, session.active.column);
-    this.announcer.speak(active.sentence === null ? "" : `${cellText(session.active.row, session.active.column)} ${active.text}: ${active.sentence}`);
+    // While something is typed, the names that complete it are spoken instead.
+    if (!this.editor.open) this.announcer.speak(active.sentence === null ? "" : `${cellText(session.active.row, session.active.column)} ${active.text}: ${active.sentence}`);
     const cell = this.editor.open ? null : this.cell();
     const sentence = cell && session.book.view(session.sheet, cell.row, cell.column).sentence;
     const scroller = grid.element;

@@ -4,7 +4,7 @@
  */
 import { COLUMN_LIMIT, EditRefused, ROW_LIMIT, areaText, type Area, type Book, type Edit } from "../engine";
 import { Axis } from "./axis";
-import { at, areaOf, over, type Cell, type Ground, type Selection } from "./selection";
+import { at, areaOf, inside, over, type Cell, type Ground, type Selection } from "./selection";
 
 export const ROW_HEIGHT = 27;
 
@@ -14,6 +14,7 @@ export class Session implements Ground {
   readonly rows = new Axis(ROW_LIMIT, ROW_HEIGHT);
   readonly columns: Axis;
   private shown: string;
+  private mergedAreas: readonly Area[] = [];
   private readonly selections = new Map<string, Selection>();
   private readonly listeners = new Map<SessionEvent, Set<() => void>>();
   /** Why nothing can be changed, or null. */
@@ -43,7 +44,7 @@ export class Session implements Ground {
     return this.book.sheets().some((sheet) => sheet.id === id && sheet.hidden);
   }
 
-  /** Reads widths and hidden lines of the shown sheet. */
+  /** Reads widths, hidden lines and merged areas of the shown sheet. */
   private measure(): void {
     const rows = new Map<number, number>();
     for (const row of this.book.hiddenRows(this.shown)) rows.set(row, 0);
@@ -51,6 +52,7 @@ export class Session implements Ground {
     const columns = new Map<number, number>(this.book.widths(this.shown));
     for (const column of this.book.hiddenColumns(this.shown)) columns.set(column, 0);
     this.columns.setSizes(columns);
+    this.mergedAreas = this.book.merged(this.shown);
   }
 
   get sheet(): string {
@@ -135,6 +137,10 @@ export class Session implements Ground {
 
   filled(row: number, column: number): boolean {
     return this.book.view(this.shown, row, column).kind !== "blank";
+  }
+
+  mergedAt(row: number, column: number): Area | null {
+    return this.mergedAreas.find((area) => inside(area, { row, column })) ?? null;
   }
 
   used(): { rows: number; columns: number } {

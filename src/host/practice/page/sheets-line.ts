@@ -102,6 +102,10 @@ export class SheetsLine {
         { text: "Show rows in the selection", act: () => this.commands.hide("rows", false) },
         { text: "Show columns in the selection", act: () => this.commands.hide("columns", false) },
       ],
+      [
+        { text: "Merge the selected cells", act: () => this.commands.merge(true), disabled: session.area.rows * session.area.columns === 1 },
+        { text: "Part merged cells", act: () => this.commands.merge(false) },
+      ],
     ];
   }
 

@@ -9,6 +9,7 @@ function ground(cells: readonly string[], hiddenRow?: number): Ground {
     rows,
     columns: new Axis(1_000, 98),
     filled: (row, column) => (cells[row]?.[column] ?? ".") !== ".",
+    mergedAt: () => null,
     used: () => ({ rows: cells.length, columns: Math.max(1, ...cells.map((r) => r.length)) }),
   };
 }
@@ -62,6 +63,14 @@ describe("moving", () => {
     expect(areaOf(selection)).toEqual({ row: 0, column: 0, rows: 2, columns: 2 });
     expect(wander(sheet, at(0, 0), "down").active).toEqual({ row: 1, column: 0 });
     expect(wander(sheet, at(0, 0), "down").anchor).toEqual({ row: 1, column: 0 });
+  });
+  it("takes a merged area as one step, and enters it at its first cell", () => {
+    const area = { row: 1, column: 1, rows: 2, columns: 3 };
+    const merged: Ground = { ...sheet, mergedAt: (row, column) => (row >= 1 && row <= 2 && column >= 1 && column <= 3 ? area : null) };
+    expect(stepped(merged, { row: 1, column: 1 }, "right")).toEqual({ row: 1, column: 4 });
+    expect(stepped(merged, { row: 1, column: 1 }, "down")).toEqual({ row: 3, column: 1 });
+    expect(stepped(merged, { row: 2, column: 4 }, "left")).toEqual({ row: 1, column: 1 });
+    expect(stepped(merged, { row: 1, column: 1 }, "left")).toEqual({ row: 1, column: 0 });
   });
   it("extends from the corner that stays", () => {
     const once = extendTo(at(3, 3), { row: 1, column: 5 });
