@@ -3,7 +3,7 @@ import { read } from "../table/read";
 import type { Cells, CellValue, Reading } from "../table/rate-table";
 import { textOf } from "./body";
 import type { Span } from "./finding";
-import { meansCount, meansExposure, meansFrom, meansMeanTime, meansNote, meansProbability, meansRate, meansTo, meansTotal, saysRate, timeUnits } from "./words";
+import { meansCount, meansExposure, meansFigure, meansFrom, meansMeanTime, meansNote, meansProbability, meansRate, meansTime, meansTo, meansTotal, saysRate, timeUnits } from "./words";
 
 /** A line of the range that is not part of the rates. */
 export interface Aside {
@@ -70,6 +70,13 @@ function recogniseSquare(cells: Cells): Recognised | null {
   if (rows.length > 3 && columns.slice(1).every((column) => isEmpty(cell(rows[1], column)) || isUnit(cell(rows[1], column))) && columns.slice(1).some((column) => isUnit(cell(rows[1], column)))) {
     drop("row", rows[1], "units", textOf(cell(rows[1], columns.find((column, k) => k > 0 && isUnit(cell(rows[1], column)))!)));
   }
+  // A column of numbers or groups before the names.
+  while (columns.length > 3) {
+    const top = new Set(columns.slice(1).map((column) => nameKey(textOf(cell(rows[0], column)))));
+    const shared = (column: number): number => rows.slice(1).filter((row) => isWord(cell(row, column)) && top.has(nameKey(textOf(cell(row, column))))).length;
+    if (!(shared(columns[1]) >= 2 && shared(columns[1]) > shared(columns[0]))) break;
+    drop("column", columns[0], "notes", textOf(cell(rows[0], columns[0])));
+  }
   // Columns of words: notes, sources, units. The first is the names.
   for (const column of columns.slice(1)) {
     const label = textOf(cell(rows[0], column));
@@ -78,8 +85,8 @@ function recogniseSquare(cells: Cells): Recognised | null {
     const words = filled.filter(isWord).length;
     if (filled.length > 0 && words === filled.length && (meansNote(label) || words > 1 || label !== "")) {
       drop("column", column, filled.every(isUnit) ? "units" : "notes", label || textOf(filled[0]));
-    } else if (meansExposure(label)) drop("column", column, "exposure", label);
-    else if (meansNote(label)) drop("column", column, "notes", label);
+    } else if (meansExposure(label) || (meansTime(label) && countsOnly(cells, rows, columns))) drop("column", column, "exposure", label);
+    else if (meansNote(label) || meansFigure(label)) drop("column", column, "notes", label);
   }
   // A row of words at the end: notes under the table.
   while (rows.length > 3) {
@@ -122,8 +129,8 @@ function dropTotals(cells: Cells, rows: number[], columns: number[], drop: (line
   const shape = bodyRows().length - bodyColumns().length;
   const columnSums = (): boolean => sums(bodyRows().filter((row) => row !== lastRow || !byRowLabel), bodyColumns(), (row, column) => number(row, column));
   const rowSums = (): boolean => sums(bodyColumns().filter((column) => column !== lastColumn || !byColumnLabel), bodyRows(), (column, row) => number(row, column));
-  const unnamedColumn = columnLabel === "" || !headedRows;
-  const unnamedRow = rowLabel === "" || !headedColumns;
+  const unnamedColumn = !headedRows || !namedRow(cells, rows, columns[0], columnLabel);
+  const unnamedRow = !headedColumns || !headedColumn(cells, rows, columns, rowLabel);
   const both = shape === 0 && unnamedColumn && unnamedRow && number(lastRow, lastColumn) > 0 && columnSums() && rowSums();
   const dropColumn = byColumnLabel || both || (shape < 0 && unnamedColumn && columnSums());
   const dropRow = byRowLabel || both || (shape > 0 && unnamedRow && rowSums());
@@ -147,6 +154,16 @@ function sums(lines: readonly number[], across: readonly number[], number: (line
     if (size > 0) told++;
   }
   return told >= Math.min(2, lines.length) && told > 0;
+}
+
+/** Whether everything right of the names is a whole number, 0 or more, or blank: counts. */
+function countsOnly(cells: Cells, rows: readonly number[], columns: readonly number[]): boolean {
+  return rows.slice(1).every((row) =>
+    columns.slice(1, -1).every((column) => {
+      const value = cells[row]?.[column] ?? null;
+      return isVoid(value) || (typeof value === "number" && Number.isInteger(value) && value >= 0);
+    }),
+  );
 }
 
 function namedRow(cells: Cells, rows: readonly number[], column: number, label: string): boolean {

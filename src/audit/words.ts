@@ -71,6 +71,16 @@ export function meansExposure(text: string): boolean {
   return /\b(exposure|time in state|time observed|time at risk|person years?|unit (hours|days|years)|operating (hours|time)|(hours|days|years) (in state|observed|at risk|run)|hours run)\b/iu.test(text);
 }
 
+/** "Hours", "Time (h)": a time, if the column stands beside counts. */
+export function meansTime(text: string): boolean {
+  return /^(total )?(time|hours|days|years|h|duration)( [\p{L}\d ]+)?$/iu.test(plainWords(text));
+}
+
+/** A figure of each state that people keep beside its rates. */
+export function meansFigure(text: string): boolean {
+  return /\b(costs?|price|rewards?|utilit(y|ies)|value|mean stay|stay|share|availability|income|penalty|weight|target)\b/iu.test(text);
+}
+
 export function meansFrom(text: string): boolean {
   return /^(from|from state|state from|start|source state|origin|old state|leaving|present state|current state|before)$/u.test(plainWords(text));
 }

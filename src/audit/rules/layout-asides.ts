@@ -1,4 +1,5 @@
-import type { Finding } from "../finding";
+import { textOf } from "../body";
+import { cellSpan, type Finding } from "../finding";
 import type { Aside, Recognised } from "../recognise";
 
 /**
@@ -17,6 +18,7 @@ export function layoutAsides(recognised: Recognised, span: (aside: Aside) => Fin
         span: exposure ? span(exposure) : null,
         details: { form: reading.layout?.form ?? "square", columns: columns.map((column) => column + 1), exposure: exposure ? exposure.index + 1 : null },
       },
+      ...zeroCounts(recognised),
     ];
   }
   if (others.length === 0) return [];
@@ -34,6 +36,24 @@ export function layoutAsides(recognised: Recognised, span: (aside: Aside) => Fin
         rows: [rows[0] + 1, rows[rows.length - 1] + 1],
         selection: selection ? [selection.row, selection.column, selection.rows, selection.columns] : null,
       },
+    },
+  ];
+}
+
+/** A counted arrow with no event: in a list, where nobody lists what cannot happen. */
+function zeroCounts({ reading, cells, rows, columns }: Recognised): Finding[] {
+  const { layout } = reading;
+  if (layout?.form !== "list") return [];
+  const none = rows.map((row, k) => ({ row, k })).filter(({ k }) => k >= layout.body.row && cells[k][2] === 0);
+  if (none.length === 0) return [];
+  const [first, ...others] = none;
+  return [
+    {
+      code: "zeroEvents",
+      severity: "note",
+      span: cellSpan(first.row, columns[2]),
+      also: others.map(({ row }) => cellSpan(row, columns[2])),
+      details: { fromName: textOf(cells[first.k][0]), toName: textOf(cells[first.k][1]), arrows: none.length, counted: true },
     },
   ];
 }

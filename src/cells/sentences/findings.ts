@@ -135,6 +135,10 @@ const WORDS: Readonly<Record<string, Words>> = {
         : "Every column sums to 0 and not every row: columns seem to be from, rows to.",
     remedy: () => "Turn the table over (a transposed copy), so that rows are from and columns are to.",
   },
+  listReversed: {
+    finding: (f) => `The headings say "${f.text("first")}", "${f.text("second")}": formulas take the first column as from, the second as to.`,
+    remedy: () => "Exchange the two columns: =CTMC.FROMLIST(CHOOSECOLS(list, 2, 1, 3)).",
+  },
   probabilityTable: {
     finding: () => "Every row sums to 1 and nothing is negative: this is a table of probabilities, not of rates.",
     remedy: () => "Convert it: =CTMC.FROMPROBABILITY(table, period) gives the rates per unit of the period.",
@@ -286,7 +290,7 @@ const WORDS: Readonly<Record<string, Words>> = {
     remedy: (f) => `${f.text("where")} gives long-run figures; for that date use a formula with the time.`,
   },
   zeroEvents: {
-    finding: (f) => `${f.text("fromName")} → ${f.text("toName")} is listed with rate 0${f.number("arrows") > 1 ? `, and ${f.number("arrows") - 1} more` : ""}.`,
+    finding: (f) => `${f.text("fromName")} → ${f.text("toName")} is listed with ${f.has("counted") ? "no event" : "rate 0"}${f.number("arrows") > 1 ? `, and ${f.number("arrows") - 1} more` : ""}.`,
     remedy: () => "No event seen is not a rate of 0: =CTMC.RATEINTERVAL(0, exposure) gives its upper bound.",
   },
   blanksAmongZeros: {
@@ -323,7 +327,7 @@ const WORDS: Readonly<Record<string, Words>> = {
   },
   labelAlone: {
     finding: (f) => `${f.text("name")} has a ${f.text("side")} and no ${f.text("side") === "row" ? "column" : "row"}.`,
-    remedy: () => "Select the whole table, or add the missing line.",
+    remedy: (f) => `Leave that ${f.text("side")} out, or add the ${f.text("side") === "row" ? "column" : "row"} that is missing.`,
   },
   largestArrow: {
     finding: (f) => `Largest arrow: ${f.text("fromName")} → ${f.text("toName")} at ${f.figure("rate")} per time unit.`,

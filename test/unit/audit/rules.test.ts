@@ -275,6 +275,22 @@ describe("tables as people keep them", () => {
     only(list, "countsBesideTime");
     expect(findingTexts(findingOf(list, "countsBesideTime")!).remedy).toContain("FROMLIST");
   });
+  it("columns before the names, and figures of each state behind the rates", () => {
+    only([["No.", "State", ...three], ...rows.map((row, i) => [i + 1, ...row])], "linesAside");
+    only([["", "", ...three], ...rows.map((row, i) => [i === 0 ? "in service" : null, ...row])], "linesAside");
+    only([["", ...three, "Cost per h"], ...rows.map((row, i) => [...row, 10 * i])], "linesAside");
+    only([["", ...three, "Exits out"], ...rows.map((row) => [...row, row.slice(1).reduce<number>((sum, rate) => sum + Number(rate ?? 0), 0)])], "totalsSelected");
+    only([["", ...three, "Hours"], ...[[0, 12, 3], [10, 0, 2], [5, 0, 0]].map((row, i) => [three[i], ...row, 900])], "countsBesideTime");
+  });
+  it("a list whose headings say to before from is not taken silently", () => {
+    const list = [["To", "From", "Rate"], ["Down", "Up", 0.1], ["Up", "Down", 2]];
+    expect(findingOf(list, "listReversed")).toMatchObject({ severity: "stop", remedy: "transposeCopy" });
+    expect(complaints([["From", "To", "Rate"], ["Up", "Down", 0.1], ["Down", "Up", 2]])).toEqual([]);
+  });
+  it("a counted arrow without an event is noted", () => {
+    const list = [["From", "To", "Count", "Exposure (h)"], ["Up", "Down", 4, 1200], ["Down", "Up", 0, 60]];
+    expect(findingOf(list, "zeroEvents")).toMatchObject({ severity: "note", span: { row: 2, column: 2 } });
+  });
   it("mean times in a list", () => {
     expect(complaints([["From", "To", "Mean time (h)"], ["Up", "Down", 400], ["Down", "Up", 8]])).toEqual(["meanTimes"]);
   });
