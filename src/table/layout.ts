@@ -35,7 +35,8 @@ export function squareLayout(cells: Cells, options: { readonly exact?: boolean }
   const [rows, columns] = headings === "none" ? unheadedShape(cells, extent, options.exact ?? false) : headedShape(extent, headings);
   if (rows !== columns || rows === 0) {
     if (row + column > 0 && rows === 0 && columns === 0) return refused(new Problem("rangeEmpty"));
-    return refused(new Problem("notSquare", { rows, columns, headings, span: [row, column, Math.max(rows, 1), Math.max(columns, 1)] }));
+    const span = [row, column, Math.max(rows, 1), Math.max(columns, 1)];
+    return refused(new Problem("notSquare", { rows, columns, headings, span, ...(headings === "both" ? unmatched(cells, rows, columns) : {}) }));
   }
   const size = rows;
   if (size === 1 && headings === "none" && isText(cellAt(cells, 0, 0)) && extent.rows * extent.columns === 1) return refused(new Problem("rangeEmpty"));
@@ -52,6 +53,16 @@ export function squareLayout(cells: Cells, options: { readonly exact?: boolean }
 
 function refused(problem: Problem): LayoutReading {
   return { layout: null, problems: [problem] };
+}
+
+/** The first heading on the longer side that the other side lacks: a total, a note, a state left out. */
+function unmatched(cells: Cells, rows: number, columns: number): { side: string; index: number; name: string } | null {
+  const beside = Array.from({ length: rows }, (_, k) => nameOf(cellAt(cells, k + 1, 0)));
+  const above = Array.from({ length: columns }, (_, k) => nameOf(cellAt(cells, 0, k + 1)));
+  const [side, longer, shorter] = rows > columns ? ["row", beside, above] as const : ["column", above, beside] as const;
+  const keys = new Set(shorter.map((name) => (name === null ? null : nameKey(name))));
+  const index = longer.findIndex((name) => name !== null && !keys.has(nameKey(name)));
+  return index < 0 ? null : { side, index, name: longer[index]! };
 }
 
 function everyCell(cells: Cells, test: (cell: CellValue) => boolean): boolean {
@@ -147,15 +158,17 @@ function sameNames(cells: Cells, length: number): boolean {
 }
 
 /**
- * The same two or more different whole numbers along the first row and down the first column: headings without a corner
- * word, or the rates of a symmetric table. Repeated or broken numbers cannot be state numbers, hence are rates.
+ * The same two or more different numbers along the first row and down the first column: headings without a corner word, such
+ * as levels 0, 1, 2, or the rates of a symmetric table. Repeated numbers cannot be headings, hence are rates.
  */
 function numbersAsHeadings(cells: Cells, length: number): boolean {
   const seen = new Set<number>();
   for (let k = 1; k < length; k++) {
     const above = cellAt(cells, 0, k);
-    if (typeof above !== "number" || above !== cellAt(cells, k, 0) || !Number.isInteger(above) || above < 1 || seen.has(above)) return false;
-    seen.add(above);
+    const beside = cellAt(cells, k, 0);
+    const number = isEmpty(above) ? 0 : above;
+    if (typeof number !== "number" || number !== (isEmpty(beside) ? 0 : beside) || seen.has(number)) return false;
+    seen.add(number);
   }
   return seen.size >= 2;
 }

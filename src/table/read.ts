@@ -1,3 +1,5 @@
+import { Problem } from "../chain/problem";
+import { isVoid } from "./cell";
 import { listLikeness, readList } from "./list";
 import type { Cells, Reading, RateTable } from "./rate-table";
 import { readSquare } from "./square";
@@ -7,13 +9,22 @@ import { readSquare } from "./square";
  *
  * Problems come in the order in which a formula refuses: layout, then cell by cell, then diagonals; each carries the cells
  * concerned as `details.span` = [row, column, rows, columns] in the given range, from 0. A list with a few broken
- * rows is read as a list, so that the rows are named, whenever it does not read as a square.
+ * rows, or with columns behind it, is refused as a list, whenever it does not read as a square.
  */
 export function read(cells: Cells): Reading {
   const likeness = listLikeness(cells);
   if (likeness === "list") return readList(cells);
   const square = readSquare(cells);
-  return likeness === "nearly" && square.problems.length > 0 ? readList(cells) : square;
+  if (square.problems.length === 0) return square;
+  if (likeness === "nearly") return readList(cells);
+  return square.layout ? square : (tooWideList(cells) ?? square);
+}
+
+/** A list with more columns behind it, such as units or sources: they are not part of the form. */
+function tooWideList(cells: Cells): Reading | null {
+  if (listLikeness(cells.map((row) => row.slice(0, 3))) !== "list") return null;
+  const column = 3 + Math.min(...cells.map((row) => row.slice(3).findIndex((cell) => !isVoid(cell))).filter((at) => at >= 0));
+  return { layout: null, problems: [new Problem("listTooWide", { column, span: [0, column, cells.length, 1] })], table: null };
 }
 
 /** The table in a range of cells. @throws the first of the problems of `read` */

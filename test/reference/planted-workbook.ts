@@ -88,7 +88,7 @@ export const plantedWorkbook: readonly PlantedSheet[] = [
     name: "Ferry 2", layout: "list with further columns",
     lines: [["From", "To", "Risk per year", "Source"], ["Sailing", "Docked", 0.2, "log"], ["Docked", "Sailing", 0.6, "log"]],
     faults: [{ mistake: 7, codes: ["probabilityLabel"] }],
-    refusals: ["notSquare", "listWithMore"],
+    refusals: ["listTooWide", "listWithMore"],
   },
   {
     name: "Clinic", layout: "probabilities per cycle",
@@ -117,7 +117,7 @@ export const plantedWorkbook: readonly PlantedSheet[] = [
     name: "Pumps", layout: "list with further columns",
     lines: [["From", "To", "Rate", "Unit", "Source"], ["Up", "Down", 0.5, "per year", "plate"], ["Down", "Up", 0.125, "per h", "log"]],
     faults: [{ mistake: 10, codes: ["unitsDiffer"] }],
-    refusals: ["notSquare", "listWithMore"],
+    refusals: ["listTooWide", "listWithMore"],
   },
   {
     name: "Pumps 2", layout: "square, minus exits on the diagonal",

@@ -7,7 +7,10 @@ type Sentence = (words: Words) => string;
 export const PROBLEM_SENTENCES: Readonly<Record<string, Sentence>> = {
   // the table as a whole
   rangeEmpty: () => "The range holds no rates. Select a from-rows by to-columns table, or a list of from, to, rate.",
-  notSquare: (w) => `The table has ${w.number("rows")} from-rows and ${w.number("columns")} to-columns. Select as many rows as columns.`,
+  notSquare: (w) =>
+    w.has("index")
+      ? `${capital(w.text("side"))} ${w.state("index", "name")} has no ${w.text("side") === "row" ? "column" : "row"}: ${w.number("rows")} from-rows, ${w.number("columns")} to-columns. Select as many of both.`
+      : `The table has ${w.number("rows")} from-rows and ${w.number("columns")} to-columns. Select as many rows as columns.`,
   cornerBlank: () => "First row and column hold the same numbers. If these are headings, put a word into the corner; else enter the diagonal.",
   headingMissing: (w) => `${capital(w.text("side"))} ${w.ordinal("index")} has no heading (blank, 0 or a dash). Enter a state name.`,
   headingNotName: (w) => `Heading of ${w.text("side")} ${w.ordinal("index")}: ${w.text("found")} is not a name. Enter a state name.`,
@@ -29,6 +32,7 @@ export const PROBLEM_SENTENCES: Readonly<Record<string, Sentence>> = {
     `Row ${w.state("row", "rowName")}: diagonal ${w.number("given")} and exits ${w.number("exits")} differ by rounding. Clear the diagonal.`,
 
   // the rows of a list
+  listTooWide: (w) => `Column ${w.ordinal("column")} is filled, but a list has three: from, to, rate. Select those three columns only.`,
   listEmpty: () => "The list holds no arrow. Enter rows of from-state, to-state, rate.",
   listNameMissing: (w) => `Row ${w.ordinal("listRow")}: ${w.quoted("found")} in place of a state name. Enter the names of both states as text.`,
   arrowToItself: (w) =>

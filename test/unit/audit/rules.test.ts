@@ -85,7 +85,7 @@ describe("mistake 10: two time units", () => {
   });
   it("is silent on one unit spelt in several ways, and on scaled hours", () => {
     const list = [["From", "To", "Rate (1/h)", "Unit"], ["Up", "Down", 0.5, "per hour"], ["Down", "Up", 0.1, "per h"]];
-    expect(complaints(list)).toEqual(["notSquare", "listWithMore"]);
+    expect(complaints(list)).toEqual(["listTooWide", "listWithMore"]);
     expect(complaints(headed("failures per 1e6 h", three, rates))).toEqual([]);
     expect(complaints(headed("FIT (1e-9 / h)", three, rates))).toEqual([]);
   });

@@ -49,7 +49,9 @@ describe("square form: headings", () => {
       expect(refusal([[corner, 1, 2, 3], [1, 0, 5, 1], [2, 7, 0, 1], [3, 1, 1, 0]])).toContain("put a word into the corner");
     expect(dense([[0, 1], [1, 0]])).toEqual([0, 1, 1, 0]);
     expect(dense(["", "", "", ""].map((_, i) => [0, 1, 2, 3].map((j) => (i === j ? "" : 1))))).toHaveLength(16);
-    expect(dense([[0, 0.5, 1.5], [0.5, 0, 1], [1.5, 1, 0]])).toHaveLength(9);
+    expect(dense([[0, 2, 2], [2, 0, 3], [2, 3, 0]])).toHaveLength(9);
+    expect(refusal([["", 0, 1, 2], [0, "", 3, 1], [1, 4, "", 1], [2, 5, 6, ""]])).toContain("put a word into the corner");
+    expect(refusal([[0, 0.5, 1.5], [0.5, 0, 1], [1.5, 1, 0]])).toContain("else enter the diagonal");
     expect(dense([[-3, 1, 2], [1, -4, 3], [2, 3, -5]])).toHaveLength(9);
   });
 
@@ -141,6 +143,16 @@ describe("list form", () => {
     expect(refusal([["A", "B", 1], ["B", "A", "0,5"], ["B", "C", 1]])).toBe('Row 2: "0,5" is text. Enter it as a number, such as 0.5.');
     expect(refusal([["A", "B", 1], ["", "A", 2], ["B", "C", 1]])).toContain("Row 2: blank in place of a state name");
     expect(refusal([["A", "B", "0.5"], ["B", "A", 2], ["B", "C", 1]])).toContain("Row 1");
+  });
+
+  it("refuses columns behind it, and names a heading without partner in a square", () => {
+    expect(refusal([["from", "to", "rate", "unit"], ["A", "B", 1, "per h"], ["B", "A", 2, "per h"]])).toBe(
+      "Column 4 is filled, but a list has three: from, to, rate. Select those three columns only.",
+    );
+    expect(refusal([["", "A", "B", "Total"], ["A", "", 1, 1], ["B", 2, "", 2]])).toBe(
+      "Column 3 (Total) has no row: 2 from-rows, 3 to-columns. Select as many of both.",
+    );
+    expect(refusal([["", "A", "B"], ["A", "", 1], ["B", 2, ""], ["Sum", 2, 1]])).toContain("Row 3 (Sum) has no column");
   });
 
   it("leaves square tables of three columns alone", () => {
