@@ -23,6 +23,8 @@ export interface Expected {
   readonly text: string;
   /** The formula that fills the cell, its own or another cell's. */
   readonly formula: string | null;
+  /** The value rests on the add-in's functions, in this formula or in one that it follows. */
+  readonly addIn: boolean;
 }
 
 export async function officeFiles(dist: string): Promise<OfficeFile[]> {
@@ -49,12 +51,29 @@ export async function reopened(bytes: Uint8Array): Promise<{ sheets: string[]; h
 }
 
 function expected(book: Book): OfficeFile["sheets"] {
+  const resting = new Map<string, boolean>();
+  /** The cell whose formula fills this one, itself or another. */
+  const source = (sheet: string, row: number, column: number) => book.view(sheet, row, column).anchor ?? { row, column };
+  const restsOnAddIn = (sheet: string, row: number, column: number): boolean => {
+    const name = `${sheet} ${row} ${column}`;
+    const known = resting.get(name);
+    if (known !== undefined) return known;
+    resting.set(name, false);
+    const found =
+      (book.formula(sheet, row, column)?.includes("CTMC.") ?? false) ||
+      book.precedents(sheet, row, column).some((area) =>
+        Array.from({ length: area.rows * area.columns }, (_, at) => source(area.sheet, area.row + Math.floor(at / area.columns), area.column + (at % area.columns))).some((cell) => restsOnAddIn(area.sheet, cell.row, cell.column)),
+      );
+    resting.set(name, found);
+    return found;
+  };
   return book.sheets().map(({ id, name, used }) => ({
     name,
     rows: Array.from({ length: used ? used.row + used.rows : 0 }, (_, row) =>
       Array.from({ length: used ? used.column + used.columns : 0 }, (__, column) => {
-        const { value, text, anchor } = book.view(id, row, column);
-        return { value, text, formula: anchor ? book.formula(id, anchor.row, anchor.column) : book.formula(id, row, column) };
+        const { value, text } = book.view(id, row, column);
+        const from = source(id, row, column);
+        return { value, text, formula: book.formula(id, from.row, from.column), addIn: restsOnAddIn(id, from.row, from.column) };
       }),
     ),
   }));
