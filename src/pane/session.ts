@@ -1,16 +1,16 @@
 import { cellText, sameRange, within } from "./address";
 import { BookWatch } from "./book-watch";
-import { contentsOf, usedPart } from "./contents";
 import { unitAbove } from "./unit-above";
 import { examine, type Item, type Question } from "./examine";
 import { Memory, type TableMemory } from "./memory";
-import { cellsWrite, shownChanges, putBack, rangeOf, spilledInto, tableWrite } from "./remedy-write";
+import { previewOf, sameContent, stillAsShown } from "./preview";
+import { putBack, rangeOf } from "./remedy-write";
 import { act, sharingOf, type SharingAct } from "./sharing";
 import { signOffOf } from "./sign-off";
-import { START, type PaneState, type Preview, type View } from "./state";
+import { START, type PaneState, type View } from "./state";
 import { chooseSubject, followSubject, type Subject } from "./subject";
 import { VERSION } from "./version";
-import type { RangeAddress, RangeReading, Workbook } from "./workbook";
+import type { RangeAddress, Workbook } from "./workbook";
 import { checkSheet } from "./check-sheet";
 import { plainUnit } from "../cells/sentences/arrows";
 
@@ -199,7 +199,7 @@ export class Session {
       return;
     }
     await this.attempt(async () => {
-      const preview = await this.previewOf(item, looked.reading);
+      const preview = await previewOf(this.workbook, remedy, looked.reading);
       this.set({ opened: { kind: "remedy", key: item.key, preview } });
     });
   }
@@ -207,11 +207,11 @@ export class Session {
   async applyRemedy(item: Item): Promise<void> {
     const { opened, looked, subject } = this.current;
     if (opened?.kind !== "remedy" || !opened.preview.write || !item.remedy || !looked || !subject) return;
-    const { write, place } = opened.preview;
+    const { write, place, reading } = opened.preview;
     const { label, done } = item.remedy;
     await this.attempt(async () => {
       const before = await this.workbook.read(rangeOf(write));
-      if (!stillAsShown(before, looked.reading, place)) {
+      if (!stillAsShown(before, reading, place)) {
         this.set({ opened: null, trouble: "The cells have changed since the preview. Nothing was written; look again." });
         await this.look(subject);
         return;
@@ -315,39 +315,12 @@ export class Session {
     const moved = !sameRange(subject.address, this.current.subject?.address ?? null);
     const looked = examine(reading, (states) => this.memory.table(subject.address, states, this.watch.gone), this.watch.contextOf(subject.address));
     const { opened } = this.current;
-    const stays = opened && !moved && (!("key" in opened) || looked.open.some((item) => item.key === opened.key));
+    const outdated = opened?.kind === "remedy" && !sameContent(opened.preview.reading, reading);
+    const stays = opened && !moved && !outdated && (!("key" in opened) || looked.open.some((item) => item.key === opened.key));
     this.set({ subject, looked, opened: stays ? opened : null, ...(moved ? { drawn: {} } : {}) });
   }
 
   // Bookkeeping
-
-  private async previewOf(item: Item, reading: RangeReading): Promise<Preview> {
-    const { remedy } = item.remedy!;
-    const empty = { changes: [], place: null, table: [], obstacle: null, write: null };
-    if (remedy.kind === "cells") {
-      const changes = shownChanges(reading, remedy);
-      if (spilledInto(reading, remedy))
-        return { ...empty, changes, obstacle: "A formula fills these cells. Change the formula or its source instead." };
-      return { ...empty, changes, write: cellsWrite(reading, remedy) };
-    }
-    const table = remedy.kind === "newTable" ? remedy.table : [];
-    const place = await this.freePlace(reading.address, table.length, table[0]?.length ?? 0);
-    return { ...empty, place, table: table.map((row) => row.map((value) => (value === null ? "" : String(value)))), write: tableWrite(place, table) };
-  }
-
-  /** The nearest blank place to the right of a table, one column between. */
-  private async freePlace(beside: RangeAddress, rows: number, columns: number): Promise<RangeAddress> {
-    const sheets = await this.workbook.sheets();
-    for (let column = beside.column + beside.columns + 1; ; ) {
-      const place = { sheet: beside.sheet, row: beside.row, column, rows, columns };
-      const filled = usedPart(sheets, { ...place, rows: rows + 1, columns: columns + 1 });
-      if (!filled) return place;
-      const { values } = await contentsOf(this.workbook, filled);
-      const last = Math.max(...values.map((row) => row.reduce<number>((last, value, at) => (value === "" ? last : at), -1)));
-      if (last < 0) return place;
-      column = filled.column + last + 2;
-    }
-  }
 
   private async keep(change: (entry: TableMemory) => TableMemory): Promise<void> {
     const { subject, looked } = this.current;
@@ -401,17 +374,6 @@ export class Session {
     this.current = { ...this.current, ...change };
     this.listeners.forEach((listener) => listener());
   }
-}
-
-/** Are the cells to be written as they were when the preview was made? A new table's place must still be blank. */
-function stillAsShown(now: RangeReading, shown: RangeReading, place: RangeAddress | null): boolean {
-  if (place) return now.values.every((row) => row.every((value) => value === ""));
-  const { row, column } = { row: now.address.row - shown.address.row, column: now.address.column - shown.address.column };
-  return now.formulas.every((line, r) => line.every((formula, c) => formula === shown.formulas[row + r]?.[column + c] && now.values[r][c] === shown.values[row + r][column + c]));
-}
-
-function sameContent(a: RangeReading, b: RangeReading): boolean {
-  return JSON.stringify([a.values, a.formulas]) === JSON.stringify([b.values, b.formulas]);
 }
 
 function without(entry: TableMemory, field: "unit" | "answers" | "signOff"): TableMemory {

@@ -55,6 +55,8 @@ export function openedName(opened: Opened): string {
 }
 
 export interface Preview {
+  /** The table as it was when the preview was made. */
+  readonly reading: RangeReading;
   readonly changes: readonly ShownChange[];
   /** For a new table: where it goes and what it holds, as text. */
   readonly place: RangeAddress | null;

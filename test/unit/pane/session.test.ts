@@ -275,6 +275,39 @@ describe("remedies", () => {
     expect(workbook.value("Pump", 2, 2)).toBe(7);
   });
 
+  it("closes a preview when the table changes under it", async () => {
+    const { workbook, session, select, open } = await started();
+    await select(cell("Pump", 2, 3));
+    await session.openRemedy(open("diagonalBlank"));
+    workbook.type("Pump", 2, 3, 0.03);
+    await settled();
+    expect(session.state.opened).toBeNull();
+    await session.applyRemedy(open("diagonalBlank"));
+    expect(workbook.value("Pump", 2, 2)).toBe("");
+  });
+
+  it("writes a new table where the sheet is blank, beside what stands there already", async () => {
+    const means: Typed[][] = [
+      ["from", "to", "mean time (days)", "", "kept", "here"],
+      ["Up", "Down", 50, "", 1, 2],
+      ["Down", "Up", 2, "", "", ""],
+    ];
+    const { workbook, session, select, open } = await started({ Pump: means });
+    await select({ sheet: "Pump", row: 0, column: 0, rows: 3, columns: 3 });
+    const item = open("meanTimes");
+    await session.openRemedy(item);
+    const { opened } = session.state;
+    if (opened?.kind !== "remedy" || !opened.preview.place) throw new Error("no new table");
+    expect(cellText(opened.preview.place)).toMatch(/^H1:/); // E and F are taken, G stays free
+    await session.applyRemedy(item);
+    expect(workbook.value("Pump", 1, 2)).toBe(50);
+    expect(workbook.value("Pump", 1, 4)).toBe(1);
+    expect([workbook.value("Pump", 1, 7), workbook.value("Pump", 1, 8)]).toEqual(["Up", "Down"]);
+    expect(session.state.notice?.jump?.range).toEqual(opened.preview.place);
+    await session.undo();
+    expect(workbook.value("Pump", 1, 7)).toBe("");
+  });
+
   it("does not write into cells that a formula fills, and names cells whose formula would go", async () => {
     const spilled = PUMP.map((row, r) => (r === 2 ? ["", "Running", { formula: "", value: -1 }, 0.02, 0.004] : r === 3 ? ["", "Degraded", 0.1, { formula: "=-1", value: -1 }, 0.12] : row));
     const { session, select, open } = await started({ Pump: spilled });
