@@ -66,7 +66,7 @@ export function* generatorFromProbabilitySteps(size: number, p: Float64Array, pe
 const UNSEEN_SHARE = 1e-13;
 /** An entry is missed when it comes out too small by more than this share of itself. */
 const MISSED_SHARE = 1e-11;
-const FITTING_ROUNDS = 8;
+const FITTING_ROUNDS = 40;
 
 function* fitSmallRates(n: number, p: Float64Array, logarithm: Float64Array, largest: number): Steps<void> {
   const unseen: number[] = [];
@@ -76,20 +76,31 @@ function* fitSmallRates(n: number, p: Float64Array, logarithm: Float64Array, lar
       if (p[k] > 0) unseen.push(k);
     }
   if (unseen.length === 0) return;
+  // An entry answers to its own small rate in proportion: at first by the rate times ∫ e^(−q_i s) e^(−q_j (1 − s)) ds, the
+  // logarithmic mean of the stays, then by what the last change was seen to do.
+  const answer = Float64Array.from(unseen, (k) => logarithmicMean(p[Math.floor(k / n) * (n + 1)], p[(k % n) * (n + 1)]));
+  const lastStep = new Float64Array(unseen.length);
+  let before: Float64Array | null = null;
   for (let round = 0; round < FITTING_ROUNDS; round++) {
-    const back = yield* transitionMatrixSteps(generatorOf(n, logarithm, 1), 1);
+    const back: Float64Array = yield* transitionMatrixSteps(generatorOf(n, logarithm, 1), 1);
     let missed = false;
-    for (const k of unseen) {
+    unseen.forEach((k, u) => {
+      if (before && lastStep[u] !== 0 && (back[k] - before[k]) / lastStep[u] > 0) answer[u] = (back[k] - before[k]) / lastStep[u];
       const gap = p[k] - back[k];
-      if (!(Math.abs(gap) > MISSED_SHARE * p[k]) || (gap < 0 && logarithm[k] === 0)) continue;
+      lastStep[u] = 0;
+      if (!(Math.abs(gap) > MISSED_SHARE * p[k]) || (gap < 0 && logarithm[k] === 0)) return;
       missed = true;
-      // One arrow's own part of p_ij is its rate times ∫ e^(−q_i s) e^(−q_j (1 − s)) ds, the logarithmic mean of the stays.
-      const [stayFrom, stayTo] = [p[Math.floor(k / n) * (n + 1)], p[(k % n) * (n + 1)]];
-      const mean = Math.abs(stayFrom - stayTo) < 1e-6 ? stayFrom : (stayFrom - stayTo) / Math.log(stayFrom / stayTo);
-      logarithm[k] = Math.max(0, logarithm[k] + gap / mean);
-    }
+      const next = Math.max(0, logarithm[k] + gap / answer[u]);
+      lastStep[u] = next - logarithm[k];
+      logarithm[k] = next;
+    });
     if (!missed) return;
+    before = back;
   }
+}
+
+function logarithmicMean(a: number, b: number): number {
+  return Math.abs(a - b) < 1e-6 * a ? a : (a - b) / Math.log(a / b);
 }
 
 function generatorOf(n: number, rates: Float64Array, period: number): Generator {

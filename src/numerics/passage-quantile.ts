@@ -1,10 +1,9 @@
-import { kernelFor } from "./method-choice";
-import type { MatrixKernel } from "./matrix-kernel";
+import { kernelFor, SMALL, type Method } from "./method-choice";
+import { repairRow, type MatrixKernel } from "./matrix-kernel";
 import { poissonWeights } from "./poisson";
 import { denseOf, type ChainRates } from "./rows";
 import { Squarings, rowTimesMatrix } from "./squarings";
 import { JumpWalk } from "./uniformization";
-import { repairRow } from "./matrix-kernel";
 
 type Steps<T> = globalThis.Generator<number, T, void>;
 
@@ -21,15 +20,14 @@ export interface PassageValues {
 /** The level sought: `met` reaches it from below, or `yet` falls to it, whichever is the smaller number. */
 export type Goal = { readonly value: "met" | "yet"; readonly level: number };
 
-/** Chains up to this size go through stored squarings at once; above, jump by jump as long as that is cheaper. */
-export const STORED_UP_TO = 300;
 /** Stored squarings of more states would fill the memory. */
 export const LARGEST_STORED = 1000;
 /** Arrows and states that a walk may touch before the question is given up: some minutes. */
 export const LARGEST_WALK = 1e11;
 
 /**
- * Times at which the goals are met, for a stopped chain left from `start`; null when it would take too long.
+ * Times at which the goals are met, for a stopped chain left from `start`; null when it would take too long. Small chains go
+ * through stored squarings at once; others jump by jump as long as that is cheaper.
  *
  * *Method*: P(h2^k) is squared until the goal is passed, then the time is built from its highest binary digit down, keeping
  * the row reached; the last step below h is a Newton iteration on the Poisson series from that row. A goal above half of
@@ -40,14 +38,14 @@ export function* passageQuantiles(
   start: Float64Array,
   values: PassageValues,
   goals: readonly Goal[],
-  options: { method?: "row" | "matrix"; kernel?: MatrixKernel } = {},
+  options: { method?: Method; kernel?: MatrixKernel; largestWalk?: number } = {},
 ): Steps<number[] | null> {
   const n = chain.size;
-  const stored = options.method ? options.method === "matrix" : n <= STORED_UP_TO;
+  const stored = options.method ? options.method === "matrix" : n <= SMALL;
   if (!stored) {
-    const budget = options.method || n > LARGEST_STORED ? LARGEST_WALK : 8 * n ** 3;
+    const budget = options.method || n > LARGEST_STORED ? (options.largestWalk ?? LARGEST_WALK) : 8 * n ** 3;
     const walked = yield* quantilesByWalk(chain, start, values, goals, budget);
-    if (walked || n > LARGEST_STORED) return walked;
+    if (walked || options.method || n > LARGEST_STORED) return walked;
   }
   const dense = denseOf(chain);
   const squarings = yield* Squarings.open(dense, options.kernel ?? kernelFor(n), (4 * n) / dense.largestExit);

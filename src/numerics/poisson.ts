@@ -32,16 +32,17 @@ export function poissonWeights(mean: number): JumpWeights {
 }
 
 /**
- * Weights of the occupancy integral: ∫₀ᵗ Pr(K(s) = k) ds = Pr(K(t) > k)/Λ for k = 0, 1, …, t = mean/Λ.
- * The tails are summed from the far end, so each keeps its relative accuracy.
+ * Weights of the occupancy integral over a time in which `mean` jumps are expected, Λ = mean/time:
+ * ∫₀ᵗ Pr(K(s) = k) ds = Pr(K(t) > k)/Λ = Σ_(j ≥ k) w(j) t/(j + 1), k = 0, 1, …
+ * Summed from the far end, so each keeps its relative accuracy; in the last form also where Pr(K > k) is below the double range.
  */
-export function occupancyWeights(mean: number, largestExit: number): JumpWeights {
+export function occupancyWeights(mean: number, time: number): JumpWeights {
   const { first, weights } = poissonWeights(mean);
   const tails = new Float64Array(first + weights.length);
   let tail = 0;
   for (let k = tails.length - 1; k >= 0; k--) {
-    tails[k] = tail / largestExit;
-    if (k >= first) tail += weights[k - first];
+    if (k >= first) tail += (weights[k - first] * time) / (k + 1);
+    tails[k] = tail;
   }
   return { first: 0, weights: tails };
 }

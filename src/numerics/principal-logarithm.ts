@@ -44,13 +44,12 @@ export function* principalLogarithm(n: number, values: Float64Array): Steps<Floa
   let smallest = LARGEST_RESIDUAL;
   for (const candidate of [logarithmByRoots, logarithmByEigenvectors]) {
     const logarithm = yield* candidate(matrix);
-    const residual = logarithm ? Matrix.sub(exponential(logarithm), matrix).norm("max") : Infinity;
+    const residual = logarithm ? Matrix.sub(yield* exponential(logarithm), matrix).norm("max") : Infinity;
     if (residual < (best ? smallest * CLEARLY_BETTER : smallest)) {
       smallest = residual;
       best = logarithm;
     }
     if (smallest <= SMALL_RESIDUAL) break;
-    yield 0.5;
   }
   return best ? Float64Array.from(best.to1DArray()) : null;
 }
@@ -109,7 +108,7 @@ function isSingular(matrix: Matrix): boolean {
 }
 
 /** exp of a general matrix, for the check only: Taylor to degree 18 at norm ½, then squarings. Normwise accurate. */
-function exponential(matrix: Matrix): Matrix {
+function* exponential(matrix: Matrix): Steps<Matrix> {
   const norm = oneNorm(matrix);
   if (!Number.isFinite(norm)) return Matrix.zeros(matrix.rows, matrix.rows).fill(NaN);
   const squarings = Math.max(0, Math.ceil(Math.log2(norm)) + 1);
@@ -119,8 +118,12 @@ function exponential(matrix: Matrix): Matrix {
   for (let k = 1; k <= 18; k++) {
     term = term.mmul(small).mul(1 / k);
     sum.add(term);
+    yield 0.5;
   }
-  for (let s = 0; s < squarings; s++) sum = sum.mmul(sum);
+  for (let s = 0; s < squarings; s++) {
+    sum = sum.mmul(sum);
+    yield 0.5;
+  }
   return sum;
 }
 

@@ -71,7 +71,7 @@ export function* occupanciesAt(
   const walk = new JumpWalk(chain, start);
   if (walk.largestExit === 0) return Array.from(horizons, (horizon) => start.map((p) => p * horizon));
   if (methodFor(walk, chain, horizons, options) === "row") {
-    const weights = Array.from(horizons, (horizon) => occupancyWeights(walk.largestExit * horizon, walk.largestExit));
+    const weights = Array.from(horizons, (horizon) => occupancyWeights(walk.largestExit * horizon, horizon));
     return yield* uniformizedSums(walk, chain.size, weights);
   }
   const squarings = yield* openSquarings(chain, horizons, options);
@@ -140,7 +140,7 @@ export function* rowOfStep(chain: ChainRates, row: Float64Array, time: number): 
 function* occupancyOfStep(chain: ChainRates, row: Float64Array, time: number): Steps<Float64Array> {
   const walk = new JumpWalk(chain, row);
   if (walk.largestExit === 0) return row.map((p) => p * time);
-  const [spent] = yield* uniformizedSums(walk, chain.size, [occupancyWeights(walk.largestExit * time, walk.largestExit)]);
+  const [spent] = yield* uniformizedSums(walk, chain.size, [occupancyWeights(walk.largestExit * time, time)]);
   return spent;
 }
 
