@@ -27,7 +27,7 @@ import { noTarget } from "./rules/no-target";
 import { percent } from "./rules/percent";
 import { probabilityLabel } from "./rules/probability-label";
 import { probabilityTable } from "./rules/probability-table";
-import { labelAlone, rangeShort } from "./rules/range-short";
+import { rangeShort } from "./rules/range-short";
 import { repairPattern } from "./rules/repair-pattern";
 import { stepFormulas } from "./rules/step-formulas";
 import { totalsSelected } from "./rules/totals";
@@ -93,7 +93,6 @@ export function auditReading(cells: Cells, reading: Reading, options: AuditOptio
   const within = inner !== null && inner.asides.length > 0 ? insideOf(cells, inner, options, refusals[0]) : null;
   const found = within ?? (reading.layout ? rulesOn(cells, reading, reading.layout, options) : []);
   found.push(...sheetFindings(cells, reading, facts));
-  if (!reading.layout && !within && !found.some(({ code }) => code === "rangeShort")) found.push(...labelAlone(cells).map((finding) => placed(finding, null)));
   return [...explained(refusals, found, within !== null), ...startRefusal(options), ...byRank(found)];
 }
 

@@ -8,7 +8,7 @@ import { meansTotal } from "../words";
 /**
  * A range that is one row or column short of its table (mistake 20), told by the filled cells just outside: the same name heads the next
  * column and the next row; or, without headings, rates go on both to the right and below. Totals, notes and costs beside a
- * table do neither.
+ * table do neither. A label without its column is told by the refusal itself.
  */
 export const rangeShort: SheetRule = ({ cells, layout, facts }) => {
   const around = facts.neighbours;
@@ -47,28 +47,6 @@ export const rangeShort: SheetRule = ({ cells, layout, facts }) => {
   if (shape === 1 && right >= rows - 1 && below === 0) return report(0, 1, "");
   if (shape === -1 && below >= columns - 1 && right === 0) return report(1, 0, "");
   return [];
-};
-
-/** A row label without its column, or the reverse, in a range that is not square: the shape alone says that something is missing. */
-export const labelAlone = (cells: Cells): Finding[] => {
-  if (headingsByText(cells) !== "both") return [];
-  const top = (cells[0] ?? []).slice(1).map(textOf).filter((name) => name !== "");
-  const left = cells.slice(1).map((row) => textOf(row[0])).filter((name) => name !== "");
-  if (top.length === left.length || top.length < 2 || left.length < 2) return [];
-  const rowAlone = left.filter((name) => !top.some((other) => nameKey(other) === nameKey(name)));
-  const columnAlone = top.filter((name) => !left.some((other) => nameKey(other) === nameKey(name)));
-  const [alone, side] = left.length > top.length ? [rowAlone, "row"] : [columnAlone, "column"];
-  if (alone.length !== 1 || meansTotal(alone[0]) || Math.min(rowAlone.length, columnAlone.length) > 0) return [];
-  const at = side === "row" ? cells.findIndex((row, k) => k > 0 && textOf(row[0]) === alone[0]) : (cells[0] ?? []).findIndex((name, k) => k > 0 && textOf(name) === alone[0]);
-  const width = Math.max(...cells.map((row) => row.length));
-  return [
-    {
-      code: "labelAlone",
-      severity: "warning",
-      span: side === "row" ? { row: at, column: 0, rows: 1, columns: width } : { row: 0, column: at, rows: cells.length, columns: 1 },
-      details: { side, name: alone[0] },
-    },
-  ];
 };
 
 function headingsByText(cells: Cells): "both" | "none" | "other" {

@@ -108,7 +108,11 @@ const CLEAR_DIAGONAL = "Clear the diagonal: it is then worked out as minus the e
 /** Remedies of refusals (their sentence comes from the problem), then the rules' own sentences. */
 const WORDS: Readonly<Record<string, Words>> = {
   rangeEmpty: refusal(() => "Select the cells that hold the rates."),
-  notSquare: refusal(() => "Select the table with its headings and nothing else: no totals, units or notes."),
+  notSquare: refusal((f) =>
+    f.has("name") ? "Leave that line out if it is no state, or add its partner." : "Select the table with its headings and nothing else: no totals, units or notes.",
+  ),
+  listTooWide: refusal(() => "Select from, to and rate alone."),
+  listEmpty: refusal(() => "Enter one row for each arrow."),
   cornerBlank: refusal(() => "Type a word such as From into the corner cell, or enter the diagonal."),
   headingMissing: refusal(() => "Enter the name, or leave the headings out of the selection."),
   headingNotName: refusal(() => "Enter the name as text."),
@@ -324,10 +328,6 @@ const WORDS: Readonly<Record<string, Words>> = {
   rangeShort: {
     finding: (f) => `The table goes on outside the range${f.text("name") ? `: ${f.text("name")} is missing` : ""}.`,
     remedy: (f) => `Widen the range by ${listed([f.number("rows") > 0 ? "one row" : "", f.number("columns") > 0 ? "one column" : ""].filter(Boolean))}.`,
-  },
-  labelAlone: {
-    finding: (f) => `${f.text("name")} has a ${f.text("side")} and no ${f.text("side") === "row" ? "column" : "row"}.`,
-    remedy: (f) => `Leave that ${f.text("side")} out, or add the ${f.text("side") === "row" ? "column" : "row"} that is missing.`,
   },
   largestArrow: {
     finding: (f) => `Largest arrow: ${f.text("fromName")} → ${f.text("toName")} at ${f.figure("rate")} per time unit.`,

@@ -128,8 +128,8 @@ describe("mistake 20: a range one row or column short", () => {
   it("warns where one column is missing, also without the sheet", () => {
     const facts = { neighbours: { ...none, right: ["Repair", 0, 0.2, 1, 0], below: [null, null, null, null] } };
     expect(complaints(cut(5, 4), { facts })).toEqual(["notSquare", "rangeShort"]);
-    expect(complaints(cut(5, 4))).toEqual(["notSquare", "labelAlone"]);
-    expect(findingOf(cut(5, 4), "labelAlone")).toMatchObject({ details: { name: "Repair", side: "row" } });
+    expect(complaints(cut(5, 4))).toEqual(["notSquare"]);
+    expect(findingTexts(audit(cut(5, 4))[0]).finding).toMatch(/^Row 4 \(Repair\) has no column/u);
   });
   it("is silent on totals, costs, notes and results beside the table", () => {
     for (const right of [["Total", 0.03, 0.8, 1, 2], ["Cost", 10, 20, 30, 5], ["Note", "log", "log", "guess", ""]])
