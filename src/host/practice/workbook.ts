@@ -1,6 +1,6 @@
 /** The practice workbook as the pane sees it. */
 import type { Fact, HostValue, Place, RangeAddress, RangeReading, SheetInfo, SheetLook, Workbook, WorkbookEvent, Write } from "../../pane/workbook";
-import { cellText, COLUMN_LIMIT, ROW_LIMIT, toCanonical, type Area, type Book, type CellView, type Edit } from "./engine";
+import { cellText, COLUMN_LIMIT, ROW_LIMIT, Fault, type Area, type Book, type CellView, type Edit, type Scalar } from "./engine";
 
 /** Pixels that a character of the sheet's font takes, about. */
 const CHARACTER_WIDTH = 8;
@@ -39,7 +39,7 @@ export class PracticeWorkbook implements Workbook {
     return {
       address: range,
       values: cells.map((row) => row.map((cell) => cell.value)),
-      formulas: cells.map((row) => row.map((cell) => this.content(cell))),
+      formulas: cells.map((line, r) => line.map((_, c) => this.content(area.sheet, area.row + r, area.column + c))),
       formats: cells.map((row) => row.map((cell) => cell.format)),
       texts: cells.map((row) => row.map((cell) => cell.text)),
       facts: {
@@ -56,26 +56,37 @@ export class PracticeWorkbook implements Workbook {
   }
 
   /** What stands in a cell, spelled so that every host spells it alike; nothing where another cell's result stands. */
-  private content(cell: CellView): string {
-    if (cell.anchor !== null) return "";
-    if (cell.input.startsWith("=")) return toCanonical(cell.input, this.book.locale);
-    if (typeof cell.value === "boolean") return cell.value ? "TRUE" : "FALSE";
-    // Text that looks like a formula is typed behind an apostrophe.
-    return typeof cell.value === "string" && cell.value.startsWith("=") ? `'${cell.value}` : String(cell.value);
+  private content(sheet: string, row: number, column: number): string {
+    const { formula, value } = this.book.content(sheet, row, column);
+    if (formula !== null) return formula;
+    if (typeof value === "boolean") return value ? "TRUE" : "FALSE";
+    const text = String(shown(value));
+    // Text that would read as a formula keeps the apostrophe that made it text.
+    return typeof value === "string" && /^['=]/.test(text) ? `'${text}` : text;
   }
 
   private views(area: Area): CellView[][] {
     return Array.from({ length: area.rows }, (_, r) => Array.from({ length: area.columns }, (__, c) => this.book.view(area.sheet, area.row + r, area.column + c)));
   }
 
+  /** Without formats and texts, which cost most: whole sheets are looked through this way. */
   async scan(range: RangeAddress): Promise<Pick<RangeReading, "address" | "values" | "formulas">> {
     await this.book.whenIdle();
-    const cells = this.views(this.area(range));
-    return {
-      address: range,
-      values: cells.map((row) => row.map((cell) => cell.value)),
-      formulas: cells.map((row) => row.map((cell) => this.content(cell))),
-    };
+    const area = this.area(range);
+    const values: HostValue[][] = [];
+    const formulas: string[][] = [];
+    for (let row = area.row; row < area.row + area.rows; row += 1) {
+      const line: HostValue[] = [];
+      const contents: string[] = [];
+      for (let column = area.column; column < area.column + area.columns; column += 1) {
+        const value = shown(this.book.scalar(area.sheet, row, column));
+        line.push(value);
+        contents.push(this.content(area.sheet, row, column));
+      }
+      values.push(line);
+      formulas.push(contents);
+    }
+    return { address: range, values, formulas };
   }
 
   private neighbours(area: Area): Fact<{ above: HostValue[]; below: HostValue[]; left: HostValue[]; right: HostValue[] }> {
@@ -192,6 +203,10 @@ export class PracticeWorkbook implements Workbook {
     const sheet = this.book.sheets().find((entry) => entry.id === area.sheet)?.name ?? "";
     return { sheet, row: area.row, column: area.column, rows: area.rows, columns: area.columns };
   }
+}
+
+function shown(value: Scalar): HostValue {
+  return value === null ? "" : value instanceof Fault ? value.code : value;
 }
 
 function meets(a: Area, b: Area): boolean {

@@ -36,6 +36,18 @@ describe("the practice workbook as the pane sees it", () => {
     expect(reading.facts.calculation).toBe("automatic");
   });
 
+  it("scans to the same values and contents as it reads", async () => {
+    const { book, workbook, sheet, id } = open();
+    book.apply(["1.50", "text", "=1/0", "={1;2}", "TRUE", "'=A1"].map((text, row) => ({ kind: "type" as const, sheet: id, row: row + (row > 3 ? 1 : 0), column: 0, text })), "type");
+    const range = { sheet, row: 0, column: 0, rows: 8, columns: 2 };
+    const read = await workbook.read(range);
+    const scanned = await workbook.scan(range);
+    expect(scanned.values).toEqual(read.values);
+    expect(scanned.formulas).toEqual(read.formulas);
+    expect(scanned.values.map((row) => row[0])).toEqual([1.5, "text", "#DIV/0!", 1, 2, true, "=A1", ""]);
+    expect(scanned.formulas.map((row) => row[0])).toEqual(["1.5", "text", "=1/0", "={1;2}", "", "TRUE", "'=A1", ""]);
+  });
+
   it("tells hidden lines and merged areas that touch the range, others not", async () => {
     const { book, workbook, sheet, id } = open();
     book.apply(
