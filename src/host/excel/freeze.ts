@@ -64,16 +64,19 @@ export function freeze(now: Date): Promise<Outcome & { readonly sheet: string | 
     const prints = await fingerprints(context, ready);
     const list = await listSheet(context, record);
     const date = now.toISOString();
+    // A new list also takes up what was frozen before and is not back yet.
+    const earlier = list.isNew ? record.formulas.map((one, i) => ({ ...one, listRow: 1 + i })) : record.formulas;
+    const firstRow = list.isNew ? 1 + earlier.length : list.nextRow;
     const items = ready.map((one, i): Omit<Frozen, "digest"> => {
       const { sheet, row, column, formula } = one;
       const { rows, columns, sheetId } = blocks[i];
-      return { sheet, row, column, formula, rows, columns, sheetId, date, fingerprint: prints[i], listRow: list.nextRow + i };
+      return { sheet, row, column, formula, rows, columns, sheetId, date, fingerprint: prints[i], listRow: firstRow + i };
     });
     for (const { range, values } of blocks) range.formulas = values.map((cells) => cells.map(frozenEntry)) as string[][];
-    queueList(list, items);
+    queueList(list, list.isNew ? [...earlier, ...items] : items);
     const keep = async (valuesNow: readonly HostValue[][][]): Promise<void> => {
       const digests = await Promise.all(valuesNow.map(digestOf));
-      const formulas = [...record.formulas, ...items.map((one, i) => ({ ...one, digest: digests[i] }))];
+      const formulas = [...earlier, ...items.map((one, i) => ({ ...one, digest: digests[i] }))];
       queueSetting(context, KEY, { version: 1, listSheet: list.name, formulas } satisfies Record);
     };
     // Kept in the same step as the change, so that no formula is ever only in one place; then with the values as the host holds them.
@@ -148,7 +151,9 @@ async function listSheet(context: Excel.RequestContext, record: Record): Promise
   earlier.load("name");
   await context.sync();
   if (record.listSheet !== "" && !earlier.isNullObject) {
-    return { sheet: earlier, name: record.listSheet, nextRow: used.isNullObject ? 0 : used.rowIndex + used.rowCount, isNew: used.isNullObject };
+    const closed = await protectedSheets(context, [{ sheet: record.listSheet, row: 0, column: 0 }]);
+    if (closed.size > 0) throw new HostRefusal(`The sheet "${record.listSheet}", which lists what is frozen, is protected. Unprotect it, then try again.`);
+    return { sheet: earlier, name: record.listSheet, nextRow: used.isNullObject ? 1 : used.rowIndex + used.rowCount, isNew: used.isNullObject };
   }
   if (structure.protected) throw new HostRefusal("The workbook's structure is protected, so the list of frozen formulas cannot be added. Unprotect it (Review, Protect Workbook), then try again.");
   const name = freeName(LIST_NAME, sheets.items.map((one) => one.name));
@@ -186,7 +191,8 @@ export function thaw(): Promise<Outcome> {
     const list = context.workbook.worksheets.getItemOrNullObject(record.listSheet || LIST_NAME).load("name");
     await context.sync();
     const done = record.formulas.filter((one) => back.has(keyOf(one)));
-    if (!list.isNullObject) for (const one of done) list.getRangeByIndexes(one.listRow, HEADINGS.length - 1, 1, 1).values = [["formula"]];
+    const marked = !list.isNullObject && (await protectedSheets(context, [{ sheet: list.name, row: 0, column: 0 }])).size === 0;
+    if (marked) for (const one of done) list.getRangeByIndexes(one.listRow, HEADINGS.length - 1, 1, 1).values = [["formula"]];
     queueSetting(context, KEY, { ...record, formulas: record.formulas.filter((one) => !back.has(keyOf(one))) } satisfies Record);
     await context.sync();
     return { done: done.length, refused };

@@ -24,6 +24,8 @@ export interface FakeState {
   /** The code that the next synchronisation fails with. */
   failNext: string | null;
   readonly synchronisations: { count: number };
+  /** Cells of the largest range that was used. */
+  largestAsked: number;
   /** Raises one of the host's events, such as "workbook.onSelectionChanged". */
   raise(event: string): Promise<void>;
   listening(): string[];
@@ -60,6 +62,7 @@ export function fakeExcel(book: Book): { Excel: unknown; Office: unknown; state:
     version: 1.17,
     failNext: null,
     synchronisations: { count: 0 },
+    largestAsked: 0,
     async raise(event) {
       for (const listener of events.get(event) ?? []) await listener({});
     },
@@ -130,7 +133,12 @@ function workbookObject(queue: RequestQueue, book: Book, state: FakeState, sourc
       read: { id, name: () => sheetOf(id())!.name, visibility: () => (sheetOf(id())!.hidden ? "Hidden" : "Visible") },
       methods: {
         protection: hostObject(queue, { read: { protected: () => state.protectedSheets.has(sheetOf(id())!.name) } }),
-        getRangeByIndexes: (row: number, column: number, rows: number, columns: number) => ranges.make(() => ({ sheet: id(), row, column, rows, columns }), self),
+        getRangeByIndexes: (row: number, column: number, rows: number, columns: number) => 
+          ranges.make(() => {
+            if (rows < 1 || columns < 1) throw new HostError("InvalidArgument");
+            state.largestAsked = Math.max(state.largestAsked, rows * columns);
+            return { sheet: id(), row, column, rows, columns };
+          }, self),
         getRange: (address: string) => ranges.make(() => ({ sheet: id(), ...boundsOf(address) }), self),
         getUsedRangeOrNullObject: () =>
           ranges.make(

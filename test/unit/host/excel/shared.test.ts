@@ -72,6 +72,16 @@ describe("relinking", () => {
     expect((await whole(one)).formulas[0].slice(0, 2)).toEqual(["=CTMC.FIRST()", "=1/0"]);
   });
 
+  it("looks through a large sheet block by block, to its last row", async () => {
+    const one = host([["=CTMC.FIRST()", 1, 2]]);
+    one.type("Plan", 9_999, 0, "=CTMC.FIRST()");
+    one.type("Plan", 19_999, 2, "=CTMC.FIRST()");
+    for (const [row, column] of [[0, 0], [9_999, 0], [19_999, 2]]) one.state.lost.set(`${one.id("Plan")} ${row} ${column}`, "=_xldudf_CTMC_FIRST()");
+    expect((await one.workbook.shared!.unlinked()).map(({ row, column }) => [row, column])).toEqual([[0, 0], [9_999, 0], [19_999, 2]]);
+    // 20,000 rows of 3: three blocks of 20,000 cells and a bit.
+    expect(one.state.largestAsked).toBeLessThanOrEqual(20_000);
+  });
+
   it("leaves a protected sheet alone and says so", async () => {
     const one = host([["=CTMC.FIRST()"]]);
     one.state.lost.set(`${one.id("Plan")} 0 0`, "=_xldudf_CTMC_FIRST()");
@@ -135,6 +145,37 @@ describe("freezing", () => {
     expect(await one.workbook.shared!.freeze(NOW)).toMatchObject({ done: 1, sheet: "Frozen formulas" });
     expect(await one.workbook.shared!.frozen()).toHaveLength(2);
     expect(await one.workbook.shared!.thaw()).toEqual({ done: 2, refused: [] });
+  });
+
+  it("never writes its list over a sheet of the person's, and marks its own when the formulas are back", async () => {
+    const one = host([["=CTMC.FIRST()"]], { name: "Frozen formulas", cells: [["mine"]] });
+    expect((await one.workbook.shared!.freeze(NOW)).sheet).toBe("Frozen formulas 2");
+    await one.workbook.shared!.thaw();
+    const now = async (sheet: string) => (await one.workbook.read({ sheet, row: 0, column: 0, rows: 2, columns: 6 })).values;
+    expect(await now("Frozen formulas")).toEqual([["mine", "", "", "", "", ""], ["", "", "", "", "", ""]]);
+    expect((await now("Frozen formulas 2"))[1]).toEqual(["Plan", "A1", "=CTMC.FIRST()", "2026-03-04T05:06:07.000Z", "", "formula"]);
+  });
+
+  it("starts a new list when the earlier one was deleted, and forgets no formula by that", async () => {
+    const one = host([["=CTMC.FIRST()"]]);
+    await one.workbook.shared!.freeze(NOW);
+    one.book.apply([{ kind: "removeSheet", sheet: one.id("Frozen formulas") }], "remove");
+    one.type("Plan", 3, 3, "=CTMC.FIRST()");
+    expect((await one.workbook.shared!.freeze(NOW)).sheet).toBe("Frozen formulas");
+    const cells = (await one.workbook.read({ sheet: "Frozen formulas", row: 0, column: 1, rows: 4, columns: 1 })).values;
+    expect(cells).toEqual([["Cell"], ["A1"], ["D4"], [""]]);
+    expect(await one.workbook.shared!.thaw()).toEqual({ done: 2, refused: [] });
+  });
+
+  it("takes a protected list for what it is: nothing more is frozen, but everything comes back", async () => {
+    const one = host([["=CTMC.FIRST()"]]);
+    await one.workbook.shared!.freeze(NOW);
+    one.state.protectedSheets.add("Frozen formulas");
+    one.type("Plan", 3, 3, "=CTMC.FIRST()");
+    await expect(one.workbook.shared!.freeze(NOW)).rejects.toThrow(/lists what is frozen, is protected/);
+    expect((await whole(one)).formulas[3][3]).toBe("=CTMC.FIRST()");
+    expect(await one.workbook.shared!.thaw()).toEqual({ done: 1, refused: [] });
+    expect(await one.workbook.shared!.frozen()).toEqual([]);
   });
 
   it("leaves what shows no answer, and protected sheets, and says so", async () => {
