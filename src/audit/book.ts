@@ -40,6 +40,8 @@ export interface BookTable {
   readonly role: Role;
   /** The formula that says so, unless the role is rates. */
   readonly roleSaid: { readonly name: string; readonly where: string } | null;
+  /** The cells that the formula reads which builds it; empty for a typed table. */
+  readonly builtFrom: readonly SheetSpan[];
   readonly size: number;
   readonly arrows: number;
   /** The first stop that the audit reports of the table by itself, in its role; null where there is none. */
@@ -196,12 +198,17 @@ function cut({ sheet, cells }: Seen, { row, column, rows, columns }: Span): Cell
 
 /** Whether a found table is what one of our formulas spilled as an answer. */
 function isAnswer(sheet: BookSheet, span: Span): boolean {
+  const [outer] = callsIn(spillingFormula(sheet, span));
+  return outer !== undefined && !BUILDERS.has(outer.name);
+}
+
+/** The formula of ours whose spill a found table is, or begins with; "" where there is none. */
+function spillingFormula(sheet: BookSheet, span: Span): string {
   for (const [row, column] of [[0, 0], [1, 1], [0, 1], [1, 0]]) {
     const formula = sheet.formulas[span.row + row]?.[span.column + column] ?? "";
-    const outer = formula.startsWith("=") ? callsIn(formula)[0] : undefined;
-    if (outer) return !BUILDERS.has(outer.name);
+    if (formula.startsWith("=") && callsIn(formula).length > 0) return formula;
   }
-  return false;
+  return "";
 }
 
 /** A table before all formulas were seen: who reads it decides what it is. */
@@ -220,6 +227,7 @@ function draftOf(sheet: BookSheet, cells: Cells, span: Span): Draft {
     kind: reading.layout ? kindOf(readBody(inside, reading.layout)) : "rates",
     size: reading.layout?.size ?? 0,
     arrows: reading.table?.arrows.length ?? 0,
+    builtFrom: referencesIn(spillingFormula(sheet, span), sheet.name),
     roles: new Map(),
   };
 }
@@ -309,34 +317,48 @@ function shortOf(reference: Reference, { address, reading }: Draft): BookFormula
   return rows + columns === 0 ? null : { rows, columns, range: address, where: rangeName(address) };
 }
 
-/** Tables that name the same states, each with the next one in the order of the sheets, where rates differ. */
+/**
+ * Last quarter's table and this one's: the same states (or all but a quarter of them), rates of one size, neither built from the
+ * other. Each table is paired with the nearest such one before it.
+ */
 function* pairsAmong(tables: readonly BookTable[]): Steps<BookPair[]> {
-  const groups = new Map<string, number[]>();
-  tables.forEach(({ reading, role }, k) => {
-    const names = reading.table?.names;
-    if (!names || role !== "rates") return;
-    const key = names.map(nameKey).sort().join("\n");
-    groups.set(key, [...(groups.get(key) ?? []), k]);
-  });
-  const alone: number[] = [];
   const pairs: BookPair[] = [];
-  const add = (a: number, b: number): void => {
-    const rows = compareTables(tables[a].reading.table!, tables[b].reading.table!);
-    if (rows.length > 0) pairs.push({ a, b, rows });
-  };
-  for (const members of groups.values()) {
-    if (members.length === 1) alone.push(members[0]);
-    for (let k = 1; k < members.length; k++) {
-      add(members[k - 1], members[k]);
-      yield 0.95;
+  const earlier: { readonly at: number; readonly names: ReadonlySet<string> }[] = [];
+  for (const [at, { reading, role }] of tables.entries()) {
+    if (!reading.table?.names || role !== "rates") continue;
+    const names = new Set(reading.table.names.map(nameKey));
+    for (let k = earlier.length - 1; k >= Math.max(0, earlier.length - MOST_LOOKED_BACK); k--) {
+      const before = earlier[k];
+      if (!sameStates(before.names, names) || builtFrom(tables[before.at], tables[at]) || builtFrom(tables[at], tables[before.at])) continue;
+      const rows = compareTables(tables[before.at].reading.table!, reading.table);
+      if (!ofOneSize(rows, tables[before.at].arrows)) continue;
+      if (rows.length > 0) pairs.push({ a: before.at, b: at, rows });
+      break;
     }
+    earlier.push({ at, names });
+    yield 0.97;
   }
-  // One state more or less since last time: at least three quarters of all names are shared.
-  for (let x = 0; x < Math.min(alone.length, 200); x++)
-    for (let y = x + 1; y < Math.min(alone.length, 200); y++) {
-      const [one, other] = [alone[x], alone[y]].map((k) => new Set(tables[k].reading.table!.names!.map(nameKey)));
-      const shared = [...one].filter((name) => other.has(name)).length;
-      if (shared >= 2 && shared >= 0.75 * (one.size + other.size - shared)) add(alone[x], alone[y]);
-    }
-  return pairs.sort((p, q) => p.a - q.a || p.b - q.b);
+  return pairs;
+}
+
+const MOST_LOOKED_BACK = 200;
+
+function sameStates(one: ReadonlySet<string>, other: ReadonlySet<string>): boolean {
+  if (Math.abs(one.size - other.size) > Math.max(one.size, other.size) / 4) return false;
+  let shared = 0;
+  for (const name of one) if (other.has(name)) shared++;
+  return shared >= 2 && shared >= 0.75 * (one.size + other.size - shared);
+}
+
+function builtFrom(built: BookTable, { address }: BookTable): boolean {
+  return built.builtFrom.some((source) => source.sheet === address.sheet && sharedCells(source, address) > 0);
+}
+
+/** At least half of the arrows are in both tables, and half of those that changed did by no more than five times. */
+function ofOneSize(rows: readonly CompareRow[], arrows: number): boolean {
+  const ratios = rows.flatMap((row) => (row.kind === "arrow" ? [row.ratio] : []));
+  const changed = ratios.filter((ratio) => ratio > 0);
+  const near = changed.filter((ratio) => ratio >= 0.2 && ratio <= 5).length;
+  const apart = ratios.length - changed.length;
+  return 2 * near >= changed.length && 2 * apart <= arrows + ratios.filter(Number.isNaN).length;
 }

@@ -108,6 +108,24 @@ describe("the whole workbook", () => {
   });
 });
 
+describe("tables that are alike but differ", () => {
+  const table = (factor: number, names = ["Up", "Slow", "Down"]): (string | number)[][] => [["", ...names], [names[0], "", 0.1 * factor, 0.2], [names[1], 1, "", 0.3 * factor], [names[2], 2 * factor, 0, ""]];
+  const pairsOf = (...sheets: (string | number | [string, string | number])[][][]): number[][] =>
+    finish(scanBook(sheets.map((lines, k) => sheet(`S${k}`, lines)))).pairs.map(({ a, b }) => [a, b]);
+  it("are paired with the nearest before, one state more or less allowed", () => {
+    expect(pairsOf(table(1), table(1.1), table(0.9))).toEqual([[0, 1], [1, 2]]);
+    const wider = [["", "Up", "Slow", "Down", "Parked"], ["Up", "", 0.1, 0.2, 1], ["Slow", 1, "", 0.3, 0], ["Down", 2.5, 0, "", 0], ["Parked", 1, 0, 0, ""]];
+    expect(pairsOf(table(1), wider)).toEqual([[0, 1]]);
+  });
+  it("are not paired when equal, of another size, of other states, or built one from the other", () => {
+    expect(pairsOf(table(1), table(1))).toEqual([]);
+    expect(pairsOf(table(1), table(1).map((row) => row.map((value) => (typeof value === "number" ? value * 50 : value))))).toEqual([]);
+    expect(pairsOf(table(1), table(1.1, ["Open", "Ajar", "Shut"]))).toEqual([]);
+    const built = table(1.1).map((row, i) => (i === 0 ? [["=CTMC.GENERATOR(S0!A1:D4,TRUE)", ""] as [string, string], ...row.slice(1)] : row));
+    expect(pairsOf(table(1), built)).toEqual([]);
+  });
+});
+
 describe("what formulas take a table for", () => {
   const names = ["Sound", "Corroded", "Closed"];
   const square = (rows: (string | number)[][]): (string | number)[][] => [["", ...names], ...rows.map((row, i) => [names[i], ...row])];
