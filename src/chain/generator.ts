@@ -78,6 +78,11 @@ export class Generator {
     return new Generator(size, rowStart, Int32Array.from(toState), Float64Array.from(rates));
   }
 
+  /** From compressed rows with ascending columns and rates that were checked before: a part of another chain. Nothing is copied. */
+  static fromRows(size: number, rowStart: Int32Array, toState: Int32Array, rate: Float64Array): Generator {
+    return new Generator(size, rowStart, toState, rate);
+  }
+
   get arrowCount(): number {
     return this.rate.length;
   }

@@ -1,5 +1,5 @@
 import { statesReached, type StateSet } from "./classes";
-import { Generator, type Arrow } from "./generator";
+import { Generator } from "./generator";
 
 /**
  * The chain that stops when it meets a target: the states outside the targets, then one last state for all targets, without
@@ -29,21 +29,31 @@ export function passage(generator: Generator, start: Float64Array, targets: Stat
   const outside = new Int32Array(met);
   const begin = new Float64Array(met + 1);
   const rateIn = new Float64Array(met + 1);
-  const arrows: Arrow[] = [];
+  const rowStart = new Int32Array(met + 2);
+  const toState = new Int32Array(generator.arrowCount + met);
+  const rate = new Float64Array(generator.arrowCount + met);
+  let arrows = 0;
   for (let i = 0; i < generator.size; i++) {
-    if (targets[i]) {
-      begin[met] += start[i];
-      continue;
-    }
-    if (!reached[i]) continue;
-    outside[number[i]] = i;
-    begin[number[i]] = start[i];
+    if (targets[i]) begin[met] += start[i];
+    if (targets[i] || !reached[i]) continue;
+    const from = number[i];
+    outside[from] = i;
+    begin[from] = start[i];
     for (let k = generator.rowStart[i]; k < generator.rowStart[i + 1]; k++) {
       const to = generator.toState[k];
-      if (targets[to]) rateIn[number[i]] += generator.rate[k];
-      else arrows.push([number[i], number[to], generator.rate[k]]);
+      if (targets[to]) rateIn[from] += generator.rate[k];
+      else {
+        toState[arrows] = number[to];
+        rate[arrows++] = generator.rate[k];
+      }
     }
-    if (rateIn[number[i]] > 0) arrows.push([number[i], met, rateIn[number[i]]]);
+    if (rateIn[from] > 0) {
+      toState[arrows] = met;
+      rate[arrows++] = rateIn[from];
+    }
+    rowStart[from + 1] = arrows;
   }
-  return { generator: Generator.fromArrows(met + 1, arrows), start: begin, met, rateIn, outside };
+  rowStart[met + 1] = arrows;
+  const stopped = Generator.fromRows(met + 1, rowStart, toState.slice(0, arrows), rate.slice(0, arrows));
+  return { generator: stopped, start: begin, met, rateIn, outside };
 }

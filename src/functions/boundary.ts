@@ -5,7 +5,7 @@ import { finish, settle, type Steps } from "../chain/steps";
 import type { CellValue } from "../table/rate-table";
 import { Aside, answerOrders, AsideFailed, IS_WORKER } from "./aside";
 import { Asked, cache } from "./asking";
-import { bytesOf, digestOf } from "./digest";
+import { bytesOf, digestOf, sameArguments } from "./digest";
 import { Stop } from "./stop";
 
 /**
@@ -33,6 +33,7 @@ type HostCell = number | string | boolean | CustomFunctions.Error;
 type HostResult = HostCell | HostCell[][];
 
 interface InFlight {
+  readonly args: readonly Argument[];
   readonly promise: Promise<Found>;
   readonly stop: Stop;
   waiting: number;
@@ -73,7 +74,7 @@ function answer(id: string, body: CellFunction, args: readonly Argument[], invoc
   const kept = cache.find(key, args) as { found: Found } | undefined;
   if (kept) return kept.found;
   const running = inFlight.get(key);
-  if (running) return join(key, running, invocation);
+  if (running && sameArguments(running.args, args)) return join(key, running, invocation);
 
   const again = () => stepsOf(body, args);
   const steps = again();
@@ -83,9 +84,11 @@ function answer(id: string, body: CellFunction, args: readonly Argument[], invoc
     return now;
   }
   const stop = new Stop();
-  const promise = later(id, args, steps, again, stop).finally(() => inFlight.delete(key));
+  const promise = later(id, args, steps, again, stop).finally(() => {
+    if (inFlight.get(key)?.stop === stop) inFlight.delete(key);
+  });
   promise.then((found) => keep(key, args, found)).catch(() => undefined);
-  const flight: InFlight = { promise, stop, waiting: 0 };
+  const flight: InFlight = { args, promise, stop, waiting: 0 };
   inFlight.set(key, flight);
   return join(key, flight, invocation);
 }
@@ -125,7 +128,7 @@ function join(key: string, flight: InFlight, invocation: Invocation | null): Pro
   if (invocation)
     invocation.onCanceled = () => {
       if (--flight.waiting > 0) return;
-      inFlight.delete(key);
+      if (inFlight.get(key) === flight) inFlight.delete(key);
       flight.stop.request(new Problem("cancelled", {}, "noAnswer"));
     };
   return flight.promise;

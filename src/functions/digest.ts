@@ -1,16 +1,24 @@
 import type { Argument } from "../cells/argument";
-import type { CellValue } from "../table/rate-table";
+import type { Cells, CellValue } from "../table/rate-table";
 
 /**
- * A digest of arguments, 128 bits as text.
+ * A digest of arguments as text, 64 bits for each. Whoever finds something by it compares the cells (`sameArguments`): a
+ * digest that two tables share costs time and nothing else.
  *
- * Four multiply-and-rotate lanes of 32 bits over all content, each fed by the one before: enough that two tables of one
- * workbook do not meet by chance, with no cryptographic claim. Whoever trusts it compares the cells (`sameArguments`).
+ * Two multiply-and-rotate lanes of 32 bits over all content, the second fed by the first. An argument's digest is kept as
+ * long as its cells live, so that a table is walked once although answers and tables are kept under different keys.
  */
 export function digestOf(...args: readonly Argument[]): string {
-  const hash = new Hash();
-  for (const argument of args) hash.argument(argument);
-  return hash.text();
+  return args.map(digestOfOne).join(" ");
+}
+
+const known = new WeakMap<Cells, string>();
+
+function digestOfOne(cells: Argument): string {
+  if (cells === null) return "-";
+  let digest = known.get(cells);
+  if (digest === undefined) known.set(cells, (digest = new Hash().cells(cells)));
+  return digest;
 }
 
 const float = new Float64Array(1);
@@ -19,41 +27,32 @@ const halves = new Uint32Array(float.buffer);
 class Hash {
   private a = 0x9e3779b1;
   private b = 0x85ebca77;
-  private c = 0xc2b2ae3d;
-  private d = 0x27d4eb2f;
 
   private word(word: number): void {
-    this.a = Math.imul(this.a ^ word, 0x85ebca6b);
-    this.a = (this.a << 13) | (this.a >>> 19);
-    this.b = Math.imul(this.b + word, 0xcc9e2d51) ^ this.a;
-    this.b = (this.b << 15) | (this.b >>> 17);
-    this.c = Math.imul(this.c ^ word, 0x1b873593) + this.b;
-    this.c = (this.c << 17) | (this.c >>> 15);
-    this.d = Math.imul(this.d + word, 0x2545f491) ^ this.c;
-    this.d = (this.d << 11) | (this.d >>> 21);
+    const a = Math.imul(this.a ^ word, 0x85ebca6b);
+    this.a = (a << 13) | (a >>> 19);
+    const b = Math.imul(this.b + word, 0xcc9e2d51) ^ this.a;
+    this.b = (b << 15) | (b >>> 17);
   }
 
-  argument(cells: Argument): void {
-    if (cells === null) {
-      this.word(0x0a11);
-      return;
-    }
-    this.word(0x5a11 + cells.length);
+  cells(cells: Cells): string {
+    this.word(cells.length);
     for (let i = 0; i < cells.length; i++) {
       const row = cells[i];
       if (i > 0 && row === cells[i - 1]) continue; // the same array again: rows before and after tell how often
       this.word(i);
-      this.word(0x7000 + row.length);
+      this.word(row.length);
       for (const cell of row) this.cell(cell);
     }
+    for (let i = 0; i < 4; i++) this.word(0x51ed + i);
+    return `${(this.a >>> 0).toString(36)}.${(this.b >>> 0).toString(36)}`;
   }
 
   private cell(cell: CellValue): void {
     if (typeof cell === "number") {
       float[0] = cell;
-      this.word(1);
       this.word(halves[0]);
-      this.word(halves[1]);
+      this.word(halves[1] ^ 1);
     } else if (typeof cell === "string") this.letters(2, cell);
     else if (typeof cell === "boolean") this.word(cell ? 3 : 4);
     else if (cell === null) this.word(5);
@@ -63,11 +62,6 @@ class Hash {
   private letters(kind: number, text: string): void {
     this.word(kind + (text.length << 3));
     for (let i = 0; i < text.length; i++) this.word(text.charCodeAt(i));
-  }
-
-  text(): string {
-    for (let i = 0; i < 4; i++) this.word(0x51ed + i);
-    return [this.a, this.b, this.c, this.d].map((lane) => (lane >>> 0).toString(36)).join(".");
   }
 }
 
@@ -91,16 +85,13 @@ function sameCell(left: CellValue, right: CellValue): boolean {
   return Object.is(left, right);
 }
 
-/** Rough size of cells in memory, for the bound of the cache. */
+/** Rough size of cells in memory, for the bound of the cache; a row that several places share counts once. */
 export function bytesOf(cells: readonly (readonly unknown[])[] | null): number {
   let bytes = 64;
   let last: readonly unknown[] | null = null;
   for (const row of cells ?? []) {
-    bytes += 8;
-    if (row === last) continue;
+    bytes += row === last ? 8 : 40 + 24 * row.length;
     last = row;
-    bytes += 24;
-    for (const cell of row) bytes += typeof cell === "string" ? 24 + 2 * cell.length : 12;
   }
   return bytes;
 }
