@@ -104,6 +104,14 @@ describe("the page for Excel", () => {
     await close();
   });
 
+  it("registers the formulas all the same with a host that is ready for them late", async () => {
+    const late = office("Excel").replace("window.CustomFunctions =", "window.late =").replace("onReady: () => {", "onReady: () => { window.CustomFunctions = late;");
+    const { page, errors, close } = await open(late);
+    await page.waitForFunction(() => (window as unknown as { registered: string[] }).registered.includes("TRANSITION"));
+    expect(errors).toEqual([]);
+    await close();
+  });
+
   it.each([
     ["the host's script cannot be loaded", null, "Excel's script could not be loaded", "Check the connection"],
     ["it is opened outside Excel", office(null), "This page belongs in Excel", "open the practice workbook instead"],

@@ -10,6 +10,9 @@ const root = document.createElement("div");
 root.id = "pane";
 document.body.append(root);
 
+/** Whether the host's script had defined, when functions.js ran before this one, what the formulas register with. */
+const registeredAtOnce = "CustomFunctions" in window;
+
 if (typeof Office === "undefined") {
   showNotice(root, "Excel's script could not be loaded", [
     "This page needs office.js, which Excel's own address serves. Check the connection, then close and open the pane.",
@@ -29,6 +32,7 @@ async function start(host: Office.HostType | null): Promise<void> {
     showNotice(root, "This version of Excel is too old", ["It lacks:", "Update Excel (Microsoft 365, Excel 2021 or newer, or Excel on the web). The workbook itself is not changed."], missing);
     return;
   }
+  if (!registeredAtOnce && "CustomFunctions" in window) document.head.append(Object.assign(document.createElement("script"), { src: "functions.js" }));
   // So that formulas answer as soon as a workbook with them is opened, before anyone opens the pane.
   void Office.addin.setStartupBehavior(Office.StartupBehavior.load).catch(() => undefined);
   try {
