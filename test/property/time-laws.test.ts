@@ -2,7 +2,7 @@ import fc from "fast-check";
 import { describe, expect, test } from "vitest";
 import { distributions } from "../../src/chain/distribution";
 import { density, reached, survival } from "../../src/chain/first-passage";
-import { Generator, type Arrow } from "../../src/chain/generator";
+import { type Generator, type Arrow } from "../../src/chain/generator";
 import { occupancies } from "../../src/chain/occupancy";
 import { percentiles } from "../../src/chain/percentile";
 import { stationaryShares } from "../../src/chain/stationary";
