@@ -53,6 +53,8 @@ export interface Looked {
   readonly table: Reading;
   /** What the range was taken for: its own layout, or that of the table found inside it. */
   readonly layout: Layout | null;
+  /** What formulas take it for where that is not rates: "costs"; its cells then claim no arrows. */
+  readonly role: string | null;
   readonly entry: TableMemory;
   readonly findings: readonly Finding[];
   readonly open: readonly Item[];
@@ -124,7 +126,8 @@ export function examine(
     open: items.filter((item) => !item.accepted),
     accepted: items.filter((item) => item.accepted),
     questions,
-    claims: inner ? innerClaims.map((claim) => ({ ...claim, row: inner.rows[claim.row], column: inner.columns[claim.column] })) : claimsOf(cells, table),
+    role: context.role?.role ?? null,
+    claims: context.role ? [] : inner ? innerClaims.map((claim) => ({ ...claim, row: inner.rows[claim.row], column: inner.columns[claim.column] })) : claimsOf(cells, table),
     fingerprint: print,
     changes: table.table && entry.signOff && entry.signOff.fingerprint !== print ? changedSince(entry.signOff, table.table) : null,
   };

@@ -27,6 +27,7 @@ describe("the pane looks through the workbook", () => {
 
   it("lists every rate table, no answer of a formula among them, and every formula with its table", async () => {
     const { open, pane, sheet } = await book();
+    await pane.word(/^Show (the other|\d+ more)/).first().click();
     const tables = await pane.root.locator("[data-table]").evaluateAll((cards) => cards.map((card) => card.getAttribute("data-table")));
     expect(tables).toContain("Chiller rates A4:F9");
     expect(tables).toContain("From a colleague A3:F8");

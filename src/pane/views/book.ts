@@ -8,7 +8,7 @@ import { count, inParts, jump, severityMark, word } from "./parts";
 import { sharingPart } from "./sharing";
 import { changeWords } from "./sign-off";
 
-const SHOWN_TABLES = 30;
+const SHOWN_TABLES = 12;
 const SHOWN_FORMULAS = 60;
 const SHOWN_ROWS = 12;
 
@@ -69,10 +69,10 @@ function section(key: string, title: string, none: string | null, ...lists: Chil
 }
 
 /** A table found in the workbook; with the number of formulas that read it where that is known. */
-export function tableCard(session: Session, { address, hidden, size, arrows, stop }: BookTable, readers?: number): VElement {
+export function tableCard(session: Session, { address, hidden, size, arrows, role, stop }: BookTable, readers?: number): VElement {
   const place = placeText(address);
   const read = readers === undefined ? "" : readers === 0 ? "read by no formula" : `read by ${count(readers, "formula")}`;
-  const facts = [stop ? "" : `${count(size, "state")} · ${count(arrows, "arrow")}`, read].filter((text) => text !== "").join(" · ");
+  const facts = [stop ? "" : `${count(size, "state")} · ${role === "rates" ? count(arrows, "arrow") : `${role}, not rates`}`, read].filter((text) => text !== "").join(" · ");
   return h(
     "li",
     { key: place, class: stop ? "sr-card sr-edge-stop" : "sr-card", "data-table": place },

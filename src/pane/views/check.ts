@@ -13,6 +13,7 @@ import { signOffPart } from "./sign-off";
 
 const SHOWN_FINDINGS = 40;
 const SHOWN_ARROWS = 60;
+const SHOWN_TABLES = 12;
 
 /** Findings by severity, what was accepted, what each arrow claims, sign-off and check sheet. */
 export function checkView(session: Session): Child {
@@ -47,7 +48,7 @@ function nothingYet(session: Session): Child {
   const tables = book.scanned?.scan.tables ?? [];
   return [
     h("h2", { key: "none", class: "sr-counts", tabindex: "-1", "data-home": "view" }, tables.length > 0 ? "Rate tables in this workbook" : book.status === "ready" ? "No rate table found in this workbook." : ""),
-    tables.length > 0 && h("ul", { key: "tables", class: "sr-list" }, ...inParts(session, "choose", tables, SHOWN_FINDINGS, (table) => tableCard(session, table))),
+    tables.length > 0 && h("ul", { key: "tables", class: "sr-list" }, ...inParts(session, "choose", tables, SHOWN_TABLES, (table) => tableCard(session, table))),
   ];
 }
 
@@ -82,8 +83,8 @@ function questionCard(session: Session, question: Question): VElement {
   );
 }
 
-function arrows(session: Session, { claims, layout, entry, reading }: Looked): Child {
-  if (!layout) return null;
+function arrows(session: Session, { claims, layout, role, entry, reading }: Looked): Child {
+  if (!layout || role) return null;
   const unit = entry.unit ?? "";
   const answered = Object.keys(entry.answers ?? {}).length;
   return h(

@@ -37,7 +37,7 @@ export function head(session: Session): VElement {
       "p",
       { class: "sr-what" },
       layout ? count(layout.size, "state") : "not read as a table",
-      layout ? ` · ${count(looked.claims.length, "arrow")}` : "",
+      layout ? ` · ${looked.role ? `${looked.role}, not rates` : count(looked.claims.length, "arrow")}` : "",
       " · ",
       session.state.memory === "ready"
         ? word(unit === "" ? "unit not set" : perUnit(unit), () => void session.openUnit(), {
