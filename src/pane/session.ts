@@ -341,9 +341,14 @@ export class Session {
     this.set({ memory: this.memory.state, setAside: this.memory.setAside });
   }
 
-  /** Runs one action; what goes wrong is said, never thrown at the page. */
-  private async attempt(action: () => Promise<void>): Promise<void> {
+  /** Runs what a person asked for; the trouble of an earlier action is over with it. */
+  private attempt(action: () => Promise<void>): Promise<void> {
     if (this.current.trouble) this.set({ trouble: null });
+    return this.saying(action);
+  }
+
+  /** What goes wrong is said, never thrown at the page. */
+  private async saying(action: () => Promise<void>): Promise<void> {
     try {
       await action();
     } catch (error) {
@@ -355,7 +360,7 @@ export class Session {
     clearTimeout(this.timers.get(name));
     this.timers.set(
       name,
-      setTimeout(() => void this.attempt(action), wait),
+      setTimeout(() => void this.saying(action), wait),
     );
   }
 

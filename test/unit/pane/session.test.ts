@@ -272,6 +272,8 @@ describe("remedies", () => {
     workbook.type("Pump", 2, 2, 7);
     await session.undo();
     expect(session.state.trouble).toContain("has changed since");
+    await settled(); // the change itself is taken in, and does not wipe the sentence
+    expect(session.state.trouble).toContain("has changed since");
     expect(workbook.value("Pump", 2, 2)).toBe(7);
   });
 
