@@ -99,6 +99,7 @@ export class Editor {
     const text = options.text ?? before;
     this.edit = { sheet: session.sheet, row, column, before, text, arrows: options.arrows, origin: field, pointed: null };
     this.outlines.copy(null);
+    this.outlines.editing(true);
     this.inCell.element.hidden = false;
     this.grid.reveal(session.active);
     this.place();
@@ -138,6 +139,7 @@ export class Editor {
     if (!edit) return;
     const focused = document.activeElement === this.bar.input || document.activeElement === this.inCell.input;
     this.edit = null;
+    this.outlines.editing(false);
     this.help.close();
     this.inCell.element.hidden = true;
     if (this.session.sheet !== edit.sheet) this.session.show(edit.sheet);

@@ -55,6 +55,7 @@ export class FootLine {
 
   /** Start over asks first, in the line itself. */
   private offer(): void {
+    this.element.classList.remove("asking");
     this.ask.replaceChildren(
       word("Start over", () => {
         const no = word("No, keep it", () => {
@@ -69,6 +70,7 @@ export class FootLine {
           }),
           no,
         );
+        this.element.classList.add("asking");
         this.ask.addEventListener("keydown", (event) => event.key === "Escape" && no.click(), { once: true });
         no.focus();
       }),

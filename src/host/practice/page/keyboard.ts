@@ -104,8 +104,11 @@ export function listenToKeys(session: Session, grid: Grid, editor: Editor, comma
         session.select({ ...over({ row: areaOf(selection).row, column: 0, rows: areaOf(selection).rows, columns: COLUMN_LIMIT }), active: selection.active });
         return true;
     }
-    // A letter begins an edit; the field has the focus before the letter arrives in it.
-    if ((key.length === 1 || event.isComposing || key === "Process") && !event.metaKey && !(event.altKey && !event.getModifierState("AltGraph") && !/[^\p{ASCII}]/u.test(key))) {
+    // A letter begins an edit; the field has the focus before the letter arrives in it. With Alt alone only what is no
+    // plain letter is typed: keyboards write accents and signs that way, plain letters belong to the browser's menus.
+    const typed = key.length === 1 || event.isComposing || key === "Process";
+    const forMenus = event.altKey && !event.getModifierState("AltGraph") && /^\p{ASCII}$/u.test(key);
+    if (typed && !event.metaKey && !forMenus) {
       editor.begin({ text: "", arrows: "point" });
       return false;
     }

@@ -28,6 +28,7 @@ export class Outlines {
   private readonly marks: HTMLElement[] = [];
   private marked: readonly MarkedArea[] = [];
   private copiedArea: BookArea | null = null;
+  private edited = false;
   private fillArea: Area | null = null;
 
   constructor(private readonly session: Session, private readonly grid: Grid) {
@@ -37,6 +38,12 @@ export class Outlines {
 
   mark(areas: readonly MarkedArea[]): void {
     this.marked = areas;
+    this.grid.drawSoon(false);
+  }
+
+  /** While a cell is edited there is nothing to fill from. */
+  editing(open: boolean): void {
+    this.edited = open;
     this.grid.drawSoon(false);
   }
 
@@ -63,7 +70,7 @@ export class Outlines {
     const corner = this.grid.box(area);
     this.handle.style.left = `${corner.left + corner.width - 4}px`;
     this.handle.style.top = `${corner.top + corner.height - 4}px`;
-    this.handle.hidden = session.readOnly !== null;
+    this.handle.hidden = this.edited || session.readOnly !== null;
     const shown = this.marked.filter((entry) => entry.area.sheet === session.sheet);
     while (this.marks.length < shown.length) {
       const mark = el("div");
