@@ -4,13 +4,14 @@ import { roundingBand, type Body } from "./body";
  * What the numbers of a square table look like, decided by their sums alone.
  * - `rates`: nothing speaks against rates;
  * - `columnsSum`: with the given diagonal every column sums to 0 and some row does not;
- * - `probability`, `percent`: rows sum to 1 (or 100), nothing negative, a positive diagonal;
- * - `complement`: rows sum to 1 only because the diagonal goes below 0;
+ * - `probability`, `percent`: rows sum to 1 (or 100), nothing negative, a positive diagonal; or they fall short of it by less than a
+ *   fifth, a class such as "not rated" left out, and every stay is its row's largest entry;
+ * - `complement`: rows sum to 1 only because the diagonal goes below 0, or exits alone exceed 1 beside rows that sum to 1;
  * - `empty`: no number off the diagonal.
  */
 export type Kind = "rates" | "columnsSum" | "probability" | "percent" | "complement" | "empty";
 
-/** A probability table typed by hand may miss 1 by rounding or by a small class left out, such as "not rated". */
+/** A probability table typed by hand may miss 1 by rounding. */
 const PROBABILITY_SLACK = 0.02;
 const SAME = 1e-9;
 
@@ -34,8 +35,9 @@ export function kindOf(body: Body): Kind {
     }
   if (positives === 0) return "empty";
   if (negativeOff === 0 && diagonalUp > 0 && diagonalDown === 0) {
-    if (rowsSumTo(body, 1, PROBABILITY_SLACK) && largest <= 1 + SAME) return "probability";
-    if (rowsSumTo(body, 100, 1) && largest > 1) return "percent";
+    if (largest <= 1 + SAME && (rowsSumTo(body, 1, PROBABILITY_SLACK) || rowsFallShortOf(body, 1))) return "probability";
+    if (largest > 1 && (rowsSumTo(body, 100, 1) || (largest > 50 && rowsFallShortOf(body, 100)))) return "percent";
+    if (largest <= 1 + SAME && someExitsAbove1(body)) return "complement";
   }
   if (negativeOff === 0 && diagonalDown > 0 && rowsSumTo(body, 1, 1e-6)) return "complement";
   if (diagonalDown > 0 && columnsSumToZero(body)) return "columnsSum";
@@ -52,6 +54,33 @@ function rowsSumTo(body: Body, total: number, slack: number): boolean {
     filled++;
   }
   return filled >= Math.min(2, body.size);
+}
+
+/** Every filled row between four fifths of the total and the total, its diagonal entry the largest. */
+function rowsFallShortOf(body: Body, total: number): boolean {
+  let filled = 0;
+  for (let i = 0; i < body.size; i++) {
+    const { sum, entries } = lineSum(body, i, true);
+    if (entries.length === 0) continue;
+    const stay = body.values[i * body.size + i];
+    if (!(sum >= 0.8 * total && sum <= 1.01 * total && entries.every((entry) => entry <= stay))) return false;
+    filled++;
+  }
+  return filled >= Math.min(2, body.size);
+}
+
+/** Rows that sum to 1 with a stay on the diagonal, and beside them rows whose exits alone exceed 1. */
+function someExitsAbove1(body: Body): boolean {
+  let ones = 0;
+  let above = 0;
+  for (let i = 0; i < body.size; i++) {
+    const { sum, entries } = lineSum(body, i, true);
+    if (entries.length === 0) continue;
+    if (body.exits[i] > 1 + SAME) above++;
+    else if (Math.abs(sum - 1) <= Math.max(SAME, roundingBand(entries)) && body.values[i * body.size + i] > 0) ones++;
+    else return false;
+  }
+  return ones > 0 && above > 0;
 }
 
 function columnsSumToZero(body: Body): boolean {
@@ -91,4 +120,13 @@ export function lineSum(body: Body, line: number, isRow: boolean): LineSum {
 /** How far a line may miss zero: double precision, or the rounding of its typed digits. */
 export function slackOf(line: LineSum): number {
   return Math.max(SAME * line.size, roundingBand(line.entries) * (1 + SAME));
+}
+
+/** Whether some row stays more than a fiftieth below the total: a class is left out. */
+export function fallShort(body: Body, total: number): boolean {
+  for (let i = 0; i < body.size; i++) {
+    const { sum, entries } = lineSum(body, i, true);
+    if (entries.length > 0 && sum < 0.98 * total) return true;
+  }
+  return false;
 }

@@ -2,6 +2,7 @@ import { isPercentFormat } from "../formats";
 import { bodySpan, entrySpan, type Rule } from "../context";
 import type { Finding } from "../finding";
 import { cellSpan } from "../finding";
+import { fallShort } from "../kind";
 
 /**
  * Percent typed as whole numbers (mistake 6): a positive diagonal and rows that sum to 100. From the sheet also: some rate
@@ -10,7 +11,7 @@ import { cellSpan } from "../finding";
 export const percent: Rule = (context) => {
   const { kind, body, options } = context;
   if (kind === "percent") {
-    return [{ code: "percentTable", severity: "stop", span: bodySpan(context), remedy: "dividePercent", details: {} }];
+    return [{ code: "percentTable", severity: "stop", span: bodySpan(context), remedy: "dividePercent", details: { short: fallShort(body, 100) } }];
   }
   const formats = options.facts?.formats;
   if (!formats) return [];

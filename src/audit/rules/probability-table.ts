@@ -1,5 +1,5 @@
 import { bodySpan, rowSpan, type Rule } from "../context";
-import { lineSum } from "../kind";
+import { fallShort, lineSum } from "../kind";
 
 /**
  * A table of transition probabilities where rates are expected (mistake 5): nothing negative, a positive diagonal, every
@@ -8,7 +8,7 @@ import { lineSum } from "../kind";
 export const probabilityTable: Rule = (context) => {
   if (context.kind !== "probability") return [];
   const findings = [
-    { code: "probabilityTable", severity: "stop" as const, span: bodySpan(context), remedy: "convertProbability", details: {} },
+    { code: "probabilityTable", severity: "stop" as const, span: bodySpan(context), remedy: "convertProbability", details: { short: fallShort(context.body, 1) } },
   ];
   let worst = -1;
   let gap = 1e-9;

@@ -2,6 +2,7 @@ import { communicatingClasses } from "../../chain/classes";
 import type { Generator } from "../../chain/generator";
 import { possibleArrows } from "../body";
 import { rowSpan, stateName, type Context, type Rule } from "../context";
+import { finalWithoutEntry } from "./columns-sum";
 import { meansBeginning, meansFinal } from "../words";
 
 /**
@@ -11,9 +12,10 @@ import { meansBeginning, meansFinal } from "../words";
  * finding for all. Cells that cannot be read count as arrows.
  */
 export const unreachable: Rule = (context) => {
-  const { chain, kind, start } = context;
+  const { body, chain, kind, start } = context;
   if (kind === "columnsSum" || kind === "complement" || chain.arrowCount === 0) return [];
-  const unseen = start ? beyond(context, start) : withoutEntry(context);
+  const turned = finalWithoutEntry(context); // reported as a table that seems transposed
+  const unseen = (start ? beyond(context, start) : withoutEntry(context)).filter((state) => body.form === "list" || state !== turned);
   if (unseen.length === 0) return [];
   const [span, ...also] = unseen.map((state) => rowSpan(context, state));
   return [

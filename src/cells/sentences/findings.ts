@@ -139,12 +139,19 @@ const WORDS: Readonly<Record<string, Words>> = {
         : "Every column sums to 0 and not every row: columns seem to be from, rows to.",
     remedy: () => "Turn the table over (a transposed copy), so that rows are from and columns are to.",
   },
+  seemsTransposed: {
+    finding: (f) => `${f.text("name")} has exits and nothing leads to it: are columns from and rows to?`,
+    remedy: () => "If so, turn the table over (a transposed copy); if not, enter what leads to it.",
+  },
   listReversed: {
     finding: (f) => `The headings say "${f.text("first")}", "${f.text("second")}": formulas take the first column as from, the second as to.`,
     remedy: () => "Exchange the two columns: =CTMC.FROMLIST(CHOOSECOLS(list, 2, 1, 3)).",
   },
   probabilityTable: {
-    finding: () => "Every row sums to 1 and nothing is negative: this is a table of probabilities, not of rates.",
+    finding: (f) =>
+      f.has("short")
+        ? "Rows sum to 1 or a little less, stays on the diagonal: this is a table of probabilities, not of rates."
+        : "Every row sums to 1 and nothing is negative: this is a table of probabilities, not of rates.",
     remedy: () => "Convert it: =CTMC.FROMPROBABILITY(table, period) gives the rates per unit of the period.",
   },
   probabilitySums: {
@@ -152,7 +159,7 @@ const WORDS: Readonly<Record<string, Words>> = {
     remedy: () => "If rounding is the cause, divide each row by its sum before converting; else look for the missing class.",
   },
   percentTable: {
-    finding: () => "Every row sums to 100: these are percentages typed as whole numbers.",
+    finding: (f) => `${f.has("short") ? "Rows sum to 100 or a little less" : "Every row sums to 100"}: these are percentages typed as whole numbers.`,
     remedy: () => "Divide by 100, then convert: =CTMC.FROMPROBABILITY(table, period).",
   },
   percentMixed: {

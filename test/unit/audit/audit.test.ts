@@ -59,6 +59,12 @@ describe("mistake 4: columns are from", () => {
     expect(complaints(blank, { answers: { largestArrow: "columns" } })).toEqual(["columnsSum"]);
     expect(codes(audit(blank))).not.toContain("largestArrow");
   });
+  it("warns where a final state has exits and nothing leads to it", () => {
+    const turned = headed("", ["Well", "Ill", "Dead"], [[null, 0.3, null], [0.2, null, null], [0.02, 0.1, null]]);
+    expect(findingOf(turned, "seemsTransposed")).toMatchObject({ severity: "warning", remedy: "transposeCopy", details: { name: "Dead" } });
+    expect(complaints(turned)).toEqual(["seemsTransposed"]);
+    expect(complaints(headed("", ["Up", "Failed"], [[null, 0.3], [0.2, null]]))).toEqual([]);
+  });
   it("does not ask where the corner gives the order and the amount", () => {
     const said = headed("rate per h, from \\ to", three, [[null, 0.02, 0.01], [0.5, null, 0.1], [1, 0, null]]);
     expect(codes(audit(said, { answers: {} }))).toEqual(["diagonalBlank"]);
@@ -78,6 +84,15 @@ describe("mistake 5: probabilities where rates are expected", () => {
   it("warns of sums that miss 1 by rounding (mistake 14)", () => {
     const rounded = headed("", ["Well", "Ill", "Dead"], [[0.9, 0.08, 0.03], [0.2, 0.7, 0.1], [0, 0, 1]]);
     expect(findingOf(rounded, "probabilitySums")).toMatchObject({ severity: "warning", remedy: "rescaleRows", details: { rows: 1 } });
+  });
+  it("knows them with a class left out, by the stays", () => {
+    const unrated = headed("", ["A", "B", "Default"], [[0.87, 0.04, 0.01], [0.05, 0.8, 0.06], [0, 0, 1]]);
+    expect(findingOf(unrated, "probabilityTable")).toMatchObject({ details: { short: true } });
+    const percent = headed("", ["A", "B", "Default"], [[87, 4, 1], [5, 80, 6], [0, 0, 100]]);
+    expect(findingOf(percent, "percentTable")).toMatchObject({ details: { short: true } });
+  });
+  it("knows exits made probabilities one by one beside sound rows", () => {
+    expect(complaints(headed("", ["Well", "Ill", "Dead"], [[0, 0.5934, 0.5507], [0.2, 0.7, 0.1], [0, 0, 1]]))).toContain("competingExits");
   });
   it("is silent on rates whose exits sum to 1", () => {
     expect(complaints([[0, 1, 0], [0, 0, 1], [1, 0, 0]])).toEqual([]);
