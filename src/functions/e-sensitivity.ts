@@ -6,6 +6,7 @@ import { readState, readStates } from "../cells/states";
 import { readTargets } from "../cells/targets";
 import { availabilityBandSteps } from "../chain/availability-band";
 import { costElasticitySteps, meanTimeElasticitySteps, shareElasticitySteps } from "../chain/elasticity";
+import { Problem } from "../chain/problem";
 import { rateForGoalSteps } from "../chain/rate-for-goal";
 import { shareElasticityAtSteps } from "../chain/transition-derivative";
 import { ask, countsIn, tableIn } from "./asking";
@@ -90,6 +91,7 @@ export function rateForGoal(rates: any[][], from: any[][], to: any[][], up: any[
   const states = tableIn(rates);
   const tail = readState(from, "from", states);
   const head = readState(to, "to", states);
+  if (tail === head) throw new Problem("sameState", { argument: "to" });
   const working = readStates(up, "up", states);
   const share = readNumber(goal, "goal", { least: 0, most: 1 });
   const at = time ? readNumber(time, "time", NOT_NEGATIVE) : undefined;

@@ -67,12 +67,14 @@ export function rateProblem(rate: number, where: Where): Problem | null {
   return null;
 }
 
+/** Why a given diagonal is refused; `total` is 1 or 100 where the row looks like probabilities or percent. */
 function diagonalProblem(given: number, exits: readonly TableArrow[], row: number, layout: Layout): Problem | null {
   const rates = exits.map((arrow) => arrow.rate);
   const sum = Generator.fromArrows(exits.length + 1, rates.map((rate, k): Arrow => [0, k + 1, rate])).exitRate[0];
   if (Math.abs(given + sum) <= DIAGONAL_TOLERANCE * sum) return null;
   const span = [layout.body.row + row, layout.body.column + row, 1, 1];
-  const details = { row, column: row, rowName: layout.names?.[row] ?? null, given, exits: sum, gap: given + sum, span };
+  const total = given > 0 ? [1, 100].find((whole) => Math.abs(given + sum - whole) <= 1e-6 * whole) : undefined;
+  const details = { row, column: row, rowName: layout.names?.[row] ?? null, given, exits: sum, gap: given + sum, total: total ?? null, span };
   if (exits.length === 0) return new Problem("diagonalWithoutExits", details);
   if (given > 0) return new Problem("diagonalPositive", details);
   return new Problem(isRounding(given, rates) ? "rowSumRounded" : "rowSum", details);

@@ -25,8 +25,9 @@ export const PROBLEM_SENTENCES: Readonly<Record<string, Sentence>> = {
   rateNegative: (w) => `${w.place()}: ${w.number("rate")} is not a ${w.quantity()}. Enter 0 or more.`,
   rateNotFinite: (w) => `${w.place()}: the ${w.quantity()} is not a finite number. Enter a number, 0 or more.`,
   rateOutOfRange: (w) => `${w.place()}: ${w.number("rate")} is not between 1E-150 and 1E+150. Change the time unit.`,
-  diagonalPositive: (w) => `${w.place()}: the diagonal is ${w.number("given")}. Enter minus the exits, -${w.number("exits")}, or clear it.`,
-  diagonalWithoutExits: (w) => `${w.place()}: the diagonal is ${w.number("given")}, but the row has no exits. Clear it or enter the exits.`,
+  diagonalPositive: (w) => (w.has("total") ? probabilities(w) : `${w.place()}: the diagonal is ${w.number("given")}. Enter minus the exits, -${w.number("exits")}, or clear it.`),
+  diagonalWithoutExits: (w) =>
+    w.has("total") ? probabilities(w) : `${w.place()}: the diagonal is ${w.number("given")}, but the row has no exits. Clear it or enter the exits.`,
   rowSum: (w) => `Row ${w.state("row", "rowName")}: the diagonal is ${w.number("given")}, the exits sum to ${w.number("exits")}. Correct one or clear the diagonal.`,
   rowSumRounded: (w) =>
     `Row ${w.state("row", "rowName")}: diagonal ${w.number("given")} and exits ${w.number("exits")} differ by rounding. Clear the diagonal.`,
@@ -55,6 +56,7 @@ export const PROBLEM_SENTENCES: Readonly<Record<string, Sentence>> = {
   oneForEachState: (w) =>
     `${w.argument()}: ${w.number("rows")} × ${w.number("columns")} cells were given. Give one row or column of ${w.number("size")}, one a state.`,
   oneStateNeeded: (w) => `${w.argument()}: ${w.number("rows")} × ${w.number("columns")} cells were given. Give one state by name or number.`,
+  sameState: (w) => `${w.argument()}: this is the from-state too. Name two different states.`,
   stateMissing: (w) => `${w.argument()}: no state is given. Give at least one state by name or number.`,
   stateUnknown: (w) => `${w.argument()}: there is no state ${w.quoted("found")}. Give a state's name or a number up to ${w.number("size")}.`,
   stateNumberOutside: (w) => `${w.argument()}: there is no state ${w.number("value")}. Give a number from 1 to ${w.number("size")}, or a name.`,
@@ -149,6 +151,12 @@ export const PROBLEM_SENTENCES: Readonly<Record<string, Sentence>> = {
   spillTooLarge: (w) =>
     `The result has ${w.number("rows")} × ${w.number("columns")} cells, over the limit of ${w.number("most")} ${w.has("wide") ? "columns" : "cells"}. Ask for less at once.`,
 };
+
+/** A row that sums to 1 or 100 with its diagonal: probabilities or percent stand where rates are needed. */
+function probabilities(w: Words): string {
+  const kind = w.number("total") === "1" ? "probabilities" : "percent";
+  return `${w.place()}: ${w.number("given")}, and the row sums to ${w.number("total")}: ${kind}? Convert with CTMC.FROMPROBABILITY.`;
+}
 
 /** What numbers an argument takes. */
 function domain(w: Words): string {

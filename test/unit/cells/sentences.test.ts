@@ -35,6 +35,7 @@ const LONG: Record<string, Detail> = new Proxy({} as Record<string, Detail>, {
     if (key === "quantity" || key === "what") return "count";
     if (key === "classes") return [[0, 1, 2], [3], [4], [5]];
     if (key === "side") return "column";
+    if (key === "total") return 100;
     if (key === "argument") return "timeInState";
     if (/^(row|column|index|first|second|firstRow|from|to|state|named|number|size|rows|columns|cells|most|states|other|end|count|times|units|running|places|servers|up|down|longest|groups)$/.test(key)) return 16_383;
     if (/name|found|fault|unit|label|text|group$/i.test(key)) return LONG_NAME;

@@ -119,6 +119,8 @@ describe("times and other numbers", () => {
   });
 
   it.each<[string, unknown[], string]>([
+    ["TRANSITION", [[["", "Good", "Bad"], ["Good", 0.9, 0.1], ["Bad", 0.3, 0.7]], 1], "#VALUE! Row 1 (Good), column 1: 0.9, and the row sums to 1: probabilities? Convert with CTMC.FROMPROBABILITY."],
+    ["TRANSITION", [[[100, 0], [30, 70]], 1], "#VALUE! Row 1, column 1: 100, and the row sums to 100: percent? Convert with CTMC.FROMPROBABILITY."],
     ["TRANSITION", [PUMP, -1], "#VALUE! time: -1 cannot be used. Enter a number, 0 or more."],
     ["TRANSITION", [PUMP, "soon"], '#VALUE! time: "soon" is not a number. Enter a number, 0 or more.'],
     ["TRANSITION", [PUMP, [[1, 2]]], "#VALUE! time: 1 × 2 cells were given. Give one value."],
@@ -155,7 +157,7 @@ describe("times and other numbers", () => {
     ["TRANSITION", [PUMP, 1e30], "#VALUE! Time 1e+30 × largest exit rate 2 is over 1e+18. Shorten it, or ask for the long run."],
     ["PHASED", [[...BARE, ...BARE], [[1, 2, 3, 4]], 1], "#VALUE! ratesStack: 6 rows cannot be shared by 4 durations. Stack one table of equal height for each."],
     ["PHASED", [[...BARE, [0, -1, 0], [1, 0, 0], [0, 0, 0]], [[1, 2]], 1], "#VALUE! Row 4, column 2: -1 is not a rate. Enter 0 or more."],
-    ["RATEFORGOAL", [PUMP, "Failed", "Failed", "Running", 0.5], "#VALUE! State 3 has an arrow to itself. Remove it: staying needs no rate."],
+    ["RATEFORGOAL", [PUMP, "Failed", "Failed", "Running", 0.5], "#VALUE! to: this is the from-state too. Name two different states."],
   ])("%s refuses with its sentence", (name, args, sentence) => {
     expect(refusal(call(name, ...args))).toBe(sentence);
     expect(sentence.length - sentence.indexOf(" ") - 1).toBeLessThanOrEqual(120);
