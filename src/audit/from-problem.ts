@@ -38,6 +38,7 @@ function remedyOf(same: readonly Problem[]): string | undefined {
   if (same[0].code === "rateIsText") {
     return same.some((problem) => !ambiguousNumber(String(problem.details.found))) ? "convertText" : undefined;
   }
+  if (same.some((problem) => problem.details.total)) return undefined; // probabilities: clearing the diagonal would pass them off as rates
   return REMEDIES[same[0].code];
 }
 

@@ -105,6 +105,8 @@ interface Words {
 
 const CLEAR_DIAGONAL = "Clear the diagonal: it is then worked out as minus the exits.";
 
+const CONVERT = "Do not clear the diagonal: convert the whole table, or enter rates.";
+
 /** Remedies of refusals (their sentence comes from the problem), then the rules' own sentences. */
 const WORDS: Readonly<Record<string, Words>> = {
   rangeEmpty: refusal(() => "Select the cells that hold the rates."),
@@ -124,8 +126,8 @@ const WORDS: Readonly<Record<string, Words>> = {
   rateNegative: refusal(() => "Enter the rate without its minus sign, or move it to the diagonal if it is minus the exits."),
   rateNotFinite: refusal(() => "Enter a finite number, 0 or more."),
   rateOutOfRange: refusal(() => "Use a time unit in which the rates are of ordinary size."),
-  diagonalPositive: refusal((f) => (f.has("lostMinus") ? `A minus sign got lost. ${CLEAR_DIAGONAL}` : `Diagonals of rate tables are minus the exits. ${CLEAR_DIAGONAL}`)),
-  diagonalWithoutExits: refusal(() => "Clear that diagonal cell if the state is final; else enter the rates out of it."),
+  diagonalPositive: refusal((f) => (f.has("total") ? CONVERT : f.has("lostMinus") ? `A minus sign got lost. ${CLEAR_DIAGONAL}` : `Diagonals of rate tables are minus the exits. ${CLEAR_DIAGONAL}`)),
+  diagonalWithoutExits: refusal((f) => f.has("total") ? CONVERT : "Clear that diagonal cell if the state is final; else enter the rates out of it."),
   rowSum: refusal(() => `Look for a wrong or missing rate in the row first. ${CLEAR_DIAGONAL}`),
   rowSumRounded: refusal(() => `Only the last typed digit is at fault. ${CLEAR_DIAGONAL}`),
   listNameMissing: refusal(() => "Enter both states of that row as text."),

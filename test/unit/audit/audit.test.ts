@@ -85,6 +85,10 @@ describe("mistake 5: probabilities where rates are expected", () => {
     const rounded = headed("", ["Well", "Ill", "Dead"], [[0.9, 0.08, 0.03], [0.2, 0.7, 0.1], [0, 0, 1]]);
     expect(findingOf(rounded, "probabilitySums")).toMatchObject({ severity: "warning", remedy: "rescaleRows", details: { rows: 1 } });
   });
+  it("does not offer it either where only some rows sum to 1", () => {
+    const mixed = headed("", ["Well", "Ill", "Dead"], [[0.9, 0.08, 0.02], [2, 3, 0.1], [0, 0, 1]]);
+    expect(audit(mixed).map(({ code, remedy }) => [code, remedy])).toEqual([["diagonalPositive", undefined], ["diagonalWithoutExits", undefined]]);
+  });
   it("knows them with a class left out, by the stays", () => {
     const unrated = headed("", ["A", "B", "Default"], [[0.87, 0.04, 0.01], [0.05, 0.8, 0.06], [0, 0, 1]]);
     expect(findingOf(unrated, "probabilityTable")).toMatchObject({ details: { short: true } });
