@@ -22,8 +22,11 @@ export interface CheckSheet {
   readonly look: SheetLook;
 }
 
-/** Columns of the sheet: together about the width of a printed page. */
-const WIDTHS = [22, 14, 14, 11, 11, 16, 14];
+/** Columns of the sheet in characters: together the width of a printed page. */
+const WIDTHS = [20, 13, 12, 9, 10, 14, 11];
+/** Characters of running text that fit beside the first column, and across all. */
+const BESIDE = 80;
+const ACROSS = 100;
 const MOST_FORMULAS = 200;
 /** About forty printed pages; beyond, a list of arrows is no longer read. */
 const MOST_ARROWS = 2000;
@@ -73,6 +76,11 @@ class Sheet {
     this.line(...cells);
   }
 
+  /** Running text beside the first column, broken over as many lines as it needs. */
+  text(text: string, label = ""): void {
+    broken(text, BESIDE).forEach((part, at) => this.line(at === 0 ? label : "", part));
+  }
+
   rectangle(): (HostValue | null)[][] {
     return this.lines.map((line) => WIDTHS.map((_, column) => asTyped(line[column] ?? null)));
   }
@@ -91,7 +99,7 @@ function identity(sheet: Sheet, { reading, layout, entry, fingerprint, claims, t
   sheet.line("Unit", entry.unit ? perUnit(plainUnit(entry.unit)) : "not set");
   if (layout) {
     const given = table.table?.givenDiagonal.filter((value) => value !== null).length ?? 0;
-    const diagonal = given === 0 ? "worked out as minus the exits" : given === layout.size ? "given, agrees with the exits" : `given in ${given} rows, else worked out`;
+    const diagonal = !table.table ? "not judged, since the range does not read" : given === 0 ? "worked out as minus the exits" : given === layout.size ? "given, agrees with the exits" : `given in ${given} rows, else worked out`;
     sheet.line("Convention", layout.form === "list" ? "list: from, to, rate" : `rows are from, columns are to; diagonal ${diagonal}`);
   }
   sheet.line("Start, horizon", context.formulas.length > 0 ? "as the formulas below say" : "");
@@ -134,17 +142,17 @@ function findings(sheet: Sheet, { open, accepted, questions, reading }: Looked):
   const write = (item: Item, status: string): void => {
     const places = [item.address ?? reading.address, ...item.also].map(cellText).join(", ");
     sheet.line(item.finding.severity, places, status, "");
-    sheet.line("", item.sentence);
-    if (item.advice !== "") sheet.line("", item.advice);
+    sheet.text(item.sentence);
+    if (item.advice !== "") sheet.text(item.advice);
   };
   for (const item of open) write(item, "open");
   for (const question of questions) {
     sheet.line("question", cellText(reading.address), "open", "");
-    sheet.line("", question.question);
+    sheet.text(question.question);
   }
   for (const item of accepted) {
     write(item, "accepted");
-    sheet.line("", `Accepted by ${item.accepted?.initials} on ${item.accepted?.date}: ${item.accepted?.reason}`);
+    sheet.text(`Accepted by ${item.accepted?.initials} on ${item.accepted?.date}: ${item.accepted?.reason}`);
   }
 }
 
@@ -152,16 +160,16 @@ function arrows(sheet: Sheet, { claims, entry, reading }: Looked): void {
   if (claims.length === 0) return;
   const unit = entry.unit ? plainUnit(entry.unit) : "";
   sheet.title("Arrows");
-  sheet.heading("from", "to", "rate", "cell", "in words");
+  sheet.heading("from", "to", "rate", "in words, cell");
   for (const { from, to, rate, row, column } of claims.slice(0, MOST_ARROWS))
-    sheet.line(from, to, rate, cellText(within(reading.address, { row, column, rows: 1, columns: 1 })), arrowClaim(rate, unit));
+    sheet.line(from, to, rate, `${arrowClaim(rate, unit)}, ${cellText(within(reading.address, { row, column, rows: 1, columns: 1 }))}`);
   if (claims.length > MOST_ARROWS) sheet.line(`and ${claims.length - MOST_ARROWS} more, in the table itself`);
 }
 
 function formulas(sheet: Sheet, { formulas: all }: CheckSheetContext): void {
   if (all.length === 0) return;
   sheet.title("Formulas that read this table");
-  for (const { place, formula } of all.slice(0, MOST_FORMULAS)) sheet.line(place, formula);
+  for (const { place, formula } of all.slice(0, MOST_FORMULAS)) sheet.text(formula, place);
   if (all.length > MOST_FORMULAS) sheet.line("", `and ${all.length - MOST_FORMULAS} more`);
 }
 
@@ -173,7 +181,7 @@ function signatures(sheet: Sheet, { entry, fingerprint }: Looked): void {
   }
   for (const label of ["Prepared by", "Date", "Reviewed by", "Date", "Scope", "Limits"]) sheet.line(label, "", "______________________________");
   sheet.title("Cautions");
-  for (const caution of CAUTIONS) for (const part of broken(caution, 110)) sheet.line(part);
+  for (const caution of CAUTIONS) for (const part of broken(caution, ACROSS)) sheet.line(part);
 }
 
 function naming(names: readonly string[] | null): (state: number) => string {
@@ -189,12 +197,13 @@ export function sheetName(sheet: string): string {
   return `Check ${sheet}`.replace(/[[\]:*?/\\]/g, " ").slice(0, 28).trim();
 }
 
-/** Breaks a text at spaces into parts of at most `width` characters. */
+/** Breaks a text at spaces, a longer word anywhere, into parts of at most `width` characters. */
 function broken(text: string, width: number): string[] {
   const parts: string[] = [];
-  for (const word of text.split(" ")) {
+  const words = text.split(" ").flatMap((word) => word.match(new RegExp(`.{1,${width}}`, "gu")) ?? [""]);
+  for (const word of words) {
     const last = parts[parts.length - 1];
-    if (last !== undefined && last.length + word.length < width) parts[parts.length - 1] = `${last} ${word}`;
+    if (last !== undefined && last.length + 1 + word.length <= width) parts[parts.length - 1] = `${last} ${word}`;
     else parts.push(word);
   }
   return parts;

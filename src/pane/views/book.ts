@@ -45,21 +45,21 @@ function contents(session: Session, scan: BookScan): Child {
       "tables",
       "Rate tables",
       scan.tables.length === 0 ? "No rate table found on any sheet." : null,
-      h("ul", { class: "sr-list" }, ...inParts(session, "tables", scan.tables, SHOWN_TABLES, (table, at) => tableCard(session, table, readers.get(at) ?? 0))),
+      h("ul", { role: "list", class: "sr-list" }, ...inParts(session, "tables", scan.tables, SHOWN_TABLES, (table, at) => tableCard(session, table, readers.get(at) ?? 0))),
     ),
     scan.pairs.length > 0 &&
       section(
         "pairs",
         "Alike, but different",
         null,
-        h("ul", { class: "sr-list" }, ...inParts(session, "pairs", scan.pairs, SHOWN_TABLES, (pair, at) => pairCard(session, scan, pair, at))),
+        h("ul", { role: "list", class: "sr-list" }, ...inParts(session, "pairs", scan.pairs, SHOWN_TABLES, (pair, at) => pairCard(session, scan, pair, at))),
       ),
     section(
       "formulas",
       "Formulas",
       scan.formulas.length === 0 ? "No CTMC formula on any sheet." : null,
-      scan.findings.length > 0 && h("ul", { key: "about", class: "sr-list" }, ...inParts(session, "about", scan.findings, SHOWN_TABLES, (found, at) => formulaFinding(session, found, at))),
-      h("ul", { key: "list", class: "sr-formulas" }, ...inParts(session, "formulas", ranked(scan.formulas), SHOWN_FORMULAS, (formula) => formulaLine(session, scan, formula))),
+      scan.findings.length > 0 && h("ul", { role: "list", key: "about", class: "sr-list" }, ...inParts(session, "about", scan.findings, SHOWN_TABLES, (found, at) => formulaFinding(session, found, at))),
+      h("ul", { role: "list", key: "list", class: "sr-formulas" }, ...inParts(session, "formulas", ranked(scan.formulas), SHOWN_FORMULAS, (formula) => formulaLine(session, scan, formula))),
     ),
   ];
 }
@@ -104,7 +104,7 @@ function pairCard(session: Session, scan: BookScan, { a, b, rows }: BookPair, at
       "details",
       { key: "rows" },
       h("summary", null, rows.length === 1 ? "1 difference" : `${rows.length} differences`),
-      h("ul", { class: "sr-changes" }, ...inParts(session, `pair-${at}`, rows, SHOWN_ROWS, (row) => h("li", null, changeWords(row, "")))),
+      h("ul", { role: "list", class: "sr-changes" }, ...inParts(session, `pair-${at}`, rows, SHOWN_ROWS, (row) => h("li", null, changeWords(row, "")))),
     ),
   );
 }

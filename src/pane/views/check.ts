@@ -22,11 +22,11 @@ export function checkView(session: Session): Child {
   const { open, accepted, questions } = looked;
   return [
     countsLine(looked),
-    questions.length > 0 && h("ul", { key: "questions", class: "sr-list", "data-home-area": "view" }, ...questions.map((question) => questionCard(session, question))),
+    questions.length > 0 && h("ul", { role: "list", key: "questions", class: "sr-list", "data-home-area": "view" }, ...questions.map((question) => questionCard(session, question))),
     open.length > 0
       ? h(
           "ul",
-          { key: "findings", class: "sr-list", "aria-label": "Findings", "data-home-area": "view" },
+          { key: "findings", role: "list", class: "sr-list", "aria-label": "Findings", "data-home-area": "view" },
           ...inParts(session, "findings", open, SHOWN_FINDINGS, (item) => findingCard(session, item)),
         )
       : h("p", { key: "ok", class: "sr-ok" }, accepted.length ? "Nothing open." : "Nothing found."),
@@ -35,7 +35,7 @@ export function checkView(session: Session): Child {
         "details",
         { key: "accepted", class: "sr-group", "data-home-area": "view" },
         h("summary", null, `${accepted.length} accepted`),
-        h("ul", { class: "sr-list", "aria-label": "Accepted findings" }, ...accepted.map((item) => acceptedCard(session, item))),
+        h("ul", { role: "list", class: "sr-list", "aria-label": "Accepted findings" }, ...accepted.map((item) => acceptedCard(session, item))),
       ),
     arrows(session, looked),
     signOffPart(session, looked),
@@ -48,7 +48,7 @@ function nothingYet(session: Session): Child {
   const tables = book.scanned?.scan.tables ?? [];
   return [
     h("h2", { key: "none", class: "sr-counts", tabindex: "-1", "data-home": "view" }, tables.length > 0 ? "Rate tables in this workbook" : book.status === "ready" ? "No rate table found in this workbook." : ""),
-    tables.length > 0 && h("ul", { key: "tables", class: "sr-list" }, ...inParts(session, "choose", tables, SHOWN_TABLES, (table) => tableCard(session, table))),
+    tables.length > 0 && h("ul", { role: "list", key: "tables", class: "sr-list" }, ...inParts(session, "choose", tables, SHOWN_TABLES, (table) => tableCard(session, table))),
   ];
 }
 
@@ -93,7 +93,7 @@ function arrows(session: Session, { claims, layout, role, entry, reading }: Look
     h("h2", { id: "sr-arrows" }, "What the arrows claim"),
     claims.length === 0
       ? h("p", { class: "sr-soft" }, "No arrow can be read.")
-      : h("ul", { class: "sr-arrows" }, ...inParts(session, "arrows", claims, SHOWN_ARROWS, (claim) => arrowLine(session, reading.address, claim, unit))),
+      : h("ul", { role: "list", class: "sr-arrows" }, ...inParts(session, "arrows", claims, SHOWN_ARROWS, (claim) => arrowLine(session, reading.address, claim, unit))),
     answered > 0 && h("p", { class: "sr-soft" }, `${count(answered, "answer")} kept for this table. `, word("Ask again", () => void session.forgetAnswers())),
   );
 }

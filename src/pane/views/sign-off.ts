@@ -37,7 +37,7 @@ function status(session: Session, { entry, fingerprint, changes }: Looked): Chil
     changes &&
       h(
         "ul",
-        { class: "sr-changes", "aria-label": "Arrows that differ from the signed-off table" },
+        { role: "list", class: "sr-changes", "aria-label": "Arrows that differ from the signed-off table" },
         ...inParts(session, "changes", changes, SHOWN_CHANGES, (change) => h("li", null, changeWords(change, entry.unit ?? ""))),
       ),
   ];

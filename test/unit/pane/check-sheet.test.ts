@@ -14,13 +14,15 @@ const PUMP: Typed[][] = [
   ["Repair", 0.5, "", ""],
 ];
 
-async function sheetOf(rows: Typed[][], entry: Partial<TableMemory> = {}, size = rows.length) {
+async function sheetOf(rows: Typed[][], entry: Partial<TableMemory> = {}, size = rows.length, formula = "=CTMC.STATIONARY(Pump!A1:D4)") {
   const place = { sheet: "Pump", row: 0, column: 0 };
   const reading = await new FakeWorkbook({ Pump: rows }).read({ ...place, rows: size, columns: rows[0].length });
   const looked = examine(reading, () => ({ ...place, ...entry }));
-  const sheet = await checkSheet(looked, { version: "1.0.0", date: "2026-12-01", workbook: "plant.xlsx", formulas: [{ place: "Plan B4", formula: "=CTMC.STATIONARY(Pump!A1:D4)" }] });
+  const sheet = await checkSheet(looked, { version: "1.0.0", date: "2026-12-01", workbook: "plant.xlsx", formulas: [{ place: "Plan B4", formula }] });
   const after = (label: string): unknown[] => sheet.cells.find((row) => row[0] === label)?.slice(1) as unknown[];
-  return { looked, sheet, after, text: sheet.cells.flat().filter((cell) => cell !== null).join("\n") };
+  // Broken sentences are joined again: each part stands in the second cell of its line.
+  const text = sheet.cells.map((row) => row.filter((cell) => cell !== null).join(" ")).join(" ");
+  return { looked, sheet, after, text };
 }
 
 describe("check sheet", () => {
@@ -62,6 +64,18 @@ describe("check sheet", () => {
     const accepted = { key: item.acceptanceKey, code: item.finding.code, sentence: item.sentence, reason: "as agreed", initials: "AB", date: "2026-11-30" };
     const again = await sheetOf(PUMP, { accepted: [accepted] });
     expect(again.text).toContain("Accepted by AB on 2026-11-30: as agreed");
+  });
+
+  it("prints a formula as it is written, double blanks too", async () => {
+    const { sheet } = await sheetOf(PUMP, {}, 4, '=CTMC.CLASSES(A1:D4)&"  "');
+    expect(sheet.cells.flat()).toContain('\'=CTMC.CLASSES(A1:D4)&"  "');
+  });
+
+  it("breaks long texts so that a page takes them in width", async () => {
+    const { sheet } = await sheetOf(PUMP, {}, 4, `=CTMC.AVAILABILITY(Pump!A1:D4,{"${"x".repeat(300)}"})`);
+    const texts = sheet.cells.flatMap((row) => row.map((cell, at) => (typeof cell === "string" ? [at, cell.length] : [at, 0])));
+    expect(Math.max(...texts.map(([at, length]) => (at === 0 ? length - 20 : length)))).toBeLessThanOrEqual(81); // 80 and an apostrophe; the first column is 20 wide
+    expect(sheet.look.columnWidths.reduce((sum, width) => sum + width, 0)).toBeLessThanOrEqual(90);
   });
 
   it("leaves lines to sign, tells of a sign-off, and prints the cautions", async () => {
