@@ -42,8 +42,6 @@ function randomOf(seed: number): (below: number) => number {
  * @throws with seed, round and the steps so far when anything else happens, or a step throws other than in words
  */
 export async function soak({ seed, milliseconds, script, metadata, onRound }: SoakOptions): Promise<SoakReport> {
-  const functions = new CustomFunctionHost();
-  functions.load(script, metadata);
   const end = Date.now() + milliseconds;
   let rounds = 0;
   let steps = 0;
@@ -52,6 +50,9 @@ export async function soak({ seed, milliseconds, script, metadata, onRound }: So
   while (Date.now() < end || rounds === 0) {
     const random = randomOf(seed + rounds);
     const trail: string[] = [];
+    // A host of its own: it keeps the workbooks that listen to it, as a page has one for as long as it lives.
+    const functions = new CustomFunctionHost();
+    functions.load(script, metadata);
     try {
       const book = new Book({ functions, now: () => new Date(2026, 0, 1), random: () => 0.5 });
       const empty = saved(book);
