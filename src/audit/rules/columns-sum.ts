@@ -5,8 +5,8 @@ import { meansFinalAmong, meansFrom, meansTo } from "../words";
 
 /**
  * The other convention, columns from and rows to (mistake 4). Seen where a given diagonal makes every column sum to zero
- * and not every row, or where a list's headings say to before from; a warning where a state with a final name has exits and
- * nothing leads to it. Else only a person knows: `largestArrow` asks, and an answer "columns" ends here.
+ * and not every row, or where a list's headings say to before from; a warning where a state with a final name has several exits
+ * and nothing leads to it. Else only a person knows: `largestArrow` asks, and an answer "columns" ends here.
  */
 export const columnsSum: Rule = (context) => {
   const { cells, layout } = context;

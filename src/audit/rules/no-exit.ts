@@ -6,12 +6,12 @@ import { meansFinalAmong, unitsIn } from "../words";
 /**
  * A row without exits whose label does not sound final (mistake 16): a forgotten repair, or a final state under a name that the
  * audit does not know. Without names nothing can be told from such a row: a note, and so it is for a mere code ("S4") at the end of a
- * chain that never returns to any state, such as wear without repair. A table without any arrow is one finding.
+ * chain that never returns to any state, such as wear without repair. The only such state is meant where a formula waits for it without naming targets; of several, one may be
+ * the mistake that such a formula takes for an end. A table without any arrow is one finding.
  */
 export const noExit: Rule = (context) => {
   const { chain, body, kind, layout, options } = context;
   if (kind === "columnsSum" || kind === "complement") return [];
-  if (options.asked?.some(({ name, hasTargets }) => UNTIL.has(name) && !hasTargets)) return []; // a formula waits for these states: they are meant
   const entered = new Uint8Array(chain.size);
   for (const [, to] of chain.arrows()) entered[to] = 1;
   if (chain.arrowCount === 0) {
@@ -21,6 +21,7 @@ export const noExit: Rule = (context) => {
   const ends: number[] = [];
   for (let i = 0; i < chain.size; i++)
     if (chain.rowStart[i] === chain.rowStart[i + 1] && !unreadableRow(context, i) && entered[i]) ends.push(i);
+  if (ends.length === 1 && options.asked?.some(({ name, hasTargets }) => UNTIL.has(name) && !hasTargets)) return [];
   const named = layout.names !== null && !(ends.every((state) => saysNothing(body.nameOf(state))) && neverReturns(chain));
   const doubtful = layout.names !== null ? ends.filter((state) => !meansFinalAmong(body.nameOf(state), layout.names ?? []) && !allDown(context, state)) : ends;
   if (doubtful.length === 0) return [];

@@ -1,7 +1,6 @@
-import { isPercentFormat } from "../formats";
 import { bodySpan, entrySpan, type Rule } from "../context";
-import type { Finding } from "../finding";
-import { cellSpan } from "../finding";
+import type { Span } from "../finding";
+import { isPercentFormat } from "../formats";
 import { fallShort } from "../kind";
 
 /**
@@ -15,14 +14,14 @@ export const percent: Rule = (context) => {
   }
   const formats = options.facts?.formats;
   if (!formats) return [];
-  const withSign: Finding["span"][] = [];
-  const without: Finding["span"][] = [];
+  const withSign: Span[] = [];
+  const without: Span[] = [];
   let above = false;
   for (let i = 0; i < body.size; i++)
     for (let j = 0; j < body.size; j++) {
       const value = body.values[i * body.size + j];
       if (i === j || !(value > 0) || !body.placeOf(i, j)) continue;
-      const span = entrySpan(context, i, j)!;
+      const span = entrySpan(context, i, j);
       if (isPercentFormat(formats[span.row]?.[span.column])) withSign.push(span);
       else {
         without.push(span);
@@ -30,13 +29,12 @@ export const percent: Rule = (context) => {
       }
     }
   if (withSign.length === 0 || without.length === 0) return [];
-  const fewer = withSign.length <= without.length ? withSign : without;
-  const [span, ...also] = fewer.filter((place) => place !== null);
+  const [span, ...also] = withSign.length <= without.length ? withSign : without;
   return [
     {
       code: "percentMixed",
       severity: above ? "stop" : "warning",
-      span: span ?? cellSpan(0, 0),
+      span,
       also,
       details: { withSign: withSign.length, without: without.length, above },
     },

@@ -162,6 +162,8 @@ describe("mistake 16: absorbing by mistake", () => {
     const pump = headed("", ["Fit", "Worn", "Under water"], [[null, 1, 0], [1, null, 1], [null, null, null]]);
     expect(complaints(pump)).toEqual(["noExit"]);
     expect(complaints(pump, { asked: [{ name: "MEANABSORPTION", hasTargets: false, hasStart: false, hasTimes: false, times: [], where: "Plan!B2" }] })).toEqual([]);
+    const two = headed("", ["Fit", "Repair", "Failed"], [[null, 1, 0.1], [null, null, null], [null, null, null]]);
+    expect(complaints(two, { asked: [{ name: "MEANABSORPTION", hasTargets: false, hasStart: false, hasTimes: false, times: [], where: "Plan!B2" }] })).toContain("noExit");
   });
   it("takes D for default on a rating scale only", () => {
     const grades = [[null, 0.1, 0.01], [0.1, null, 0.02], [0, 0, null]];
