@@ -122,7 +122,8 @@ function checkRate(from: number, to: number, rate: number): void {
   if (rate > LARGEST_RATE || rate < SMALLEST_RATE) throw new Problem("rateOutOfRange", { from, to, rate });
 }
 
-function compensatedSum(values: Float64Array, begin: number, end: number): number {
+/** Sum of `values[begin .. end]`, correct to the last bit or next to it (Neumaier 1974). */
+export function compensatedSum(values: ArrayLike<number>, begin: number, end: number): number {
   let sum = 0;
   let lost = 0;
   for (let k = begin; k < end; k++) {

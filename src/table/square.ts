@@ -1,8 +1,8 @@
-import { LARGEST_RATE, SMALLEST_RATE, Generator, type Arrow } from "../chain/generator";
+import { compensatedSum, LARGEST_RATE, SMALLEST_RATE, Generator } from "../chain/generator";
 import { Problem, type Detail } from "../chain/problem";
-import { cellAt, isDash, isDiagonalMark, isEmpty, isFault, numberInText } from "./cell";
+import { isDash, isDiagonalMark, isEmpty, isFault, numberInText } from "./cell";
 import { squareLayout } from "./layout";
-import type { Cells, CellValue, Layout, Reading, TableArrow } from "./rate-table";
+import type { Cells, CellValue, Layout, RateTable, Reading, TableArrow } from "./rate-table";
 
 /** A given diagonal must agree with minus the exits to this part of the exit rate. */
 export const DIAGONAL_TOLERANCE = 1e-9;
@@ -13,39 +13,72 @@ export const MOST_PROBLEMS = 500;
 export function readSquare(cells: Cells, options: { readonly exact?: boolean } = {}): Reading {
   const { layout, problems: layoutProblems } = squareLayout(cells, options);
   if (!layout) return { layout, problems: layoutProblems, table: null };
+  const { size, body } = layout;
   const problems: Problem[] = [...layoutProblems];
-  const arrows: TableArrow[] = [];
   const diagonals: Problem[] = [];
   const givenDiagonal: (number | null)[] = [];
-  for (let i = 0; i < layout.size; i++) {
+  const rowStart = new Int32Array(size + 1);
+  const toState: number[] = [];
+  const rates: number[] = [];
+  for (let i = 0; i < size; i++) {
     const before = problems.length;
-    const firstArrow = arrows.length;
+    const row = cells[body.row + i];
     let diagonal: number | null = null;
-    for (let j = 0; j < layout.size; j++) {
-      const place = { row: layout.body.row + i, column: layout.body.column + j };
-      const cell = cellAt(cells, place.row, place.column);
-      if (cell === 0 || isEmpty(cell) || isDash(cell) || (i === j && isDiagonalMark(cell))) continue;
-      const where = { row: i, column: j, rowName: layout.names?.[i] ?? null, span: [place.row, place.column, 1, 1] };
+    for (let j = 0; j < size; j++) {
+      const cell = row[body.column + j] ?? "";
+      if (cell === 0 || cell === "") continue;
+      if (i !== j && isPlainRate(cell)) {
+        toState.push(j);
+        rates.push(cell);
+        continue;
+      }
+      if (isEmpty(cell) || isDash(cell) || (i === j && isDiagonalMark(cell))) continue;
+      const where = { row: i, column: j, rowName: layout.names?.[i] ?? null, span: [body.row + i, body.column + j, 1, 1] };
       const value = rateIn(cell, where);
       if (value instanceof Problem) problems.push(value);
       else if (i === j) diagonal = value;
-      else {
-        const problem = rateProblem(value, where);
-        if (problem) problems.push(problem);
-        else arrows.push({ from: i, to: j, rate: value, place });
-      }
+      else problems.push(rateProblem(value, where)!);
       if (problems.length >= MOST_PROBLEMS) return { layout, problems, table: null };
     }
+    rowStart[i + 1] = rates.length;
     givenDiagonal.push(diagonal);
     if (diagonal !== null && problems.length === before && diagonals.length < MOST_PROBLEMS) {
-      const problem = diagonalProblem(diagonal, arrows.slice(firstArrow), i, layout);
+      const problem = diagonalProblem(diagonal, rates.slice(rowStart[i]), i, layout);
       if (problem) diagonals.push(problem);
     }
   }
   problems.push(...diagonals);
   if (problems.length > 0) return { layout, problems, table: null };
-  const generator = Generator.fromArrows(layout.size, arrows.map(({ from, to, rate }): Arrow => [from, to, rate]));
-  return { layout, problems, table: { ...layout, generator, arrows, givenDiagonal } };
+  const generator = Generator.fromRows(size, rowStart, new Int32Array(toState), new Float64Array(rates));
+  return { layout, problems, table: new SquareTable(layout, generator, givenDiagonal) };
+}
+
+/** A table read from a square. Its arrows with their places are made when somebody asks: formulas do not. */
+class SquareTable implements RateTable {
+  readonly form;
+  readonly headings;
+  readonly body;
+  readonly size;
+  readonly names;
+  private placed: TableArrow[] | null = null;
+
+  constructor(
+    layout: Layout,
+    readonly generator: Generator,
+    readonly givenDiagonal: readonly (number | null)[],
+  ) {
+    ({ form: this.form, headings: this.headings, body: this.body, size: this.size, names: this.names } = layout);
+  }
+
+  get arrows(): readonly TableArrow[] {
+    const { row, column } = this.body;
+    this.placed ??= Array.from(this.generator.arrows(), ([from, to, rate]) => ({ from, to, rate, place: { row: row + from, column: column + to } }));
+    return this.placed;
+  }
+}
+
+function isPlainRate(cell: CellValue): cell is number {
+  return typeof cell === "number" && cell >= SMALLEST_RATE && cell <= LARGEST_RATE;
 }
 
 type Where = Readonly<Record<string, Detail>>;
@@ -68,14 +101,13 @@ export function rateProblem(rate: number, where: Where): Problem | null {
 }
 
 /** Why a given diagonal is refused; `total` is 1 or 100 where the row looks like probabilities or percent. */
-function diagonalProblem(given: number, exits: readonly TableArrow[], row: number, layout: Layout): Problem | null {
-  const rates = exits.map((arrow) => arrow.rate);
-  const sum = Generator.fromArrows(exits.length + 1, rates.map((rate, k): Arrow => [0, k + 1, rate])).exitRate[0];
+function diagonalProblem(given: number, rates: readonly number[], row: number, layout: Layout): Problem | null {
+  const sum = compensatedSum(rates, 0, rates.length);
   if (Math.abs(given + sum) <= DIAGONAL_TOLERANCE * sum) return null;
   const span = [layout.body.row + row, layout.body.column + row, 1, 1];
   const total = given > 0 ? [1, 100].find((whole) => Math.abs(given + sum - whole) <= 1e-6 * whole) : undefined;
   const details = { row, column: row, rowName: layout.names?.[row] ?? null, given, exits: sum, gap: given + sum, total: total ?? null, span };
-  if (exits.length === 0) return new Problem("diagonalWithoutExits", details);
+  if (rates.length === 0) return new Problem("diagonalWithoutExits", details);
   if (given > 0) return new Problem("diagonalPositive", details);
   return new Problem(isRounding(given, rates) ? "rowSumRounded" : "rowSum", details);
 }
