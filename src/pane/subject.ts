@@ -1,4 +1,6 @@
 import { cellsFrom } from "../audit/facts";
+import type { Span } from "../audit/finding";
+import { BUILDERS, callsIn } from "../audit/formula-calls";
 import { findTables } from "../audit/tables-in-sheet";
 import { read } from "../table/read";
 import { contains, within } from "./address";
@@ -24,7 +26,7 @@ const WINDOWS = [40, 160, 600];
 
 export async function chooseSubject(workbook: Workbook, selection: RangeAddress, current: Subject | null): Promise<Subject | null> {
   const single = selection.rows === 1 && selection.columns === 1;
-  if (single && current && contains(current.address, selection)) return current;
+  if (current && contains(current.address, selection) && (single || isPart(selection, current))) return current;
   const sheets = await workbook.sheets();
   if (!single) {
     const chosen = await fromSelection(workbook, sheets, selection);
@@ -48,8 +50,29 @@ async function fromSelection(workbook: Workbook, sheets: readonly SheetInfo[], s
   if (part.rows * part.columns > LARGEST_SUBJECT)
     throw new Error(`The selection holds ${part.rows} rows by ${part.columns} columns; a rate table has at most 500 states. Select the table alone.`);
   const contents = await contentsOf(workbook, part);
-  if (!contents.values.some((row) => row.some((value) => typeof value === "number"))) return null;
+  if (!contents.values.some((row) => row.some((value) => typeof value === "number")) || isAnswer(contents)) return null;
   return { address: trimmed(contents), how: "selection" };
+}
+
+/** Some cells well inside a table that was found, such as two rates to be formatted: no table that anyone means. */
+function isPart(selection: RangeAddress, { address, how }: Subject): boolean {
+  return how === "around" && (selection.row > address.row + 1 || selection.column > address.column + 1);
+}
+
+/** Mostly filled by a formula that answers, or that stands elsewhere: no table to be checked. Formulas that build tables, or bring them from another place, do make one. */
+function isAnswer({ values, formulas }: Contents): boolean {
+  const numbers = values.flatMap((row, r) => row.flatMap((value, c) => (typeof value === "number" ? [formulas[r][c]] : [])));
+  if (2 * numbers.filter((formula) => formula === "").length <= numbers.length) return false;
+  const anchors = formulas.flat().filter((formula) => formula.startsWith("="));
+  return !anchors.some((formula) => {
+    const [outer] = callsIn(formula);
+    return outer === undefined || BUILDERS.has(outer.name);
+  });
+}
+
+function part({ address, values, formulas }: Contents, span: Span): Contents {
+  const cut = <T>(lines: readonly (readonly T[])[]): T[][] => lines.slice(span.row, span.row + span.rows).map((line) => line.slice(span.column, span.column + span.columns));
+  return { address: within(address, span), values: cut(values), formulas: cut(formulas) };
 }
 
 /** A selection without its blank margins, unless only the margins make it read as a table (a last state without exits, unnamed). */
@@ -78,6 +101,7 @@ async function tableAround(workbook: Workbook, sheets: readonly SheetInfo[], cel
     const table = findTables(cellsFrom(contents.values)).find(({ span }) => contains(within(window, span), { ...cell, rows: 1, columns: 1 }));
     if (!table) return null;
     const found = within(window, table.span);
+    if (isAnswer(part(contents, table.span))) return null;
     const whole = usedPart(sheets, { ...window, row: 0, column: 0, rows: Infinity, columns: Infinity });
     const cut =
       (found.row === window.row && window.row > (whole?.row ?? 0)) ||

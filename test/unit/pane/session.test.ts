@@ -88,6 +88,22 @@ describe("what the pane looks at", () => {
     expect(place()).toBe("Pump C3:E5");
   });
 
+  it("takes neither a few cells inside a table nor the answers of formulas for a table", async () => {
+    const answers: Typed[][] = [
+      [{ formula: "=CTMC.TRANSITION(Pump!B2:E5,7)", value: 0.9 }, { formula: "", value: 0.1 }],
+      [{ formula: "", value: 0.2 }, { formula: "", value: 0.8 }],
+    ];
+    const built = answers.map((row, r) => (r === 0 ? [{ formula: "=CTMC.GENERATOR(Pump!B2:E5)", value: -1 }, { formula: "", value: 1 }] : row));
+    const { place, select } = await started({ Pump: PUMP, Answers: answers, Built: built });
+    await select(cell("Pump", 2, 3));
+    await select({ ...TABLE, row: 3, column: 3, rows: 2, columns: 2 });
+    expect(place()).toBe("Pump B2:E5");
+    await select({ sheet: "Answers", row: 0, column: 0, rows: 2, columns: 2 });
+    expect(place()).toBe("Pump B2:E5");
+    await select({ sheet: "Built", row: 0, column: 0, rows: 2, columns: 2 });
+    expect(place()).toBe("Built A1:B2");
+  });
+
   it("stays when held", async () => {
     const { place, select, session } = await started({ Pump: PUMP, Other: [["", "Up", "Down"], ["Up", "", 1], ["Down", 2, ""]] });
     await select(cell("Pump", 2, 3));
