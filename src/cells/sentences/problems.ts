@@ -28,9 +28,9 @@ export const PROBLEM_SENTENCES: Readonly<Record<string, Sentence>> = {
   diagonalPositive: (w) => (w.has("total") ? probabilities(w) : `${w.place()}: the diagonal is ${w.number("given")}. Enter minus the exits, -${w.number("exits")}, or clear it.`),
   diagonalWithoutExits: (w) =>
     w.has("total") ? probabilities(w) : `${w.place()}: the diagonal is ${w.number("given")}, but the row has no exits. Clear it or enter the exits.`,
-  rowSum: (w) => `Row ${w.state("row", "rowName")}: the diagonal is ${w.number("given")}, the exits sum to ${w.number("exits")}. Correct one or clear the diagonal.`,
+  rowSum: (w) => `Row ${w.state("row", "rowName")}: the diagonal is ${w.number("given")}, the exits sum to ${w.number("exits")}${apart(w)}. Correct one or clear the diagonal.`,
   rowSumRounded: (w) =>
-    `Row ${w.state("row", "rowName")}: diagonal ${w.number("given")} and exits ${w.number("exits")} differ by rounding. Clear the diagonal.`,
+    `Row ${w.state("row", "rowName")}: diagonal ${w.number("given")} and exits ${w.number("exits")} differ by rounding${apart(w)}. Clear the diagonal.`,
 
   // the rows of a list
   listTooWide: (w) => `Column ${w.ordinal("column")} is filled, but a list has three: from, to, rate. Select those three columns only.`,
@@ -156,6 +156,11 @@ export const PROBLEM_SENTENCES: Readonly<Record<string, Sentence>> = {
 function probabilities(w: Words): string {
   const kind = w.number("total") === "1" ? "probabilities" : "percent";
   return `${w.place()}: ${w.number("given")}, and the row sums to ${w.number("total")}: ${kind}? Convert with CTMC.FROMPROBABILITY.`;
+}
+
+/** How far a diagonal misses its exits, where the two look the same in print. */
+function apart(w: Words): string {
+  return w.number("given") === `-${w.number("exits")}` ? `, ${w.number("gap")} apart` : "";
 }
 
 /** What numbers an argument takes. */
