@@ -1,4 +1,4 @@
-import { kernelFor } from "../numerics/method-choice";
+import { denseKernel } from "../numerics/method-choice";
 import { load, multiplySteps, unpadded } from "../numerics/matrix-kernel";
 import { Generator, SMALLEST_RATE } from "./generator";
 import { checkTimes } from "./horizon";
@@ -35,7 +35,7 @@ export function* inspectionSharesSteps(generator: Generator, resets: Float64Arra
   checkTimes(generator, [interval]);
   const n = generator.size;
   const transition = yield* within(transitionMatrixSteps(generator, interval), 0, 0.5);
-  const block = kernelFor(n).open(n, 3);
+  const block = denseKernel().open(n, 3);
   let seen: Float64Array;
   try {
     load(block, 0, transition);

@@ -1,4 +1,4 @@
-import { kernelFor } from "../numerics/method-choice";
+import { denseKernel } from "../numerics/method-choice";
 import { LARGEST_STORED } from "../numerics/passage-quantile";
 import { denseOf } from "../numerics/rows";
 import { settlingTime as settling } from "../numerics/settling";
@@ -29,5 +29,5 @@ export function settlingTime(generator: Generator, tolerance: number): number {
 export function* settlingTimeSteps(generator: Generator, tolerance: number): Steps<number> {
   if (!(tolerance > 0 && tolerance < 1)) throw new Problem("toleranceOutside", { tolerance });
   if (generator.size > LARGEST_STORED) throw new Problem("tooManyStates", { states: generator.size });
-  return yield* settling(denseOf(generator), tolerance, kernelFor(generator.size));
+  return yield* settling(denseOf(generator), tolerance, denseKernel());
 }

@@ -1,4 +1,4 @@
-import { kernelFor } from "../numerics/method-choice";
+import { denseKernel } from "../numerics/method-choice";
 import { denseOf, rowsAt } from "../numerics/rows";
 import { TransitionDerivative } from "../numerics/transition-derivative";
 import type { StateSet } from "./classes";
@@ -46,7 +46,7 @@ export function* shareElasticityAtSteps(
   const share = row.reduce((sum, p, j) => sum + (up[j] ? p : 0), 0);
   if (share === 0) return elasticities.fill(NaN);
   if (generator.largestExit() * time === 0) return elasticities;
-  const derivative = yield* TransitionDerivative.open(denseOf(generator), time, kernelFor(n));
+  const derivative = yield* TransitionDerivative.open(denseOf(generator), time, denseKernel());
   try {
     let done = 0;
     for (const [from, to, rate] of generator.arrows()) {

@@ -1,5 +1,5 @@
 import { denseTransition } from "../numerics/dense-transition";
-import { kernelFor } from "../numerics/method-choice";
+import { denseKernel } from "../numerics/method-choice";
 import { denseOf } from "../numerics/rows";
 import type { Generator } from "./generator";
 import { checkTimes } from "./horizon";
@@ -28,5 +28,5 @@ export function transitionMatrix(generator: Generator, time: number): Float64Arr
 
 export function* transitionMatrixSteps(generator: Generator, time: number): Steps<Float64Array> {
   checkTimes(generator, [time]);
-  return yield* denseTransition(denseOf(generator), time, kernelFor(generator.size));
+  return yield* denseTransition(denseOf(generator), time, denseKernel());
 }

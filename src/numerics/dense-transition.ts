@@ -1,4 +1,4 @@
-import { agree, multiplySteps, unpadded, type MatrixBlock, type MatrixKernel } from "./matrix-kernel";
+import { agree, rowsBetweenPauses, unpadded, UNPAUSED, type MatrixBlock, type MatrixKernel } from "./matrix-kernel";
 import { planTaylor } from "./taylor-plan";
 import { TAYLOR_SLOTS, taylorStart } from "./taylor-scheme";
 
@@ -42,9 +42,13 @@ export function* denseTransition(
     let now = yield* taylorStart(block, plan.order, jumps / 2 ** plan.squarings);
     block.repair(now);
     const tolerance = unchangedTolerance(n);
+    const rows = rowsBetweenPauses(n);
     for (let s = 1; s <= plan.squarings; s++) {
       const next = now === 0 ? 1 : 0;
-      yield* multiplySteps(block, next, now, now, s / (plan.squarings + 1));
+      for (let row = 0; row < n; row += rows) {
+        block.multiply(next, now, now, row, Math.min(n, row + rows));
+        if (n > UNPAUSED) yield s / (plan.squarings + 1);
+      }
       block.repair(next);
       const settled = agree(block, now, next, tolerance);
       now = next;

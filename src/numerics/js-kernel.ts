@@ -14,8 +14,6 @@ export const jsKernel: MatrixKernel = {
 };
 
 class JsBlock implements MatrixBlock {
-  sincePause = 0;
-
   constructor(
     readonly size: number,
     readonly slots: Float64Array[],

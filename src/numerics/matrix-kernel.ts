@@ -16,8 +16,6 @@ export interface MatrixBlock {
   /** Distance between two rows of a slot, at least `size`; what lies beyond a row's `size` entries is zero and stays so. */
   readonly stride: number;
   readonly slots: readonly Float64Array[];
-  /** Multiply-adds done since the last pause; kept by `multiplySteps`. */
-  sincePause: number;
   /** Rows `firstRow .. endRow` of target = left · right. `target` is neither of the two. */
   multiply(target: number, left: number, right: number, firstRow: number, endRow: number): void;
   /** target = constant · I + Σ coefficients[k] · slot sources[k]. `target` may be one of the sources. */
@@ -36,7 +34,15 @@ export const SMALLEST_NORMAL = 2.2250738585072014e-308;
 /** Multiply-adds between two pauses: about 20 ms of the slower kernel on a machine of 2020. */
 export const WORK_BETWEEN_PAUSES = 4e7;
 
-/** target = left · right, with a pause whenever `WORK_BETWEEN_PAUSES` multiply-adds have been done on the block. */
+/** Products of this order and below are over so soon that whole computations of them need no pause. */
+export const UNPAUSED = 64;
+
+/** Rows of a product of order n between two pauses. */
+export function rowsBetweenPauses(n: number): number {
+  return n <= UNPAUSED ? n : Math.max(4, Math.floor(WORK_BETWEEN_PAUSES / (n * n) / 4) * 4);
+}
+
+/** target = left · right, with a pause after every piece of work and after the whole, except in small ones. */
 export function* multiplySteps(
   block: MatrixBlock,
   target: number,
@@ -45,16 +51,10 @@ export function* multiplySteps(
   progress: number,
 ): globalThis.Generator<number, void, void> {
   const n = block.size;
-  const perRow = n * n;
-  const rows = Math.max(4, Math.floor(WORK_BETWEEN_PAUSES / perRow / 4) * 4);
+  const rows = rowsBetweenPauses(n);
   for (let first = 0; first < n; first += rows) {
-    const end = Math.min(n, first + rows);
-    block.multiply(target, left, right, first, end);
-    block.sincePause += (end - first) * perRow;
-    if (block.sincePause >= WORK_BETWEEN_PAUSES) {
-      block.sincePause = 0;
-      yield progress;
-    }
+    block.multiply(target, left, right, first, Math.min(n, first + rows));
+    if (n > UNPAUSED) yield progress;
   }
 }
 

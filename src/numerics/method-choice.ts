@@ -5,12 +5,9 @@ import { wasmKernel } from "./wasm-kernel";
 /** How one row is taken through time: jump by jump, or through the matrix of all rows. */
 export type Method = "row" | "matrix";
 
-/** Below this order the plain kernel is faster: calls and copies outweigh the arithmetic. Measured, `test/bench`. */
-export const WASM_FROM = 4;
-
-/** The faster kernel for matrices of this order. */
-export function kernelFor(size: number): MatrixKernel {
-  return (size >= WASM_FROM ? wasmKernel() : null) ?? jsKernel;
+/** The faster kernel of those that this runtime has. */
+export function denseKernel(): MatrixKernel {
+  return wasmKernel() ?? jsKernel;
 }
 
 /** Nanoseconds of one arrow or state in a jump, and of one multiply-add of the matrix kernel. Measured; only ratios matter. */

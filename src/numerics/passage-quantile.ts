@@ -1,4 +1,4 @@
-import { kernelFor, SMALL, type Method } from "./method-choice";
+import { denseKernel, SMALL, type Method } from "./method-choice";
 import { repairRow, type MatrixKernel } from "./matrix-kernel";
 import { poissonWeights } from "./poisson";
 import { denseOf, type ChainRates } from "./rows";
@@ -48,7 +48,7 @@ export function* passageQuantiles(
     if (walked || options.method || n > LARGEST_STORED) return walked;
   }
   const dense = denseOf(chain);
-  const squarings = yield* Squarings.open(dense, options.kernel ?? kernelFor(n), (4 * n) / dense.largestExit);
+  const squarings = yield* Squarings.open(dense, options.kernel ?? denseKernel(), (4 * n) / dense.largestExit);
   const times: number[] = [];
   for (const goal of goals) {
     times.push(yield* quantileBySquarings(chain, squarings, start, values, goal));
@@ -114,17 +114,13 @@ function* quantilesByWalk(
 
 /** The three values after 0, 1, 2, … jumps; at a time they are Poisson mixtures of these. */
 class PassageSeries {
-  private readonly byNumber: PassageValues;
   private readonly after: Record<keyof PassageValues, number[]> = { met: [], yet: [], flow: [] };
   private work = 0;
 
   constructor(
     private readonly walk: JumpWalk,
-    values: PassageValues,
-  ) {
-    const pick = (v: Float64Array): Float64Array => Float64Array.from(walk.order, (i) => v[i]);
-    this.byNumber = { met: pick(values.met), yet: pick(values.yet), flow: pick(values.flow) };
-  }
+    private readonly values: PassageValues,
+  ) {}
 
   get largestExit(): number {
     return this.walk.largestExit;
@@ -138,11 +134,11 @@ class PassageSeries {
 
   /** Walks on to so many jumps; false when the work exceeds the budget. */
   *extend(jumps: number, budget: number): Steps<boolean> {
-    const { walk, byNumber, after } = this;
+    const { walk, values, after } = this;
     let sincePause = 0;
     while (after.met.length <= jumps) {
       if (after.met.length > 0) walk.jump();
-      for (const value of ["met", "yet", "flow"] as const) after[value].push(dot(byNumber[value], walk.now));
+      for (const value of ["met", "yet", "flow"] as const) after[value].push(walk.value(values[value]));
       const work = walk.workPerJump + 3 * walk.active;
       if ((this.work += work) > budget) return false;
       if ((sincePause += work) > 1e7) {

@@ -1,6 +1,6 @@
 import type { DenseRates } from "./dense-transition";
 import type { MatrixKernel } from "./matrix-kernel";
-import { chooseMethod, kernelFor, type Method } from "./method-choice";
+import { chooseMethod, denseKernel, type Method } from "./method-choice";
 import { occupancyWeights, poissonWeights } from "./poisson";
 import { binaryDigits, rowTimesMatrix, Squarings } from "./squarings";
 import { JumpWalk, uniformizedSums, uniformizedValues, type SparseRates } from "./uniformization";
@@ -24,8 +24,8 @@ export function* rowsAt(
   times: ArrayLike<number>,
   options: RowOptions = {},
 ): Steps<Float64Array[]> {
-  const walk = new JumpWalk(chain, start);
-  if (methodFor(walk, chain, times, options) === "row") {
+  if (methodFor(chain, times, options) === "row") {
+    const walk = new JumpWalk(chain, start);
     const weights = Array.from(times, (time) => poissonWeights(walk.largestExit * time));
     return yield* uniformizedSums(walk, chain.size, weights);
   }
@@ -46,8 +46,8 @@ export function* valuesAt(
   functionals: readonly Float64Array[],
   options: RowOptions = {},
 ): Steps<Float64Array[]> {
-  const walk = new JumpWalk(chain, start);
-  if (methodFor(walk, chain, times, options, functionals.length) === "row") {
+  if (methodFor(chain, times, options, functionals.length) === "row") {
+    const walk = new JumpWalk(chain, start);
     const weights = Array.from(times, (time) => poissonWeights(walk.largestExit * time));
     return yield* uniformizedValues(walk, functionals, weights);
   }
@@ -68,9 +68,9 @@ export function* occupanciesAt(
   horizons: ArrayLike<number>,
   options: RowOptions = {},
 ): Steps<Float64Array[]> {
-  const walk = new JumpWalk(chain, start);
-  if (walk.largestExit === 0) return Array.from(horizons, (horizon) => start.map((p) => p * horizon));
-  if (methodFor(walk, chain, horizons, options) === "row") {
+  if (methodFor(chain, horizons, options) === "row") {
+    const walk = new JumpWalk(chain, start);
+    if (walk.largestExit === 0) return Array.from(horizons, (horizon) => start.map((p) => p * horizon));
     const weights = Array.from(horizons, (horizon) => occupancyWeights(walk.largestExit * horizon, horizon));
     return yield* uniformizedSums(walk, chain.size, weights);
   }
@@ -145,27 +145,21 @@ function* occupancyOfStep(chain: ChainRates, row: Float64Array, time: number): S
 }
 
 export function denseOf(chain: ChainRates): DenseRates {
-  let largestExit = 0;
-  for (const exit of chain.exitRate) largestExit = Math.max(largestExit, exit);
-  return { size: chain.size, rates: chain.dense(), exits: chain.exitRate, largestExit };
+  return { size: chain.size, rates: chain.dense(), exits: chain.exitRate, largestExit: largestOf(chain.exitRate) };
 }
 
 function* openSquarings(chain: ChainRates, times: ArrayLike<number>, options: RowOptions): Steps<Squarings> {
-  const kernel = options.kernel ?? kernelFor(chain.size);
-  return yield* Squarings.open(denseOf(chain), kernel, longest(times));
+  return yield* Squarings.open(denseOf(chain), options.kernel ?? denseKernel(), largestOf(times));
 }
 
-/** A matrix of more states is not squared: its powers would take gigabytes. */
-const LARGEST_SQUARED = 3000;
-
-function methodFor(walk: JumpWalk, chain: ChainRates, times: ArrayLike<number>, options: RowOptions, values?: number): Method {
-  const jumps = walk.largestExit * longest(times);
-  if (jumps === 0 || chain.size > LARGEST_SQUARED) return "row";
-  return options.method ?? chooseMethod(walk.order.length, chain.rate.length, jumps, values ? values / chain.size : times.length);
+function methodFor(chain: ChainRates, times: ArrayLike<number>, options: RowOptions, values?: number): Method {
+  const jumps = largestOf(chain.exitRate) * largestOf(times);
+  if (jumps === 0) return "row";
+  return options.method ?? chooseMethod(chain.size, chain.rate.length, jumps, values ? values / chain.size : times.length);
 }
 
-function longest(times: ArrayLike<number>): number {
+function largestOf(values: ArrayLike<number>): number {
   let largest = 0;
-  for (let m = 0; m < times.length; m++) largest = Math.max(largest, times[m]);
+  for (let k = 0; k < values.length; k++) if (values[k] > largest) largest = values[k];
   return largest;
 }

@@ -29,28 +29,26 @@ const TRUNCATION_BITS = 55;
  */
 export function planTaylor(size: number, jumps: number, spread: number): TaylorPlan {
   const jumpBits = Math.log2(jumps);
+  const spreadBits = Math.log2(spread);
   let best: TaylorPlan = { order: 0, squarings: 0 };
   let bestCost = Infinity;
-  for (const { order, products } of SCHEMES) {
-    const byNorm = Math.max(0, Math.ceil(jumpBits - xLimitBits(order, 0)));
-    if (products + byNorm > bestCost) continue;
-    const bySpread = Math.ceil(jumpBits - xLimitBits(order, Math.log2(spread)));
+  // Highest order first: of two plans that cost the same, the one with fewer squarings.
+  for (let k = SCHEMES.length - 1; k >= 0; k--) {
+    const { order, products } = SCHEMES[k];
+    const byNorm = Math.max(0, Math.ceil(jumpBits - X_LIMIT_BITS[k]));
+    if (products + byNorm >= bestCost) continue;
+    const bySpread = Math.ceil(jumpBits - X_LIMIT_BITS[k] + spreadBits / order);
     let squarings = byNorm;
     if (bySpread > byNorm) {
       const byPaths = Math.ceil((TRUNCATION_BITS + pathBits(size, jumps, order)) / order);
       squarings = Math.max(byNorm, Math.min(byPaths, bySpread));
     }
-    if (products + squarings <= bestCost) {
+    if (products + squarings < bestCost) {
       bestCost = products + squarings;
       best = { order, squarings };
     }
   }
   return best;
-}
-
-/** log2 of the largest x with x^m/(m+1)! ≤ 2^-(55 + extraBits). */
-function xLimitBits(order: number, extraBits: number): number {
-  return (log2Factorial(order + 1) - TRUNCATION_BITS - extraBits) / order;
 }
 
 /** log2 of the largest C(n − 1 + r, m + 1) · min(1, X^r/r!) over r; −Infinity when no path exceeds m jumps. */
@@ -78,3 +76,6 @@ function log2Factorial(k: number): number {
   for (let j = log2Factorials.length; j <= k; j++) log2Factorials.push(log2Factorials[j - 1] + Math.log2(j));
   return log2Factorials[k];
 }
+
+/** log2 of the largest x with x^m/(m+1)! ≤ 2^-55, for each scheme. */
+const X_LIMIT_BITS = SCHEMES.map(({ order }) => (log2Factorial(order + 1) - TRUNCATION_BITS) / order);

@@ -1,4 +1,4 @@
-import { multiplySteps, type MatrixBlock } from "./matrix-kernel";
+import { rowsBetweenPauses, UNPAUSED, type MatrixBlock } from "./matrix-kernel";
 
 /**
  * A way to evaluate a polynomial of a matrix in few products, all of its coefficients non-negative:
@@ -73,11 +73,14 @@ interface Combination {
   readonly constant: number;
   readonly coefficients: readonly number[];
   readonly slots: readonly number[];
+  /** The slot that the combination is, when it is just one of them. */
+  readonly bare: number | null;
 }
 
 function combination(constant: number, coefficients: readonly number[]): Combination {
   const slots = Array.from(coefficients.keys()).filter((i) => coefficients[i] !== 0);
-  return { constant, coefficients: slots.map((i) => coefficients[i]), slots };
+  const bare = constant === 0 && slots.length === 1 && coefficients[slots[0]] === 1 ? slots[0] : null;
+  return { constant, coefficients: slots.map((i) => coefficients[i]), slots, bare };
 }
 
 const programs = new Map(
@@ -99,13 +102,21 @@ export function* taylorStart(block: MatrixBlock, order: number, x: number): glob
   if (!program) throw new RangeError(`no scheme of order ${order}`);
   const left = TAYLOR_SLOTS - 2;
   const right = TAYLOR_SLOTS - 1;
-  yield* multiplySteps(block, 1, 0, 0, 0);
-  let product = 2;
-  for (const [first, second] of program.factors) {
-    const bare = first.slots.length === 1 && first.coefficients[0] === 1;
-    if (!bare) block.combine(left, 0, first.coefficients, first.slots);
-    block.combine(right, second.constant, second.coefficients, second.slots);
-    yield* multiplySteps(block, product++, bare ? first.slots[0] : left, right, 0);
+  const n = block.size;
+  const rows = rowsBetweenPauses(n);
+  const factors = program.factors;
+  for (let product = 1; product <= factors.length + 1; product++) {
+    let [one, other] = [0, 0];
+    if (product > 1) {
+      const [first, second] = factors[product - 2];
+      [one, other] = [first.bare ?? left, right];
+      if (first.bare === null) block.combine(left, 0, first.coefficients, first.slots);
+      block.combine(right, second.constant, second.coefficients, second.slots);
+    }
+    for (let row = 0; row < n; row += rows) {
+      block.multiply(product, one, other, row, Math.min(n, row + rows));
+      if (n > UNPAUSED) yield 0;
+    }
   }
   const scale = Math.exp(-x);
   const { constant, coefficients, slots } = program.sum;

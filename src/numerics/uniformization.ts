@@ -18,92 +18,119 @@ const NEGLIGIBLE = 2 ** -57;
 /**
  * The distribution after 0, 1, 2, … jumps of the uniformized chain, from one start.
  *
- * States are renumbered by the number of jumps that reach them (breadth first), so that the states with a positive
- * probability after k jumps are a prefix: the active window. A large chain left from a local start costs only what it
- * has reached. States that cannot be reached do not appear and keep an exact 0.
+ * States are renumbered in the order in which jumps reach them, and only when they are reached: the states with a positive
+ * probability are always a prefix, the active window. A large chain left from a local start costs only what it has
+ * reached. States that are never reached do not appear and keep an exact 0.
  *
  * An entry is moved as v + (inflow − v·q/Λ) while q/Λ < ½, and as v·(1 − q/Λ) + inflow above: the first form has no fixed
  * rounding error in 1 − q/Λ that thousands of jumps would add up, the second cannot cancel.
  */
 export class JumpWalk {
-  /** Reached states by new number. */
-  readonly order: Int32Array;
-  /** Λ over the reached states. */
+  /** Λ of the whole chain. */
   readonly largestExit: number;
-  /** Probabilities after the jumps made so far, by new number; positive only below `active`. */
-  now: Float64Array;
-  active: number;
+  /** Number of states reached by the jumps made so far. */
+  active = 0;
   jumps = 0;
-  private next: Float64Array;
-  private readonly levelEnd: readonly number[];
-  private readonly inStart: Int32Array;
-  private readonly inFrom: Int32Array;
-  private readonly inShare: Float64Array;
-  private readonly exitShare: Float64Array;
+  /** States by new number; valid below `active`. */
+  order = new Int32Array(FIRST_ROOM);
+  /** Probabilities by new number; positive only below `active`. */
+  now = new Float64Array(FIRST_ROOM);
+  private next = new Float64Array(FIRST_ROOM);
+  private exitShare = new Float64Array(FIRST_ROOM);
+  /** The arrows of the reached states with the new numbers of their ends: those of state i end at `arrowEnd[i]`. */
+  private arrowEnd = new Int32Array(FIRST_ROOM);
+  private to = new Int32Array(FIRST_ROOM);
+  private share = new Float64Array(FIRST_ROOM);
+  /** New number + 1 of each state, 0 where it has not been reached. */
+  private readonly number: Int32Array;
+  private expanded = 0;
 
-  constructor(chain: SparseRates, start: Float64Array) {
-    const { order, levelEnd, number } = breadthFirst(chain, start);
-    const count = order.length;
+  constructor(
+    private readonly chain: SparseRates,
+    start: Float64Array,
+  ) {
     let largest = 0;
-    for (const i of order) largest = Math.max(largest, chain.exitRate[i]);
-    this.order = order;
-    this.levelEnd = levelEnd;
+    for (const exit of chain.exitRate) if (exit > largest) largest = exit;
     this.largestExit = largest;
-    this.inStart = new Int32Array(count + 1);
-    let arrows = 0;
-    for (const i of order)
-      for (let k = chain.rowStart[i]; k < chain.rowStart[i + 1]; k++) {
-        this.inStart[number[chain.toState[k]] + 1]++;
-        arrows++;
-      }
-    for (let j = 0; j < count; j++) this.inStart[j + 1] += this.inStart[j];
-    this.inFrom = new Int32Array(arrows);
-    this.inShare = new Float64Array(arrows);
-    this.exitShare = new Float64Array(count);
-    const fill = this.inStart.slice(0, count);
-    for (let from = 0; from < count; from++) {
-      const i = order[from];
-      this.exitShare[from] = largest > 0 ? chain.exitRate[i] / largest : 0;
-      for (let k = chain.rowStart[i]; k < chain.rowStart[i + 1]; k++) {
-        const at = fill[number[chain.toState[k]]]++;
-        this.inFrom[at] = from;
-        this.inShare[at] = chain.rate[k] / largest;
-      }
-    }
-    this.now = new Float64Array(count);
-    this.next = new Float64Array(count);
-    this.active = levelEnd[0];
-    for (let j = 0; j < this.active; j++) this.now[j] = start[order[j]];
+    this.number = new Int32Array(chain.size);
+    for (let i = 0; i < chain.size; i++) if (start[i] > 0) this.reach(i);
+    for (let j = 0; j < this.active; j++) this.now[j] = start[this.order[j]];
   }
 
-  /** All states that can be reached have been. */
+  /** No further state can be reached. */
   get complete(): boolean {
-    return this.active === this.order.length;
+    if (this.largestExit > 0) this.expand();
+    return this.expanded === this.active;
   }
 
   /** One more jump. */
   jump(): void {
-    const { inStart, inFrom, inShare, exitShare, now, next } = this;
     this.jumps++;
-    const level = Math.min(this.jumps, this.levelEnd.length - 1);
-    const active = this.levelEnd[level];
-    for (let j = 0; j < active; j++) {
-      let inflow = 0;
-      for (let k = inStart[j], end = inStart[j + 1]; k < end; k++) inflow += now[inFrom[k]] * inShare[k];
-      const held = now[j];
-      const exit = exitShare[j];
-      next[j] = exit < 0.5 ? held + (inflow - held * exit) : held * (1 - exit) + inflow;
+    if (this.largestExit === 0) return;
+    const before = this.active;
+    this.expand();
+    const { now, next, exitShare, arrowEnd, to, share, active } = this;
+    next.fill(0, 0, active);
+    for (let i = 0, k = 0; i < before; i++) {
+      const held = now[i];
+      for (const end = arrowEnd[i]; k < end; k++) next[to[k]] += held * share[k];
     }
-    this.active = active;
+    for (let i = 0; i < before; i++) {
+      const exit = exitShare[i];
+      next[i] = exit < 0.5 ? now[i] + (next[i] - now[i] * exit) : now[i] * (1 - exit) + next[i];
+    }
     this.now = next;
     this.next = now;
     // The shares of a row sum to 1 to rounding only; what thousands of jumps add up is taken out again.
     if (this.jumps % 16 === 0) this.normalise();
   }
 
+  /** Σ of a value for each state times its probability. */
+  value(values: Float64Array): number {
+    const { order, now, active } = this;
+    let sum = 0;
+    for (let j = 0; j < active; j++) sum += values[order[j]] * now[j];
+    return sum;
+  }
+
   /** Work of one jump, arrows and states. */
   get workPerJump(): number {
-    return this.inStart[this.active] + this.active;
+    return this.active + (this.expanded > 0 ? this.arrowEnd[this.expanded - 1] : 0);
+  }
+
+  private reach(state: number): number {
+    if (this.active === this.order.length) {
+      const room = 2 * this.active;
+      this.order = grown(this.order, room);
+      this.now = grown(this.now, room);
+      this.next = grown(this.next, room);
+      this.exitShare = grown(this.exitShare, room);
+      this.arrowEnd = grown(this.arrowEnd, room);
+    }
+    this.order[this.active] = state;
+    this.number[state] = ++this.active;
+    return this.active;
+  }
+
+  /** Takes in the arrows of the states reached by the last jump, and the states that they lead to. */
+  private expand(): void {
+    const { chain, number, largestExit } = this;
+    let arrows = this.expanded > 0 ? this.arrowEnd[this.expanded - 1] : 0;
+    for (const end = this.active; this.expanded < end; this.expanded++) {
+      const state = this.order[this.expanded];
+      const last = chain.rowStart[state + 1];
+      if (arrows + last - chain.rowStart[state] > this.to.length) {
+        const room = 2 * (arrows + last - chain.rowStart[state]);
+        this.to = grown(this.to, room);
+        this.share = grown(this.share, room);
+      }
+      for (let k = chain.rowStart[state]; k < last; k++) {
+        this.to[arrows] = (number[chain.toState[k]] || this.reach(chain.toState[k])) - 1;
+        this.share[arrows++] = chain.rate[k] / largestExit;
+      }
+      this.exitShare[this.expanded] = chain.exitRate[state] / largestExit;
+      this.arrowEnd[this.expanded] = arrows;
+    }
   }
 
   private normalise(): void {
@@ -112,6 +139,14 @@ export class JumpWalk {
     const scale = 1 / sum;
     if (scale !== 1) for (let j = 0; j < this.active; j++) this.now[j] *= scale;
   }
+}
+
+const FIRST_ROOM = 64;
+
+function grown<T extends Int32Array | Float64Array>(values: T, room: number): T {
+  const larger = new (values.constructor as new (length: number) => T)(room);
+  larger.set(values);
+  return larger;
 }
 
 /**
@@ -127,15 +162,16 @@ export function* uniformizedSums(
   size: number,
   weightSets: readonly JumpWeights[],
 ): globalThis.Generator<number, Float64Array[], void> {
-  const sums = weightSets.map(() => new Float64Array(walk.order.length));
+  const sums = weightSets.map(() => new Float64Array(FIRST_ROOM));
   yield* walkThrough(walk, weightSets, (_, set, weight) => {
-    const sum = sums[set];
     const { now, active } = walk;
+    if (sums[set].length < active) sums[set] = grown(sums[set], now.length);
+    const sum = sums[set];
     for (let j = 0; j < active; j++) sum[j] += weight * now[j];
   }, (set) => (walk.complete ? smallestPositive(sums[set]) : 0));
   return sums.map((sum) => {
     const full = new Float64Array(size);
-    for (let j = 0; j < sum.length; j++) full[walk.order[j]] = sum[j];
+    for (let j = Math.min(sum.length, walk.active); j-- > 0; ) full[walk.order[j]] = sum[j];
     return full;
   });
 }
@@ -149,15 +185,14 @@ export function* uniformizedValues(
   functionals: readonly Float64Array[],
   weightSets: readonly JumpWeights[],
 ): globalThis.Generator<number, Float64Array[], void> {
-  const byNumber = functionals.map((values) => Float64Array.from(walk.order, (i) => values[i]));
-  const largest = byNumber.map((values) => values.reduce((a, b) => Math.max(a, b), 0));
+  const largest = functionals.map((values) => values.reduce((a, b) => Math.max(a, b), 0));
   const result = functionals.map(() => new Float64Array(weightSets.length));
   const values = new Float64Array(functionals.length);
   let valuesAt = -1;
   yield* walkThrough(walk, weightSets, (k, set, weight) => {
     if (valuesAt !== k) {
       valuesAt = k;
-      for (let f = 0; f < values.length; f++) values[f] = dot(byNumber[f], walk.now, walk.active);
+      for (let f = 0; f < values.length; f++) values[f] = walk.value(functionals[f]);
     }
     for (let f = 0; f < values.length; f++) result[f][set] += weight * values[f];
   }, (set) => {
@@ -216,36 +251,4 @@ function smallestPositive(values: Float64Array): number {
   let smallest = Infinity;
   for (const value of values) if (value > 0 && value < smallest) smallest = value;
   return smallest;
-}
-
-function dot(a: Float64Array, b: Float64Array, count: number): number {
-  let sum = 0;
-  for (let k = 0; k < count; k++) sum += a[k] * b[k];
-  return sum;
-}
-
-function breadthFirst(chain: SparseRates, start: Float64Array): { order: Int32Array; levelEnd: number[]; number: Int32Array } {
-  const number = new Int32Array(chain.size).fill(-1);
-  const order = new Int32Array(chain.size);
-  let count = 0;
-  for (let i = 0; i < chain.size; i++)
-    if (start[i] > 0) {
-      number[i] = count;
-      order[count++] = i;
-    }
-  const levelEnd = [count];
-  for (let at = 0; at < count; ) {
-    for (const end = count; at < end; at++) {
-      const i = order[at];
-      for (let k = chain.rowStart[i]; k < chain.rowStart[i + 1]; k++) {
-        const j = chain.toState[k];
-        if (number[j] < 0) {
-          number[j] = count;
-          order[count++] = j;
-        }
-      }
-    }
-    if (count > levelEnd[levelEnd.length - 1]) levelEnd.push(count);
-  }
-  return { order: order.slice(0, count), levelEnd, number };
 }

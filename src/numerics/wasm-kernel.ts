@@ -41,7 +41,6 @@ class WasmBlock implements MatrixBlock {
   size = 0;
   stride = 0;
   slots: readonly Float64Array[] = [];
-  sincePause = 0;
   private open = false;
   /** Two views of the same place: the terms of a combination. */
   private factors = new Float64Array(0);
@@ -51,7 +50,6 @@ class WasmBlock implements MatrixBlock {
 
   layOut(size: number, count: number): void {
     this.open = true;
-    this.sincePause = 0;
     if (size === this.size && count === this.slots.length) return;
     const stride = (size + 1) & ~1;
     const doubles = stride * stride;

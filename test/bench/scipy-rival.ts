@@ -20,7 +20,9 @@ export class ScipyRival {
 
   static async start(): Promise<ScipyRival | null> {
     for (const python of ["/usr/bin/python3", "python3"]) {
-      const { OPENBLAS_CORETYPE: _type, OPENBLAS_L2_SIZE: _size, ...environment } = process.env;
+      const environment = { ...process.env };
+      delete environment.OPENBLAS_CORETYPE;
+      delete environment.OPENBLAS_L2_SIZE;
       const child = spawn(python, [path.join(BENCH_FOLDER, "scipy-rival.py")], {
         env: { ...environment, OPENBLAS_NUM_THREADS: "1", OMP_NUM_THREADS: "1" },
         stdio: ["pipe", "pipe", "ignore"],

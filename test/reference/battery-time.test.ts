@@ -6,7 +6,7 @@ import { percentiles } from "../../src/chain/percentile";
 import { finish } from "../../src/chain/steps";
 import { transitionMatrix } from "../../src/chain/transition";
 import { shareElasticityAt } from "../../src/chain/transition-derivative";
-import { kernelFor } from "../../src/numerics/method-choice";
+import { denseKernel } from "../../src/numerics/method-choice";
 import { denseOf } from "../../src/numerics/rows";
 import { TransitionDerivative } from "../../src/numerics/transition-derivative";
 import { battery, generatorOf, maskOf, referenceValue, startOf, Worst } from "./battery";
@@ -72,7 +72,7 @@ describe.each(battery.map((c) => [c.id, c] as const))("battery %s", (id, c) => {
   if (from !== to && c.t > 0)
     it("derivative of P(t)", () => {
       const { n } = c;
-      const derivative = finish(TransitionDerivative.open(denseOf(generator), c.t, kernelFor(n)));
+      const derivative = finish(TransitionDerivative.open(denseOf(generator), c.t, denseKernel()));
       const p = derivative.transition;
       const d = finish(derivative.along(from, to));
       derivative.close();

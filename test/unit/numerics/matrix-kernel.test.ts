@@ -1,7 +1,7 @@
 import { readFileSync } from "node:fs";
 import { describe, expect, it } from "vitest";
 import { kernelBytesText } from "../../../scripts/build-kernel.mjs";
-import { load, multiplySteps, repairRow, SMALLEST_NORMAL, unpadded, WORK_BETWEEN_PAUSES } from "../../../src/numerics/matrix-kernel";
+import { load, multiplySteps, repairRow, SMALLEST_NORMAL, unpadded, UNPAUSED, WORK_BETWEEN_PAUSES } from "../../../src/numerics/matrix-kernel";
 import { kernels, repeatable } from "./kernels";
 
 const SIZES = [1, 2, 3, 4, 5, 6, 7, 8, 9, 10, 11, 13, 16, 21, 50, 51];
@@ -76,7 +76,7 @@ describe.each(kernels.map((k) => [k.name, k] as const))("kernel %s", (_, kernel)
     }
   });
 
-  it("takes a large product in pieces, with a pause before the work of one pause is passed twice", () => {
+  it("takes a large product in pieces, with a pause after the work of one, and a small one without", () => {
     const n = 400;
     const block = kernel.open(n, 3);
     let sincePause = 0;
@@ -93,10 +93,15 @@ describe.each(kernels.map((k) => [k.name, k] as const))("kernel %s", (_, kernel)
       sincePause = 0;
       pauses++;
     }
-    expect(pauses).toBe(1);
-    expect(most).toBeLessThanOrEqual(2 * WORK_BETWEEN_PAUSES);
+    expect(pauses).toBe(2);
+    expect(most).toBeLessThanOrEqual(WORK_BETWEEN_PAUSES);
     delete (block as Partial<typeof block>).multiply;
     block.close();
+    for (const [size, expected] of [[UNPAUSED, 0], [UNPAUSED + 1, 1]]) {
+      const small = kernel.open(size, 3);
+      expect([...multiplySteps(small, 2, 0, 1, 0)]).toHaveLength(expected);
+      small.close();
+    }
   });
 });
 
