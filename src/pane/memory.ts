@@ -173,6 +173,13 @@ function readEntry(entry: TableMemory & Record<string, unknown>): { readable: Ta
   return { readable: readable as unknown as TableMemory, unreadable: Object.keys(lost).length ? { ...place, ...lost } : null };
 }
 
+/** The entry with one thing forgotten. */
+export function without(entry: TableMemory, field: "unit" | "answers" | "signOff"): TableMemory {
+  const rest: { -readonly [K in keyof TableMemory]: TableMemory[K] } = { ...entry };
+  delete rest[field];
+  return rest;
+}
+
 function bare({ sheet, row, column }: Place): TableMemory {
   return { sheet, row, column };
 }

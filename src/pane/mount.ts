@@ -75,7 +75,7 @@ function page(session: Session): Child[] {
     tabs(session),
     h(
       "div",
-      { id: "sr-panel", class: "sr-panel", role: "tabpanel", "aria-labelledby": `sr-tab-${view}` },
+      { id: "sr-panel", class: "sr-panel", role: "tabpanel", "aria-labelledby": `sr-tab-${view}`, "aria-busy": session.state.busy ? "true" : "false" },
       notices(session),
       view === "check" ? checkView(session) : bookView(session),
     ),

@@ -41,7 +41,12 @@ export function stillAsShown(now: RangeReading, shown: RangeReading, place: Rang
   );
 }
 
-/** Do two readings of the same cells hold the same? */
+/** Was the same entered into the same cells? A formula is the same whatever it shows by now. */
+export function sameEntries(a: RangeReading, b: RangeReading): boolean {
+  return a.formulas.every((line, r) => line.every((formula, c) => formula === b.formulas[r]?.[c] && (formula.startsWith("=") || a.values[r][c] === b.values[r][c])));
+}
+
+/** Do two readings of the same cells hold and show the same? */
 export function sameContent(a: RangeReading, b: RangeReading): boolean {
   return JSON.stringify([a.values, a.formulas]) === JSON.stringify([b.values, b.formulas]);
 }

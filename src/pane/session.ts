@@ -2,8 +2,8 @@ import { cellText, sameRange, within } from "./address";
 import { BookWatch } from "./book-watch";
 import { unitAbove } from "./unit-above";
 import { examine, type Item, type Question } from "./examine";
-import { Memory, type TableMemory } from "./memory";
-import { previewOf, sameContent, stillAsShown } from "./preview";
+import { Memory, without, type TableMemory } from "./memory";
+import { previewOf, sameContent, sameEntries, stillAsShown } from "./preview";
 import { putBack, rangeOf } from "./remedy-write";
 import { act, sharingOf, type SharingAct } from "./sharing";
 import { signOffOf } from "./sign-off";
@@ -34,6 +34,8 @@ export class Session {
   private readonly listeners = new Set<() => void>();
   private readonly off: (() => void)[] = [];
   private readonly timers = new Map<string, ReturnType<typeof setTimeout>>();
+  /** The subject of the newest examination, which may still be on its way. */
+  private aim: Subject | null = null;
   /** Counts examinations: an answer that arrives after a newer question is dropped. */
   private turn = 0;
   /** A selection that the pane made itself does not move the pane. */
@@ -49,7 +51,7 @@ export class Session {
     this.watch = new BookWatch(workbook, (book) => {
       const fresh = book.status === "ready" && book.scanned !== this.current.book.scanned;
       this.set({ book });
-      if (fresh && this.current.subject) void this.look(this.current.subject);
+      if (fresh && this.aim) void this.saying(() => this.look(this.aim!));
     });
   }
 
@@ -105,8 +107,7 @@ export class Session {
     this.set({ busy: true });
     await this.attempt(async () => {
       await this.loadMemory();
-      if (this.current.subject) await this.look(await followSubject(this.workbook, this.current.subject));
-      else await this.selectionMoved();
+      await this.lookAgain();
     });
     this.set({ busy: false });
     this.watch.refresh();
@@ -236,7 +237,7 @@ export class Session {
     }
     await this.attempt(async () => {
       const now = await this.workbook.read(rangeOf(undo.write));
-      if (!sameContent(now, undo.after)) throw new Error(`${cellText(rangeOf(undo.write))} has changed since. Nothing was put back.`);
+      if (!sameEntries(now, undo.after)) throw new Error(`${cellText(rangeOf(undo.write))} has changed since. Nothing was put back.`);
       await this.workbook.write([undo.write], undo.label);
       this.set({ notice: { text: "Put back as it was." } });
       if (this.current.subject) await this.look(this.current.subject);
@@ -283,26 +284,34 @@ export class Session {
   // What the workbook tells
 
   private async selectionMoved(): Promise<void> {
-    if (this.current.held && this.current.subject) return;
-    const selection = await this.workbook.selection();
-    if (sameRange(selection, this.ownSelection)) return;
+    if (this.current.held && this.aim) return;
+    // A host rejects where no cells are selected, such as a chart: nothing to look at then.
+    const selection = await this.workbook.selection().catch(() => null);
+    if (!selection || sameRange(selection, this.ownSelection)) return;
     this.ownSelection = null;
-    const subject = await chooseSubject(this.workbook, selection, this.current.subject);
-    if (subject && !sameRange(subject.address, this.current.subject?.address ?? null)) await this.look(subject);
+    const subject = await chooseSubject(this.workbook, selection, this.aim);
+    if (subject && !sameRange(subject.address, this.aim?.address ?? null)) await this.look(subject);
   }
 
   private async cellsChanged(): Promise<void> {
     this.watch.changed();
-    if (this.current.subject) await this.look(await followSubject(this.workbook, this.current.subject));
-    else await this.selectionMoved();
+    await this.lookAgain();
+  }
+
+  private async lookAgain(): Promise<void> {
+    const { aim } = this;
+    if (!aim) return this.selectionMoved();
+    const followed = await followSubject(this.workbook, aim);
+    if (this.aim === aim) await this.look(followed);
   }
 
   /** Sheets were added, renamed or removed, or another workbook was opened. */
   private async sheetsChanged(): Promise<void> {
     await this.loadMemory();
     const names = (await this.workbook.sheets()).map((sheet) => sheet.name);
-    if (this.current.subject && !names.includes(this.current.subject.address.sheet)) {
+    if (this.aim && !names.includes(this.aim.address.sheet)) {
       this.turn++;
+      this.aim = null;
       this.set({ subject: null, looked: null, opened: null, held: false, notice: null });
     }
     await this.cellsChanged();
@@ -310,7 +319,11 @@ export class Session {
 
   private async look(subject: Subject): Promise<void> {
     const turn = ++this.turn;
-    const reading = await this.workbook.read(subject.address);
+    this.aim = subject;
+    const reading = await this.workbook.read(subject.address).catch((error: unknown) => {
+      if (turn === this.turn) this.aim = this.current.subject;
+      throw error;
+    });
     if (turn !== this.turn) return;
     const moved = !sameRange(subject.address, this.current.subject?.address ?? null);
     const looked = examine(reading, (states) => this.memory.table(subject.address, states, this.watch.gone), this.watch.contextOf(subject.address));
@@ -379,12 +392,6 @@ export class Session {
     this.current = { ...this.current, ...change };
     this.listeners.forEach((listener) => listener());
   }
-}
-
-function without(entry: TableMemory, field: "unit" | "answers" | "signOff"): TableMemory {
-  const rest: { -readonly [K in keyof TableMemory]: TableMemory[K] } = { ...entry };
-  delete rest[field];
-  return rest;
 }
 
 function sentenceOf(error: unknown): string {

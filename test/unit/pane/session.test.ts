@@ -145,6 +145,31 @@ describe("what the pane looks at", () => {
     expect(workbook.listenerCount).toBe(0);
   });
 
+  it("lands on the table selected last, though the workbook is looked through meanwhile", async () => {
+    const { workbook, session, place, select } = await started({ Pump: PUMP, Other: [["", "Up", "Down"], ["Up", "", 1], ["Down", 2, ""]] });
+    await select(cell("Pump", 2, 3));
+    const read = workbook.read.bind(workbook);
+    vi.spyOn(workbook, "read").mockImplementation(async (range) => {
+      if (range.sheet === "Other") await new Promise((done) => setTimeout(done, 2000)); // a slow host
+      return read(range);
+    });
+    await workbook.select(cell("Other", 1, 1));
+    await vi.advanceTimersByTimeAsync(500);
+    session.refresh().catch(() => undefined);
+    await vi.advanceTimersByTimeAsync(9000);
+    expect(place()).toBe("Other A1:C3");
+  });
+
+  it("is not disturbed by a selection that holds no cells", async () => {
+    const { workbook, session, place, select } = await started();
+    await select(cell("Pump", 2, 3));
+    vi.spyOn(workbook, "selection").mockRejectedValue(new Error("A chart is selected."));
+    await workbook.select(cell("Pump", 30, 3));
+    await settled();
+    expect(session.state.trouble).toBeNull();
+    expect(place()).toBe("Pump B2:E5");
+  });
+
   it("says in words what a host refuses", async () => {
     const { workbook, session, select } = await started();
     await select(cell("Pump", 2, 3));
@@ -291,6 +316,17 @@ describe("remedies", () => {
     await settled(); // the change itself is taken in, and does not wipe the sentence
     expect(session.state.trouble).toContain("has changed since");
     expect(workbook.value("Pump", 2, 2)).toBe(7);
+  });
+
+  it("undoes formulas that show something else by now, since rates have changed", async () => {
+    const { workbook, session, select, open } = await started();
+    await select(cell("Pump", 2, 3));
+    await session.openRemedy(open("diagonalBlank"));
+    await session.applyRemedy(open("diagonalBlank"));
+    workbook.type("Pump", 2, 2, { formula: workbook.formula("Pump", 2, 2), value: -0.5 });
+    await session.undo();
+    expect(session.state.trouble).toBeNull();
+    expect(workbook.formula("Pump", 2, 2)).toBe("");
   });
 
   it("closes a preview when the table changes under it", async () => {
