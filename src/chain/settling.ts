@@ -1,8 +1,8 @@
 import { denseKernel } from "../numerics/method-choice";
-import { LARGEST_STORED } from "../numerics/passage-quantile";
 import { denseOf } from "../numerics/rows";
 import { settlingTime as settling } from "../numerics/settling";
 import type { Generator } from "./generator";
+import { checkMatrix } from "./horizon";
 import { Problem } from "./problem";
 import { finish, type Steps } from "./steps";
 
@@ -28,6 +28,6 @@ export function settlingTime(generator: Generator, tolerance: number): number {
 
 export function* settlingTimeSteps(generator: Generator, tolerance: number): Steps<number> {
   if (!(tolerance > 0 && tolerance < 1)) throw new Problem("toleranceOutside", { tolerance });
-  if (generator.size > LARGEST_STORED) throw new Problem("tooManyStates", { states: generator.size });
+  checkMatrix(generator);
   return yield* settling(denseOf(generator), tolerance, denseKernel());
 }

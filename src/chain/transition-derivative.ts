@@ -3,7 +3,7 @@ import { denseOf, rowsAt } from "../numerics/rows";
 import { TransitionDerivative } from "../numerics/transition-derivative";
 import type { StateSet } from "./classes";
 import type { Generator } from "./generator";
-import { checkTimes } from "./horizon";
+import { checkMatrix, checkTimes } from "./horizon";
 import { finish, type Steps } from "./steps";
 
 /**
@@ -16,7 +16,7 @@ import { finish, type Steps } from "./steps";
  * @param start - n probabilities that sum to 1
  * @param time - finite, 0 or more, in the rates' time unit
  * @returns n × n, row-major, rows from, columns to; 0 where there is no arrow; NaN everywhere when the share is 0
- * @throws `timeNegative`, `timeNotFinite`, `horizonTooLong`
+ * @throws `timeNegative`, `timeNotFinite`, `horizonTooLong`, `tooManyStates` above 1,000 states
  *
  * *Method*: one run in dual numbers an arrow, Al-Mohy & Higham 2009 with the derivative of the row repair (ours), see
  * `numerics/transition-derivative.ts`. *Cost*: arrows · 2 products a squaring of P(t). *Accuracy*: absolute error at most
@@ -39,6 +39,7 @@ export function* shareElasticityAtSteps(
   start: Float64Array,
   time: number,
 ): Steps<Float64Array> {
+  checkMatrix(generator);
   checkTimes(generator, [time]);
   const n = generator.size;
   const elasticities = new Float64Array(n * n);

@@ -2,7 +2,7 @@ import { denseTransition } from "../numerics/dense-transition";
 import { denseKernel } from "../numerics/method-choice";
 import { denseOf } from "../numerics/rows";
 import type { Generator } from "./generator";
-import { checkTimes } from "./horizon";
+import { checkMatrix, checkTimes } from "./horizon";
 import { finish, type Steps } from "./steps";
 
 /**
@@ -13,7 +13,7 @@ import { finish, type Steps } from "./steps";
  * @param generator - the chain, n states
  * @param time - finite, 0 or more, in the rates' time unit
  * @returns n × n, row-major: rows from, columns to; rows sum to 1; the identity at time 0
- * @throws `timeNegative`, `timeNotFinite`, `horizonTooLong`
+ * @throws `timeNegative`, `timeNotFinite`, `horizonTooLong`, `tooManyStates` above 1,000 states
  *
  * *Method*: Taylor series with non-negative terms, scaling and squaring, Xue & Ye 2008, with row repair (ours); see
  * `numerics/dense-transition.ts`. *Cost*: about 9 + log2(Λt) products of order n. *Accuracy*: entry by entry, relative
@@ -27,6 +27,7 @@ export function transitionMatrix(generator: Generator, time: number): Float64Arr
 }
 
 export function* transitionMatrixSteps(generator: Generator, time: number): Steps<Float64Array> {
+  checkMatrix(generator);
   checkTimes(generator, [time]);
   return yield* denseTransition(denseOf(generator), time, denseKernel());
 }

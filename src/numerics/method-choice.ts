@@ -14,6 +14,12 @@ export function denseKernel(): MatrixKernel {
 const JUMP_COST = 1.5;
 const PRODUCT_COST = 0.1;
 
+/** Full matrices of more states, and a list of their squarings, would fill the memory. */
+export const LARGEST_MATRIX = 1000;
+
+/** Arrows and states that a walk may touch before a question is given up: some minutes. */
+export const LARGEST_WALK = 1e11;
+
 /** Chains up to this size go through the matrix whenever jumps are many: it costs little there. */
 export const SMALL = 300;
 const FEW_JUMPS = 32;
@@ -29,6 +35,7 @@ const FEW_JUMPS = 32;
  * @param times number of times
  */
 export function chooseMethod(size: number, arrows: number, jumps: number, times: number): Method {
+  if (size > LARGEST_MATRIX) return "row";
   if (size <= SMALL && jumps > Math.max(size, FEW_JUMPS)) return "matrix";
   const walked = jumps + 8 * Math.sqrt(jumps) + 20;
   const row = walked * (arrows + size * (1 + times)) * JUMP_COST;

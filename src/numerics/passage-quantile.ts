@@ -1,4 +1,4 @@
-import { denseKernel, SMALL, type Method } from "./method-choice";
+import { denseKernel, LARGEST_MATRIX, LARGEST_WALK, SMALL, type Method } from "./method-choice";
 import { repairRow, type MatrixKernel } from "./matrix-kernel";
 import { poissonWeights } from "./poisson";
 import { denseOf, type ChainRates } from "./rows";
@@ -20,11 +20,6 @@ export interface PassageValues {
 /** The level sought: `met` reaches it from below, or `yet` falls to it, whichever is the smaller number. */
 export type Goal = { readonly value: "met" | "yet"; readonly level: number };
 
-/** Stored squarings of more states would fill the memory. */
-export const LARGEST_STORED = 1000;
-/** Arrows and states that a walk may touch before the question is given up: some minutes. */
-export const LARGEST_WALK = 1e11;
-
 /**
  * Times at which the goals are met, for a stopped chain left from `start`; null when it would take too long. Small chains go
  * through stored squarings at once; others jump by jump as long as that is cheaper.
@@ -43,9 +38,9 @@ export function* passageQuantiles(
   const n = chain.size;
   const stored = options.method ? options.method === "matrix" : n <= SMALL;
   if (!stored) {
-    const budget = options.method || n > LARGEST_STORED ? (options.largestWalk ?? LARGEST_WALK) : 8 * n ** 3;
+    const budget = options.method || n > LARGEST_MATRIX ? (options.largestWalk ?? LARGEST_WALK) : 8 * n ** 3;
     const walked = yield* quantilesByWalk(chain, start, values, goals, budget);
-    if (walked || options.method || n > LARGEST_STORED) return walked;
+    if (walked || options.method || n > LARGEST_MATRIX) return walked;
   }
   const dense = denseOf(chain);
   const squarings = yield* Squarings.open(dense, options.kernel ?? denseKernel(), (4 * n) / dense.largestExit);

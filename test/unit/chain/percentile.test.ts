@@ -2,7 +2,8 @@ import { describe, expect, it } from "vitest";
 import { Generator } from "../../../src/chain/generator";
 import { percentiles } from "../../../src/chain/percentile";
 import { finish } from "../../../src/chain/steps";
-import { LARGEST_WALK, passageQuantiles } from "../../../src/numerics/passage-quantile";
+import { LARGEST_WALK } from "../../../src/numerics/method-choice";
+import { passageQuantiles } from "../../../src/numerics/passage-quantile";
 import { reached, survival } from "../../../src/chain/first-passage";
 import { expectNear, expectProblem, line, mask, unit } from "./closed-forms";
 

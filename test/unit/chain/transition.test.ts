@@ -3,6 +3,7 @@ import { distributions } from "../../../src/chain/distribution";
 import { Generator } from "../../../src/chain/generator";
 import { LONGEST_HORIZON } from "../../../src/chain/horizon";
 import { transitionMatrix } from "../../../src/chain/transition";
+import { LARGEST_MATRIX } from "../../../src/numerics/method-choice";
 import { expectNear, expectProblem, line, repairable, unit } from "./closed-forms";
 
 describe("transition probabilities", () => {
@@ -43,6 +44,12 @@ describe("transition probabilities", () => {
     const { details } = expectProblem(() => transitionMatrix(chain, LONGEST_HORIZON * 2), "horizonTooLong");
     expect(details).toEqual({ time: 2e18, rate: 1, jumps: 2e18, limit: 1e18 });
     expect(Array.from(transitionMatrix(chain, LONGEST_HORIZON))).toEqual([0.5, 0.5, 0.5, 0.5]);
+  });
+
+  it("refuses more states than memory holds as a full matrix, and walks of minutes", () => {
+    expectProblem(() => transitionMatrix(line(LARGEST_MATRIX, 1), 1), "tooManyStates");
+    expectProblem(() => distributions(line(LARGEST_MATRIX, 1), unit(LARGEST_MATRIX + 1, 0), [1e9]), "tooMuchWork");
+    expect(transitionMatrix(line(LARGEST_MATRIX - 1, 1), 0)).toHaveLength(LARGEST_MATRIX ** 2);
   });
 
   it("takes rates at both ends of what a table may hold", () => {
