@@ -1,7 +1,7 @@
 import { Generator, type Arrow } from "../chain/generator";
 import { Problem } from "../chain/problem";
 import { cellAt, isDash, isEmpty, isFault, isText, isVoid, nameKey, numberInText } from "./cell";
-import type { Cells, Layout, Reading, TableArrow } from "./rate-table";
+import type { Cells, CellValue, Layout, Reading, TableArrow } from "./rate-table";
 import { MOST_PROBLEMS, rateIn, rateProblem } from "./square";
 
 /** How far a range looks like a list: every row reads from, to, rate ("list"), most do ("nearly"), or not. */
@@ -18,6 +18,24 @@ export function listLikeness(cells: Cells): "list" | "nearly" | "no" {
   if (matching === 0) return "no";
   if (other === 0) return "list";
   return matching > other ? "nearly" : "no";
+}
+
+/** Whether three columns look like a list whose states are numbers, which the form does not take: names are text. */
+export function isNumberedList(cells: Cells): boolean {
+  const first = firstRow(cells);
+  let rows = 0;
+  for (let i = first; i < cells.length; i++) {
+    if (isBlankRow(cells, i)) continue;
+    const [from, to, rate] = [0, 1, 2].map((column) => cellAt(cells, i, column));
+    if (!isStateNumber(from) || !isStateNumber(to) || from === to || typeof rate !== "number") return false;
+    if (cells[i].slice(3).some((cell) => !isVoid(cell))) return false;
+    rows++;
+  }
+  return rows > 0 && (first === 1 || rows !== 3);
+}
+
+function isStateNumber(cell: CellValue): boolean {
+  return typeof cell === "number" && Number.isInteger(cell) && cell >= 1;
 }
 
 /** 1 when the first row is headings: three texts, the last of which is no number in disguise. */

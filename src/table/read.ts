@@ -1,6 +1,6 @@
 import { Problem } from "../chain/problem";
 import { isVoid } from "./cell";
-import { listLikeness, readList } from "./list";
+import { isNumberedList, listLikeness, readList } from "./list";
 import type { Cells, Reading, RateTable } from "./rate-table";
 import { readSquare } from "./square";
 
@@ -9,14 +9,14 @@ import { readSquare } from "./square";
  *
  * Problems come in the order in which a formula refuses: layout, then cell by cell, then diagonals; each carries the cells
  * concerned as `details.span` = [row, column, rows, columns] in the given range, from 0. A list with a few broken
- * rows, or with columns behind it, is refused as a list, whenever it does not read as a square.
+ * rows, with numbers for names or with columns behind it is refused as a list, whenever it does not read as a square.
  */
 export function read(cells: Cells): Reading {
   const likeness = listLikeness(cells);
   if (likeness === "list") return readList(cells);
   const square = readSquare(cells);
   if (square.problems.length === 0) return square;
-  if (likeness === "nearly") return readList(cells);
+  if (likeness === "nearly" || isNumberedList(cells)) return readList(cells);
   return square.layout ? square : (tooWideList(cells) ?? square);
 }
 

@@ -148,6 +148,14 @@ describe("list form", () => {
     expect(refusal([["A", "B", "0.5"], ["B", "A", 2], ["B", "C", 1]])).toContain("Row 1");
   });
 
+  it("refuses numbers for names", () => {
+    const sentence = (row: number) => `Row ${row}: "1" in place of a state name. Enter the names of both states as text.`;
+    expect(refusal([["from", "to", "rate"], [1, 2, 0.5], [2, 1, 0.25], [2, 3, 1]])).toBe(sentence(2));
+    expect(refusal([[1, 2, 0.5], [2, 1, 0.25], [2, 3, 1], [3, 1, 1]])).toBe(sentence(1));
+    expect(refusal([[90, 5, 5], [3, 80, 7], [1, 2, 95]])).toContain("percent?");
+    expect(refusal([["A", "B", "C"], [0, 1, 2], [1, 0, 2]])).toContain("is headed");
+  });
+
   it("refuses columns behind it, and names a heading without partner in a square", () => {
     expect(refusal([["from", "to", "rate", "unit"], ["A", "B", 1, "per h"], ["B", "A", 2, "per h"]])).toBe(
       "Column 4 is filled, but a list has three: from, to, rate. Select those three columns only.",
