@@ -97,12 +97,12 @@ function numberOf(cell: CellValue, onDiagonal: boolean): number {
 
 /**
  * How far the sum of these numbers may stray when each was rounded to the decimals of the longest of them: half a last
- * digit each. 0 for numbers that were computed rather than typed (more than 12 decimals).
+ * digit each. 0 for numbers that were computed rather than typed (more than 12 decimals), and for whole numbers, which are meant exactly.
  */
 export function roundingBand(values: readonly number[]): number {
   let decimals = 0;
   for (const value of values) decimals = Math.max(decimals, decimalsOf(value));
-  return decimals > 12 ? 0 : values.length * 0.5 * 10 ** -decimals;
+  return decimals > 12 || decimals === 0 ? 0 : values.length * 0.5 * 10 ** -decimals;
 }
 
 export function decimalsOf(value: number): number {

@@ -83,15 +83,13 @@ function someExitsAbove1(body: Body): boolean {
   return ones > 0 && above > 0;
 }
 
+/** Exactly, while some row does not; or within the rounding of typed digits, while some row goes beyond it. */
 function columnsSumToZero(body: Body): boolean {
-  let rowsBroken = false;
-  for (let k = 0; k < body.size; k++) {
-    const column = lineSum(body, k, false);
-    if (!(Math.abs(column.sum) <= slackOf(column))) return false;
-    const row = lineSum(body, k, true);
-    if (!(Math.abs(row.sum) <= slackOf(row))) rowsBroken = true;
-  }
-  return rowsBroken;
+  return [exactSlack, slackOf].some((slack) => {
+    const sumsToZero = (line: LineSum): boolean => Math.abs(line.sum) <= slack(line);
+    const lines = Array.from({ length: body.size }, (_, k) => k);
+    return lines.every((k) => sumsToZero(lineSum(body, k, false))) && !lines.every((k) => sumsToZero(lineSum(body, k, true)));
+  });
 }
 
 export interface LineSum {
@@ -117,9 +115,13 @@ export function lineSum(body: Body, line: number, isRow: boolean): LineSum {
   return { sum, size, entries };
 }
 
+function exactSlack(line: LineSum): number {
+  return SAME * line.size;
+}
+
 /** How far a line may miss zero: double precision, or the rounding of its typed digits. */
-export function slackOf(line: LineSum): number {
-  return Math.max(SAME * line.size, roundingBand(line.entries) * (1 + SAME));
+function slackOf(line: LineSum): number {
+  return Math.max(exactSlack(line), roundingBand(line.entries) * (1 + SAME));
 }
 
 /** Whether some row stays more than a fiftieth below the total: a class is left out. */

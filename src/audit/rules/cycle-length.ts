@@ -23,7 +23,8 @@ export const cycleLength: Rule = (context) => {
       const way = dividedBy(context.body, long, cycles) ? "divided" : rootOf(context.body, long, cycles) ? "root" : null;
       if (!way) continue;
       const gap = powerGap(context.body, long, cycles);
-      if (gap < 0.0005) continue; // hardly any two jumps in a long cycle: nothing worth a stop
+      // hardly any two jumps in a long cycle, or no more than the rounding of the short table: nothing worth a stop
+      if (gap <= Math.max(0.0005, (cycles * roundingBand([...context.body.values])) / context.body.values.length)) continue;
       return [{ code: "cycleLength", severity: "stop", span: bodySpan(context), details: { way, cycles, where: other.where, gap } }];
     }
   }
