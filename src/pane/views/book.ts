@@ -27,8 +27,8 @@ export function bookView(session: Session): Child {
     ...(scanned?.cut ?? []).map(({ sheet, lastRow }) =>
       h("p", { key: `cut-${sheet}`, class: "sr-soft" }, `${sheet} is very large: looked through to row ${lastRow}.`),
     ),
-    scanned && contents(session, scanned.scan),
     sharingPart(session),
+    scanned && contents(session, scanned.scan),
   ];
 }
 
