@@ -65,6 +65,9 @@ const RULES: readonly Rule[] = [
   largestArrow,
 ];
 
+/** Rules that look at arrows only: all that a list of very many states is judged by. */
+const GRAPH_RULES: readonly Rule[] = [closedClasses, unreachable, noExit];
+
 const SHEET_RULES: readonly SheetRule[] = [merged, rangeShort, hidden, manualCalculation];
 
 const RANK: Readonly<Record<Severity, number>> = { stop: 0, warning: 1, note: 2 };
@@ -135,7 +138,8 @@ function explained(refusals: readonly Finding[], found: readonly Finding[], insi
 
 function rulesOn(cells: Cells, reading: Reading, layout: Layout, options: AuditOptions, aside: readonly string[] = []): Finding[] {
   const context = contextOf(cells, reading, layout, options, aside);
-  return RULES.flatMap((rule) => rule(context)).map((finding) => placed(finding, layout));
+  const rules = context.body.long ? GRAPH_RULES : RULES;
+  return rules.flatMap((rule) => rule(context)).map((finding) => placed(finding, layout));
 }
 
 function startRefusal({ start }: AuditOptions): Finding[] {

@@ -13,13 +13,20 @@ export interface Body {
   readonly values: Float64Array;
   /** 1 where a number was typed, zero included. */
   readonly typed: Uint8Array;
+  /** Of a list too long for the arrays above, which are then empty: its arrows, a cell that cannot be read included. */
+  readonly long: Generator | null;
   /** Sum of the readable, positive numbers of each row off the diagonal. */
   readonly exits: Float64Array;
   /** The name of a state, or "" where the table has none. */
   nameOf(state: number): string;
   /** Where an entry stands in the given range; null for a pair that a list does not hold. */
   placeOf(from: number, to: number): Place | null;
+  /** In a long list, the first row that names a state. */
+  firstPlaceOf?(state: number): Place | null;
 }
+
+/** Lists of more states are judged by their graph alone: what looks at every pair of states would take seconds. */
+export const LONGEST_PAIRWISE = 3000;
 
 export function textOf(value: CellValue | undefined): string {
   return typeof value === "string" ? value.trim() : typeof value === "number" ? String(value) : "";
@@ -44,9 +51,12 @@ function squareBody(cells: Cells, layout: Layout): Body {
 
 function listBody(cells: Cells, layout: Layout): Body {
   const { size, body, names } = layout;
-  const values = new Float64Array(size * size);
-  const typed = new Uint8Array(size * size);
+  const long = size > LONGEST_PAIRWISE;
+  const values = new Float64Array(long ? 0 : size * size);
+  const typed = new Uint8Array(long ? 0 : size * size);
   const places = new Map<number, Place>();
+  const first = new Map<number, Place>();
+  const arrows: Arrow[] = [];
   const numbers = new Map((names ?? []).map((name, state) => [nameKey(name), state]));
   for (let row = body.row; row < body.row + body.rows; row++) {
     const from = numbers.get(nameKey(textOf(cells[row]?.[body.column])));
@@ -55,9 +65,22 @@ function listBody(cells: Cells, layout: Layout): Body {
     const at = from * size + to;
     if (places.has(at)) continue;
     const cell = cells[row]?.[body.column + 2];
-    places.set(at, { row, column: body.column + 2 });
-    values[at] = numberOf(cell ?? null, false);
+    const place = { row, column: body.column + 2 };
+    places.set(at, place);
+    const value = numberOf(cell ?? null, false);
+    if (long) {
+      if (value !== 0 && from !== to) arrows.push([from, to, value >= SMALLEST_RATE && value <= LARGEST_RATE ? value : 1]);
+      for (const state of [from, to]) if (!first.has(state)) first.set(state, place);
+      continue;
+    }
+    values[at] = value;
     if (typeof cell === "number") typed[at] = 1;
+  }
+  if (long) {
+    const chain = Generator.fromArrows(size, arrows);
+    const placeOf = (from: number, to: number): Place | null => places.get(from * size + to) ?? null;
+    const nameOf = (state: number): string => names?.[state] ?? "";
+    return { form: "list", size, values, typed, long: chain, exits: chain.exitRate, placeOf, firstPlaceOf: (state) => first.get(state) ?? null, nameOf };
   }
   return finishBody("list", layout, values, typed, (from, to) => places.get(from * size + to) ?? null);
 }
@@ -67,7 +90,7 @@ function finishBody(form: Body["form"], layout: Layout, values: Float64Array, ty
   const exits = new Float64Array(size);
   for (let i = 0; i < size; i++)
     for (let j = 0; j < size; j++) if (i !== j && values[i * size + j] > 0) exits[i] += values[i * size + j];
-  return { form, size, values, typed, exits, placeOf, nameOf: (state) => names?.[state] ?? "" };
+  return { form, size, values, typed, long: null, exits, placeOf, nameOf: (state) => names?.[state] ?? "" };
 }
 
 /** The chain that the readable, positive rates describe. */
@@ -81,6 +104,7 @@ export function possibleArrows(body: Body): Generator {
 }
 
 function chainWhere(body: Body, rateOf: (value: number) => number): Generator {
+  if (body.long) return body.long;
   const arrows: Arrow[] = [];
   for (let i = 0; i < body.size; i++)
     for (let j = 0; j < body.size; j++) {

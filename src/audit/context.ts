@@ -105,6 +105,8 @@ export function rowSpan(context: Context, state: number): Span {
   if (body.form === "square") {
     return { row: layout.body.row + state, column: layout.body.column, rows: 1, columns: layout.size };
   }
+  const first = body.firstPlaceOf?.(state);
+  if (first) return { row: first.row, column: layout.body.column, rows: 1, columns: 3 };
   for (const [from, to] of pairsWith(body.size, state)) {
     const place = body.placeOf(from, to);
     if (place) return { row: place.row, column: layout.body.column, rows: 1, columns: 3 };

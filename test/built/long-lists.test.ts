@@ -35,6 +35,16 @@ describe("a list of 20,000 states", () => {
     at.forEach((value, k) => expect(Math.abs(value / as[k] - 1)).toBeLessThan(1e-13));
   });
 
+  it("is checked by its arrows, with the row of each finding", () => {
+    expect(functions.CHECK(list)).toEqual([["ok", "", "", ""]]);
+    const more = [...list, ["Spare", "L5", 1], ["L9", "Odd", 2]];
+    const rows = functions.CHECK(more) as string[][];
+    expect(rows.map(([severity, where]) => `${severity}, ${where}`)).toEqual(["warning, row 40000 of the range"]);
+    expect(rows[0][2]).toContain("Odd has no exit");
+    const broken = list.map((row, k) => (k === 776 ? [row[0], row[1], -1] : row));
+    expect(functions.CHECK(broken)[0][2]).toBe("Row 777: -1 is not a rate. Enter 0 or more.");
+  });
+
   it("refuses what would not fit a sheet with its size", () => {
     for (const refused of [() => functions.STATIONARY(list), () => functions.GENERATOR(list), () => functions.DISTRIBUTION(list, 1, 1)])
       expect(refused).toThrow(/20000 cells, over the limit of 16384 columns/);

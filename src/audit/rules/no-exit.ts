@@ -39,6 +39,7 @@ export const noExit: Rule = (context) => {
 
 /** "3 down" of three units in a group without any repair is final by design, such as a group with no crew. */
 function allDown(context: Context, state: number): boolean {
+  if (context.body.long) return false;
   const counts = Array.from({ length: context.body.size }, (_, i) => unitsIn(context.body.nameOf(i)));
   if (counts.some((count) => count === null)) return false;
   const down = counts.map((count) => (count!.down ? count!.count : -count!.count));
