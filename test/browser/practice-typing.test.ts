@@ -264,6 +264,42 @@ describe("the practice workbook's sheet", () => {
     await page.waitForFunction(() => document.getElementById("r1c15")?.getAttribute("aria-colspan") === null);
   });
 
+  it("draws a merged area while any part of it is in view, also when its first cell is not", async () => {
+    const { page } = sheet;
+    await sheet.type("P40", "a tall note");
+    await sheet.go("P40:Q140");
+    await page.getByRole("button", { name: "Sheet", exact: true }).click();
+    await page.getByRole("menuitem", { name: "Merge the selected cells" }).click();
+    await sheet.go("O139");
+    await sheet.go("O110"); // row 40 is far above what is drawn
+    const area = (await sheet.cell("P40").boundingBox())!;
+    const beside = (await sheet.cell("O110").boundingBox())!;
+    expect(await sheet.cell("O112").isVisible()).toBe(true);
+    expect(await sheet.cell("P112").isVisible()).toBe(false);
+    expect(area.x).toBe(beside.x + beside.width);
+    expect(area.y).toBeLessThan(beside.y);
+    expect(area.y + area.height).toBeGreaterThan(beside.y);
+    await sheet.go("P40");
+    await page.keyboard.press("Control+z");
+    await sheet.go("P40");
+    await page.keyboard.press("Delete");
+  });
+
+  it("takes a number typed into a percent cell for percent, and shows so while it is typed", async () => {
+    const { page } = sheet;
+    await sheet.type("D30", "25%");
+    await sheet.go("D30");
+    await page.keyboard.type("12");
+    expect(await sheet.formula()).toBe("12%");
+    await page.keyboard.press("Enter");
+    await sheet.shows("D30", "12%");
+    await sheet.type("D31", "=D30*100");
+    await sheet.shows("D31", "12");
+    await sheet.go("D30");
+    await sheet.pasteText("0.5"); // a value of another program stays the value
+    await sheet.shows("D30", "50%");
+  });
+
   it("shows numbers in every named format, with more and fewer decimals, and never cuts one", async () => {
     const { page } = sheet;
     const choose = async (name: string): Promise<void> => {

@@ -12,6 +12,7 @@ import { isFormula, rangeText, takesRange, turnAbsolute, usedRanges } from "./fo
 import { GUTTER, HEADS, type Grid } from "./grid";
 import type { Help } from "./help";
 import type { Outlines } from "./outlines";
+import { PercentTyping } from "./percent-typing";
 import { areaBetween, jumped, stepped, wander, type Cell, type Direction } from "./selection";
 import type { Session } from "./session";
 
@@ -24,6 +25,7 @@ interface Edit {
   text: string;
   arrows: "point" | "caret";
   origin: Field;
+  readonly percent: PercentTyping;
   /** The range being pointed at, and where it stands in the text. */
   pointed: { start: number; end: number; anchor: Cell; head: Cell } | null;
 }
@@ -78,7 +80,8 @@ export class Editor {
     input.addEventListener("input", () => {
       if (!this.edit) return;
       this.edit.origin = field;
-      this.retype(field.text, field.caret, true);
+      const { text, caret } = this.edit.percent.next(field);
+      this.retype(text, caret, true);
     });
     input.addEventListener("keydown", (event) => this.key(event));
     input.addEventListener("click", () => this.edit && this.help.follow(field, false));
@@ -94,10 +97,10 @@ export class Editor {
     }
     if (this.edit) return;
     const { row, column } = session.active;
-    const before = session.book.view(session.sheet, row, column).input;
+    const { input: before, format } = session.book.view(session.sheet, row, column);
     const field = options.field ?? this.inCell;
     const text = options.text ?? before;
-    this.edit = { sheet: session.sheet, row, column, before, text, arrows: options.arrows, origin: field, pointed: null };
+    this.edit = { sheet: session.sheet, row, column, before, text, arrows: options.arrows, origin: field, pointed: null, percent: new PercentTyping(format, text, session.book.locale) };
     this.outlines.copy(null);
     this.outlines.editing(true);
     this.inCell.element.hidden = false;
@@ -124,8 +127,8 @@ export class Editor {
       this.drafts.settle();
     } else this.drafts.drop();
     this.close();
-    const sentence = session.book.view(edit.sheet, edit.row, edit.column).sentence;
-    if (sentence) session.say(sentence);
+    // Whatever was said before is about something else by now.
+    if (edit.text !== edit.before) session.say(session.book.view(edit.sheet, edit.row, edit.column).sentence ?? "");
     return true;
   }
 

@@ -102,7 +102,7 @@ export class FootLine {
     let sum = 0;
     for (let row = area.row; row < area.row + area.rows; row += 1) {
       for (let column = area.column; column < area.column + area.columns; column += 1) {
-        const { value } = book.view(sheet, row, column);
+        const value = book.scalar(sheet, row, column);
         if (typeof value !== "number") continue;
         numbers += 1;
         sum += value;

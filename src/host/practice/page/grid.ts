@@ -3,7 +3,8 @@
  * scroll in. The browser's own scrolling moves them, so drawing is needed only when lines enter.
  *
  * Accessibility: an ARIA grid that keeps the focus itself and names its active cell by `aria-activedescendant`; the
- * active cell is therefore drawn even when it is scrolled out of view.
+ * active cell is therefore drawn even when it is scrolled out of view. So is the first cell of a merged area of which
+ * any part is in view, since that cell is drawn over the whole area.
  *
  * Browsers end an element at some height (17 million pixels in one, 33 in others). The scrolled surface therefore
  * grows with the rows in use, and where even that is too high, drawn positions are shifted against scrolled ones.
@@ -64,6 +65,8 @@ export class Grid {
   private stale = true;
   private printing = false;
   private columnsDrawn: Lines = { first: 0, last: -1 };
+  /** Cells drawn although they are out of view: row to columns. */
+  private farCells: ReadonlyMap<number, readonly number[]> = new Map();
   private readonly afterDraw = new Set<() => void>();
 
   constructor(private readonly session: Session) {
@@ -222,21 +225,33 @@ export class Grid {
 
   private drawLines(rows: Lines, columns: Lines): void {
     const { session, element } = this;
-    const moved = columns.first !== this.columnsDrawn.first || columns.last !== this.columnsDrawn.last;
+    const far = this.far(rows, columns);
+    const moved = columns.first !== this.columnsDrawn.first || columns.last !== this.columnsDrawn.last || !sameCells(far, this.farCells);
     this.columnsDrawn = columns;
-    const active = session.active;
+    this.farCells = far;
     for (const [row, parts] of this.rowsInView) {
-      if ((row < rows.first || row > rows.last) && row !== active.row) {
+      if (!within(rows, row) && !far.has(row)) {
         this.rowsInView.delete(row);
         this.spareRows.push(parts);
       }
     }
     if (moved || this.stale) this.drawHeads(columns);
     for (let row = rows.first; row <= rows.last; row += 1) this.drawRow(row, columns, moved);
-    if (active.row < rows.first || active.row > rows.last) this.drawRow(active.row, columns, moved);
+    for (const row of far.keys()) if (!within(rows, row)) this.drawRow(row, columns, moved);
     for (const parts of this.spareRows.splice(0)) parts.row.remove();
-    set(element, "aria-activedescendant", cellId(active));
+    set(element, "aria-activedescendant", cellId(session.active));
     this.stale = false;
+  }
+
+  private far(rows: Lines, columns: Lines): Map<number, number[]> {
+    const { session } = this;
+    const far = new Map<number, number[]>();
+    const met = session.merged.filter((area) => area.row <= rows.last && area.row + area.rows > rows.first && area.column <= columns.last && area.column + area.columns > columns.first);
+    for (const { row, column } of [session.active, ...met]) {
+      if (within(rows, row) && within(columns, column)) continue;
+      far.set(row, [...(far.get(row) ?? []), column]);
+    }
+    return far;
   }
 
   private drawHeads(columns: Lines): void {
@@ -285,16 +300,16 @@ export class Grid {
     const area = areaOf(session.selection);
     const chosen = row >= area.row && row < area.row + area.rows;
     parts.head.className = `rowhead${chosen ? " touched" : ""}${chosen && area.columns === COLUMN_LIMIT ? " chosen" : ""}`;
-    const active = session.active;
+    const far = this.farCells.get(row) ?? [];
     const spare: CellParts[] = [];
     for (const [column, cell] of parts.cells) {
-      if ((column < columns.first || column > columns.last) && !(row === active.row && column === active.column)) {
+      if (!within(columns, column) && !far.includes(column)) {
         parts.cells.delete(column);
         spare.push(cell);
       }
     }
     for (let column = columns.first; column <= columns.last; column += 1) this.drawCell(parts, column, area, spare);
-    if (row === active.row && (active.column < columns.first || active.column > columns.last)) this.drawCell(parts, active.column, area, spare);
+    for (const column of far) if (!within(columns, column)) this.drawCell(parts, column, area, spare);
     for (const cell of spare) cell.cell.remove();
   }
 
@@ -341,6 +356,14 @@ export class Grid {
     for (let next = column + 1; next < COLUMN_LIMIT && room < needed && !session.filled(row, next); next += 1) room += session.columns.size(next);
     return room;
   }
+}
+
+function within(lines: Lines, line: number): boolean {
+  return line >= lines.first && line <= lines.last;
+}
+
+function sameCells(a: ReadonlyMap<number, readonly number[]>, b: ReadonlyMap<number, readonly number[]>): boolean {
+  return a.size === b.size && [...a].every(([row, columns]) => columns.join() === b.get(row)?.join());
 }
 
 function newRow(): RowParts {

@@ -141,7 +141,12 @@ export function wander(ground: Ground, selection: Selection, direction: Directio
   return { ...selection, active: { row, column } };
 }
 
-/** The block of filled cells around a cell, bounded by blank lines and the edges of the sheet. */
+/**
+ * The block of filled cells around a cell, bounded by blank lines and the edges of the sheet.
+ *
+ * It grows in each direction as far as it goes before it looks in the next one: a side is then read once, not once for
+ * each line of the other side. The order does not change what is found, since a larger block only meets more.
+ */
 export function blockAround(ground: Ground, cell: Cell): Area {
   const used = ground.used();
   let top = cell.row;
@@ -158,18 +163,12 @@ export function blockAround(ground: Ground, cell: Cell): Area {
     for (let row = Math.max(0, top - 1); row <= bottom + 1; row += 1) if (ground.filled(row, column)) return true;
     return false;
   };
-  let grown = true;
-  const grow = (met: boolean, outward: () => void): void => {
-    if (!met) return;
-    outward();
-    grown = true;
-  };
-  while (grown) {
+  for (let grown = true; grown; ) {
     grown = false;
-    grow(rowFilled(top - 1), () => (top -= 1));
-    grow(rowFilled(bottom + 1), () => (bottom += 1));
-    grow(columnFilled(left - 1), () => (left -= 1));
-    grow(columnFilled(right + 1), () => (right += 1));
+    for (; rowFilled(top - 1); grown = true) top -= 1;
+    for (; rowFilled(bottom + 1); grown = true) bottom += 1;
+    for (; columnFilled(left - 1); grown = true) left -= 1;
+    for (; columnFilled(right + 1); grown = true) right += 1;
   }
   return { row: top, column: left, rows: bottom - top + 1, columns: right - left + 1 };
 }

@@ -136,7 +136,12 @@ export class Session implements Ground {
   }
 
   filled(row: number, column: number): boolean {
-    return this.book.view(this.shown, row, column).kind !== "blank";
+    return this.book.scalar(this.shown, row, column) !== null;
+  }
+
+  /** The merged areas of the shown sheet. */
+  get merged(): readonly Area[] {
+    return this.mergedAreas;
   }
 
   mergedAt(row: number, column: number): Area | null {

@@ -81,4 +81,17 @@ describe("moving", () => {
     expect(blockAround(sheet, { row: 0, column: 0 })).toEqual({ row: 0, column: 0, rows: 4, columns: 3 });
     expect(blockAround(sheet, { row: 0, column: 4 })).toEqual({ row: 0, column: 4, rows: 1, columns: 1 });
   });
+  it("finds a block of 100,000 cells by reading each a few times, not once for every line of the block", () => {
+    let read = 0;
+    const tall: Ground = {
+      ...sheet,
+      filled: (row, column) => {
+        read += 1;
+        return row >= 0 && row < 20_000 && column >= 0 && column < 5;
+      },
+      used: () => ({ rows: 20_000, columns: 5 }),
+    };
+    expect(blockAround(tall, { row: 9_000, column: 2 })).toEqual({ row: 0, column: 0, rows: 20_000, columns: 5 });
+    expect(read).toBeLessThan(200_000); // 40,072 measured; 400 million before
+  });
 });
