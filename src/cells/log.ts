@@ -6,13 +6,14 @@ import { shown, type Argument } from "./argument";
 
 /**
  * A log of three columns: unit, time, state entered. A first row with text for its time is headings; blank rows are ignored.
- * @throws logShape, logTime, logNameMissing, cellFault; rows count in the range
+ * @throws logEmpty, logShape, logTime, logNameMissing, cellFault; rows count in the range
  */
 export function readLog(argument: Argument): LogEntry[] {
   if (argument === null) throw new Problem("argumentMissing", { argument: "log" });
   const entries: LogEntry[] = [];
-  const columns = Math.max(...argument.map((row) => usedColumns(row)));
-  if (columns !== 3) throw new Problem("logShape", { columns: Math.max(columns, 0) });
+  const columns = argument.reduce((most, row) => Math.max(most, usedColumns(row)), 0);
+  if (columns === 0) throw new Problem("logEmpty");
+  if (columns !== 3) throw new Problem("logShape", { columns });
   const first = isText(cellAt(argument, 0, 1)) ? 1 : 0;
   for (let row = first; row < argument.length; row++) {
     const [unit, time, state] = [0, 1, 2].map((column) => cellAt(argument, row, column));

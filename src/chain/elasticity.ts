@@ -32,9 +32,9 @@ export function shareElasticity(generator: Generator, up: StateSet, start?: Floa
 }
 
 export function* shareElasticitySteps(generator: Generator, up: StateSet, start?: Float64Array): Steps<Float64Array> {
-  const { value, derivatives } = yield* rewardDerivatives(generator, Float64Array.from(up), null, start);
+  const { value, visits, changes } = yield* rewardDerivatives(generator, Float64Array.from(up), null, start);
   if (value === 0) throw new Problem("shareIsZero", {}, "noAnswer");
-  return elasticities(generator, value, derivatives);
+  return elasticities(generator, value, visits, changes);
 }
 
 /**
@@ -60,9 +60,9 @@ export function costElasticity(
 export function* costElasticitySteps(
   generator: Generator, stateCosts: Float64Array, jumpCosts: JumpCosts, start?: Float64Array,
 ): Steps<Float64Array> {
-  const { value, derivatives } = yield* rewardDerivatives(generator, stateCosts, jumpCosts, start);
+  const { value, visits, changes } = yield* rewardDerivatives(generator, stateCosts, jumpCosts, start);
   if (value === 0) throw new Problem("costIsZero", {}, "noAnswer");
-  return elasticities(generator, value, derivatives);
+  return elasticities(generator, value, visits, changes);
 }
 
 /**
@@ -99,17 +99,19 @@ export function* meanTimeElasticitySteps(
   const ahead = yield* differencesOf(part, stay, ones);
   let value = 0;
   startInside.forEach((p, a) => (value += p * mean[a]));
-  const derivatives = new Float64Array(generator.arrowCount);
+  const visits = new Float64Array(generator.arrowCount);
+  const changes = new Float64Array(generator.arrowCount);
   eachArrow(generator, part.members, part.position, (p, from, inside) => {
-    derivatives[p] = stay[from] * (inside >= 0 ? ahead[inside] : -mean[from]);
+    visits[p] = stay[from];
+    changes[p] = inside >= 0 ? ahead[inside] : -mean[from];
   });
-  return elasticities(generator, value, derivatives);
+  return elasticities(generator, value, visits, changes);
 }
 
-/** The long-run reward rate and its derivative by each arrow's rate, in the arrows' order. */
+/** The long-run reward rate and, in the arrows' order, its derivative by each arrow's rate as two factors: visits × changes. */
 function* rewardDerivatives(
   generator: Generator, stateRewards: Float64Array, jumpRewards: JumpCosts, start?: Float64Array,
-): Steps<{ value: number; derivatives: Float64Array }> {
+): Steps<{ value: number; visits: Float64Array; changes: Float64Array }> {
   const n = generator.size;
   const reward = effectiveCosts(generator, stateRewards, jumpRewards);
   const jumpReward = (from: number, to: number): number => (jumpRewards ? jumpRewards[from * n + to] : 0);
@@ -118,7 +120,8 @@ function* rewardDerivatives(
   if (!start) needOneClosedClass(classes);
   const weights = yield* classWeights(generator, start ?? new Float64Array(n), classes);
   const rates = new Float64Array(weights.length);
-  const derivatives = new Float64Array(generator.arrowCount);
+  const visits = new Float64Array(generator.arrowCount);
+  const changes = new Float64Array(generator.arrowCount);
   let value = 0;
   for (let c = 0; c < weights.length; c++) {
     if (!classes.closed[c]) continue;
@@ -131,7 +134,8 @@ function* rewardDerivatives(
     const { gain, loss } = deviations(rewards, shares);
     const ahead = yield* differencesOf(part, shares, gain, loss);
     eachArrow(generator, part.members, part.position, (p, from, inside) => {
-      derivatives[p] = weights[c] * shares[from] * (jumpReward(part.members[from], generator.toState[p]) + ahead[inside]);
+      visits[p] = weights[c] * shares[from];
+      changes[p] = jumpReward(part.members[from], generator.toState[p]) + ahead[inside];
     });
   }
   if (several && start) {
@@ -161,11 +165,12 @@ function* rewardDerivatives(
         return found;
       };
       eachArrow(generator, part.members, part.position, (p, from, inside) => {
-        derivatives[p] = stay[from] * (inside >= 0 ? ahead[inside] : shortfallOf(classes.classOf[generator.toState[p]])[from]);
+        visits[p] = stay[from];
+        changes[p] = inside >= 0 ? ahead[inside] : shortfallOf(classes.classOf[generator.toState[p]])[from];
       });
     }
   }
-  return { value, derivatives };
+  return { value, visits, changes };
 }
 
 function* differencesOf(part: Subchain, weight: Float64Array, gain: Float64Array, loss?: Float64Array): Steps<Float64Array> {
@@ -204,11 +209,12 @@ function eachArrow(
   });
 }
 
-function elasticities(generator: Generator, value: number, derivatives: Float64Array): Float64Array {
+/** Rate × visits first: that flow is of a size with the value, while visits × changes may leave the number range. */
+function elasticities(generator: Generator, value: number, visits: Float64Array, changes: Float64Array): Float64Array {
   const n = generator.size;
   const result = new Float64Array(n * n);
   for (let i = 0; i < n; i++)
     for (let p = generator.rowStart[i]; p < generator.rowStart[i + 1]; p++)
-      result[i * n + generator.toState[p]] = (generator.rate[p] * derivatives[p]) / value;
+      result[i * n + generator.toState[p]] = ((generator.rate[p] * visits[p]) / value) * changes[p];
   return result;
 }

@@ -56,6 +56,7 @@ export function* generatorFromProbabilitySteps(size: number, p: Float64Array, pe
     }
   if (exact) yield* fitSmallRates(size, p, logarithm, largest);
   else for (let i = 0; i < size; i++) projectOntoGeneratorRow(logarithm.subarray(i * size, (i + 1) * size), i);
+  refuseTooSmall(size, logarithm, period);
   return { generator: generatorOf(size, logarithm, period), exact };
 }
 
@@ -101,6 +102,13 @@ function* fitSmallRates(n: number, p: Float64Array, logarithm: Float64Array, lar
 
 function logarithmicMean(a: number, b: number): number {
   return Math.abs(a - b) < 1e-6 * a ? a : (a - b) / Math.log(a / b);
+}
+
+/** A period so long that a rate would vanish is refused, as rates of that size are in a table. */
+function refuseTooSmall(n: number, rates: Float64Array, period: number): void {
+  for (let k = 0; k < n * n; k++)
+    if (rates[k] >= SMALLEST_RATE && rates[k] / period < SMALLEST_RATE)
+      throw new Problem("rateOutOfRange", { row: Math.floor(k / n), column: k % n, rate: rates[k] / period });
 }
 
 function generatorOf(n: number, rates: Float64Array, period: number): Generator {

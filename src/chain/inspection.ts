@@ -1,10 +1,11 @@
 import { denseKernel } from "../numerics/method-choice";
 import { load, multiplySteps, unpadded } from "../numerics/matrix-kernel";
+import { communicatingClasses } from "./classes";
 import { Generator, SMALLEST_RATE } from "./generator";
 import { checkTimes } from "./horizon";
 import { occupanciesSteps } from "./occupancy";
 import { Problem } from "./problem";
-import { stationarySharesSteps } from "./stationary";
+import { needOneClosedClass, stationarySharesSteps } from "./stationary";
 import { finish, within, type Steps } from "./steps";
 import { transitionMatrixSteps } from "./transition";
 
@@ -17,7 +18,7 @@ import { transitionMatrixSteps } from "./transition";
  * @param resets - n × n, row-major: probability of each state left behind (column) for each state found (row); rows sum to 1
  * @param interval - T, finite, above 0, in the rates' time unit
  * @returns n long-run average shares, in state order
- * @throws `intervalNotPositive` {interval}; `severalClosedClasses` {classes} (no answer) when the inspected chain has several
+ * @throws `intervalNotPositive` {interval}; `severalEnds` {classes} (no answer) when the inspected chain has several
  *   closed classes; `timeNotFinite`, `horizonTooLong`, and those of `stationaryShares`
  *
  * *Method*: elimination (Grassmann, Taksar & Heyman 1985) on the chain seen at inspections, then row occupancy over one
@@ -45,7 +46,9 @@ export function* inspectionSharesSteps(generator: Generator, resets: Float64Arra
   } finally {
     block.close();
   }
-  const after = yield* within(stationarySharesSteps(fromOneStep(n, seen)), 0.5, 0.7);
+  const inspected = fromOneStep(n, seen);
+  needOneClosedClass(communicatingClasses(inspected), "severalEnds");
+  const after = yield* within(stationarySharesSteps(inspected), 0.5, 0.7);
   const [spent] = yield* within(occupanciesSteps(generator, after, [interval]), 0.7, 1);
   return spent.map((time) => time / interval);
 }

@@ -1,7 +1,8 @@
+import { communicatingClasses } from "./classes";
 import { Generator, type Arrow } from "./generator";
 import { nameOf, type Built, type Named } from "./named";
 import { Problem } from "./problem";
-import { stationaryShares } from "./stationary";
+import { needOneClosedClass, stationaryShares } from "./stationary";
 
 /** States of a group may differ by this much, relative, in their rate into another group. */
 export const LUMPABLE = 1e-12;
@@ -44,6 +45,7 @@ export function lump(chain: Named, groups: readonly string[], approximate = fals
   groupOf.forEach((group, state) => members[group].push(state));
   if (!approximate) refuseUnequal(chain, members, names, into);
 
+  if (approximate) needOneClosedClass(communicatingClasses(generator), "severalEnds");
   const shares = approximate ? stationaryShares(generator) : null;
   const arrows: Arrow[] = [];
   members.forEach((states, from) => {

@@ -1,7 +1,7 @@
 import { findZero } from "../numerics/find-zero";
 import { valuesAt } from "../numerics/rows";
 import { communicatingClasses, type StateSet } from "./classes";
-import { Generator, type Arrow } from "./generator";
+import { Generator, LARGEST_RATE, SMALLEST_RATE, type Arrow } from "./generator";
 import { checkTimes } from "./horizon";
 import { Problem } from "./problem";
 import { classShares, classWeights, needOneClosedClass } from "./stationary";
@@ -52,8 +52,8 @@ export function* rateForGoalSteps(
   if (from === to) throw new Problem("arrowToItself", { from });
   if (!(goal >= 0 && goal <= 1)) throw new Problem("goalOutside", { goal });
   const scale = generator.largestExit() || 1;
-  const low = scale * LOWEST_RATIO;
-  const high = scale * HIGHEST_RATIO;
+  const low = Math.max(scale * LOWEST_RATIO, SMALLEST_RATE);
+  const high = Math.min(scale * HIGHEST_RATIO, LARGEST_RATE);
   if (time === undefined) {
     const share = yield* longRunShare(generator, from, to, up, start);
     return solveShare(share, goal, low, high, generator.rateOf(from, to));
@@ -185,7 +185,7 @@ function* searchAtTime(
   const side = Float64Array.from(up, (u) => (goal > 0.5 ? 1 - u : u));
   const wanted = goal > 0.5 ? 1 - goal : goal;
   const shareOf = (logRate: number): number =>
-    finish(valuesAt(withRate(generator, from, to, Math.exp(logRate)), start, [time], [side]))[0][0] - wanted;
+    finish(valuesAt(withRate(generator, from, to, Math.min(Math.max(Math.exp(logRate), low), high)), start, [time], [side]))[0][0] - wanted;
 
   const present = generator.rateOf(from, to);
   const centre = present > 0 ? Math.min(Math.max(present, low), high) : low;

@@ -73,11 +73,13 @@ export function* classWeights(generator: Generator, start: Float64Array, classes
   return weights;
 }
 
-/** Refuses a long run that depends on a start which is not given. @throws `severalClosedClasses` (no answer) */
-export function needOneClosedClass(classes: Classes): void {
+/**
+ * Refuses a long run that depends on a start which is not given, or that nobody can give ("severalEnds").
+ * @throws `severalClosedClasses`, `severalEnds` (no answer)
+ */
+export function needOneClosedClass(classes: Classes, code: "severalClosedClasses" | "severalEnds" = "severalClosedClasses"): void {
   const closed = classes.classes.filter((_, c) => classes.closed[c]);
-  if (closed.length > 1)
-    throw new Problem("severalClosedClasses", { classes: closed.map((members) => Array.from(members)) }, "noAnswer");
+  if (closed.length > 1) throw new Problem(code, { classes: closed.map((members) => Array.from(members)) }, "noAnswer");
 }
 
 function onlyClosedClass(classes: Classes): Float64Array {

@@ -4,6 +4,7 @@ import { TransitionDerivative } from "../numerics/transition-derivative";
 import type { StateSet } from "./classes";
 import type { Generator } from "./generator";
 import { checkMatrix, checkTimes } from "./horizon";
+import { Problem } from "./problem";
 import { finish, type Steps } from "./steps";
 
 /**
@@ -15,7 +16,8 @@ import { finish, type Steps } from "./steps";
  * @param up - the states whose share is asked
  * @param start - n probabilities that sum to 1
  * @param time - finite, 0 or more, in the rates' time unit
- * @returns n × n, row-major, rows from, columns to; 0 where there is no arrow; NaN everywhere when the share is 0
+ * @returns n × n, row-major, rows from, columns to; 0 where there is no arrow
+ * @throws `shareIsZero` (no answer)
  * @throws `timeNegative`, `timeNotFinite`, `horizonTooLong`, `tooManyStates` above 1,000 states
  *
  * *Method*: one run in dual numbers an arrow, Al-Mohy & Higham 2009 with the derivative of the row repair (ours), see
@@ -45,7 +47,7 @@ export function* shareElasticityAtSteps(
   const elasticities = new Float64Array(n * n);
   const [row] = yield* rowsAt(generator, start, [time]);
   const share = row.reduce((sum, p, j) => sum + (up[j] ? p : 0), 0);
-  if (share === 0) return elasticities.fill(NaN);
+  if (share === 0) throw new Problem("shareIsZero", {}, "noAnswer");
   if (generator.largestExit() * time === 0) return elasticities;
   const derivative = yield* TransitionDerivative.open(denseOf(generator), time, denseKernel());
   try {

@@ -1,7 +1,7 @@
 import { cellsFrom } from "../cells/answer";
 import { readTimes } from "../cells/numbers";
 import { readStart, readStartIfGiven } from "../cells/start";
-import { readStates } from "../cells/states";
+import { labelsOf, readStates } from "../cells/states";
 import { availabilityAtSteps, intervalAvailabilitySteps, longRunAvailabilitySteps, upDownSteps } from "../chain/availability";
 import { communicatingClasses } from "../chain/classes";
 import { flowsSteps } from "../chain/jumps";
@@ -83,7 +83,7 @@ export function upDown(rates: any[][], up: any[][], start?: any[][]): any[][] {
         if (figure === 6) return new Problem("failureNotCertain", {}, "noAnswer");
         if (!Number.isNaN(found.availability)) return new Problem("noFailures", {}, "noAnswer");
         const { classes, closed } = communicatingClasses(states.generator);
-        return new Problem("severalClosedClasses", { classes: classes.filter((_, c) => closed[c]).map((one) => [...one]), names: states.names }, "noAnswer");
+        return new Problem("severalClosedClasses", { classes: classes.filter((_, c) => closed[c]).map((one) => [...one]), names: labelsOf(states) }, "noAnswer");
       };
       return cellsFrom(values, 7, 1, missing).map((cells, figure) => [UP_DOWN_LABELS[figure], ...cells]);
     },

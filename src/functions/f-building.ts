@@ -12,6 +12,7 @@ import { Problem } from "../chain/problem";
 import { queue as queueChain } from "../chain/queue";
 import { repairGroup as repairGroupChain } from "../chain/repair-group";
 import { stages as stagesChain } from "../chain/stages";
+import { nameKey } from "../table/cell";
 import { listLikeness, readList } from "../table/list";
 import { read } from "../table/read";
 import type { Cells } from "../table/rate-table";
@@ -51,7 +52,10 @@ export function fromList(list: any[][], headings?: any[][]): any[][] {
 function tableOfList(list: Argument) {
   if (list === null) throw new Problem("argumentMissing", { argument: "list" });
   const cells: Cells = list;
-  const reading = listLikeness(cells) === "no" && read(cells).table !== null ? read(cells) : readList(cells);
+  const square = listLikeness(cells) === "no" ? read(cells) : null;
+  const columns = cells[0]?.length ?? 0;
+  if (!square?.table && columns < 3) throw new Problem("listTooNarrow", { columns });
+  const reading = square?.table ? square : readList(cells);
   if (reading.table && reading.table.size > 0) return reading.table;
   throw reading.problems[0] ?? new Problem("listEmpty");
 }
@@ -171,9 +175,22 @@ export function lump(rates: any[][], groups: any[][], approximate?: any[][], hea
   return built(count, headings ?? null, () => lumpChain(states, names, unequal), states);
 }
 
+/** Names put together may meet ("A" + "B + C", "A + B" + "C"): such a table would not be read back. @throws nameRepeated */
+function refuseRepeatedNames(names: readonly string[]): void {
+  const seen = new Map<string, number>();
+  names.forEach((name, second) => {
+    const first = seen.get(nameKey(name));
+    if (first !== undefined) throw new Problem("nameRepeated", { first, second, name });
+    seen.set(nameKey(name), second);
+  });
+}
+
 /** A chain that is built only once its table is known to fit the sheet. */
 function built(size: number, headings: Argument, build: () => Named, states: { names: readonly string[] | null; size: number } | null = null): any {
   const named = readFlag(headings, "headings");
   checkSpillWith(named, size, size, { top: true, left: true });
-  return ask(states, build, (chain): Answer => square({ size, names: chain.names }, headings)(generatorValues(chain.generator)));
+  return ask(states, build, (chain): Answer => {
+    if (named) refuseRepeatedNames(chain.names ?? []);
+    return square({ size, names: chain.names }, headings)(generatorValues(chain.generator));
+  });
 }

@@ -6,6 +6,7 @@ import { MOST_PROBLEMS, rateIn, rateProblem } from "./square";
 
 /** How far a range looks like a list: every row reads from, to, rate ("list"), most do ("nearly"), or not. */
 export function listLikeness(cells: Cells): "list" | "nearly" | "no" {
+  if (!cells.some((row) => row.length >= 3)) return "no";
   let matching = 0;
   let other = 0;
   for (let i = firstRow(cells); i < cells.length; i++) {

@@ -34,6 +34,7 @@ export const PROBLEM_SENTENCES: Readonly<Record<string, Sentence>> = {
 
   // the rows of a list
   listTooWide: (w) => `Column ${w.ordinal("column")} is filled, but a list has three: from, to, rate. Select those three columns only.`,
+  listTooNarrow: (w) => `The range has too few columns, ${w.number("columns")}. A list has three: from, to, rate.`,
   listEmpty: () => "The list holds no arrow. Enter rows of from-state, to-state, rate.",
   listNameMissing: (w) => `Row ${w.ordinal("listRow")}: ${w.quoted("found")} in place of a state name. Enter the names of both states as text.`,
   arrowToItself: (w) =>
@@ -126,6 +127,7 @@ export const PROBLEM_SENTENCES: Readonly<Record<string, Sentence>> = {
   // questions without an answer
   noTargets: () => "targets: none are given and no state is absorbing. Name the states that end the wait.",
   severalClosedClasses: (w) => `The long run depends on the start: ${w.groups("classes")} are never left. Give a start.`,
+  severalEnds: (w) => `The long run depends on the start: ${w.groups("classes")} are never left. Only one may be.`,
   meanInfinite: (w) => `From ${w.stateOf("state")} a target is not met with certainty: the mean time is infinite.`,
   targetNotCertain: () => "From this start a target is not met with certainty, so the mean is infinite. Add a discount, or change the targets.",
   costWithoutEnd: () => "No state is absorbing and no targets are given: the cost grows without end. Give targets, or a discount above 0.",

@@ -70,7 +70,7 @@ describe("inspection at fixed intervals", () => {
     const shares = inspectionShares(repairable(1, 3), Float64Array.of(1, 0, 0, 1), 0.7);
     expectNear(shares[0], 0.75, 1e-14);
     const cut = Generator.fromArrows(2, []);
-    expectProblem(() => inspectionShares(cut, Float64Array.of(1, 0, 0, 1), 1), "severalClosedClasses", "noAnswer");
+    expectProblem(() => inspectionShares(cut, Float64Array.of(1, 0, 0, 1), 1), "severalEnds", "noAnswer");
     expectProblem(() => inspectionShares(cut, Float64Array.of(1, 0, 0, 1), 0), "intervalNotPositive");
   });
 
@@ -162,10 +162,10 @@ describe("elasticities at a time", () => {
     }
   });
 
-  it("0 at time 0 and where there is no arrow, not numbers when the share is 0", () => {
+  it("0 at time 0 and where there is no arrow, refused when the share is 0", () => {
     const chain = repairable(1, 3);
     expect(Array.from(shareElasticityAt(chain, mask(2, 0), unit(2, 0), 0))).toEqual([0, 0, 0, 0]);
-    expect(Array.from(shareElasticityAt(chain, mask(2, 1), unit(2, 0), 0))).toEqual([NaN, NaN, NaN, NaN]);
+    expect(() => shareElasticityAt(chain, mask(2, 1), unit(2, 0), 0)).toThrow("shareIsZero");
     expect(shareElasticityAt(chain, mask(2, 0), unit(2, 0), 1)[0]).toBe(0);
   });
 

@@ -1,0 +1,66 @@
+import { describe, expect, it } from "vitest";
+import { BARE, call, ONE_WAY, PUMP, refusal } from "./tables";
+
+/** Two states that never meet again and one that leads to both. */
+const FORK = [[0, 1, 2], [0, 0, 0], [0, 0, 0]];
+
+describe("input at the edges of what a sheet sends", () => {
+  it("reads a log in whole columns", () => {
+    const rows = [["unit", "time", "state"], ["P", 0, "Up"], ["P", 5, "Down"]];
+    const columns = Array.from({ length: 1_048_576 }, (_, i) => rows[i] ?? ["", "", ""]);
+    expect(call("FROMLOG", columns, 9)).toEqual([[-0.2, 0.2], [0, 0]]);
+    expect(refusal(call("FROMLOG", [["", "", ""]], 9))).toBe("#VALUE! log: it has no rows. Give rows of unit, time, state entered.");
+  });
+
+  it("takes two columns for no list", () => {
+    const pairs = [["A", "B"], ["B", "C"], ["C", "A"]];
+    expect(refusal(call("FROMLIST", pairs))).toBe("#VALUE! The range has too few columns, 2. A list has three: from, to, rate.");
+    expect(refusal(call("STATIONARY", pairs))).toMatch(/^#VALUE! /);
+    expect(call("FROMLIST", BARE)).toEqual(call("GENERATOR", BARE));
+  });
+
+  it("refuses headings that would not be read back", () => {
+    const first = [["", "A", "A + B"], ["A", 0, 1], ["A + B", 1, 0]];
+    const second = [["", "B + C", "C"], ["B + C", 0, 1], ["C", 1, 0]];
+    expect(refusal(call("COMBINE", first, second, true))).toBe('#VALUE! States 1 and 4 are both named "A + B + C". Give each state its own name.');
+    expect(call("COMBINE", first, second)).toHaveLength(4);
+    const staged = [["", "A", "a (1 of 2)"], ["A", 0, 1], ["a (1 of 2)", 1, 0]];
+    expect(refusal(call("STAGES", staged, "A", 2, true))).toMatch(/^#VALUE! States 1 and 3 are both named/);
+  });
+
+  it("refuses a period that would make a rate vanish", () => {
+    expect(refusal(call("FROMPROBABILITY", [[0.9, 0.1], [0, 1]], 1e308))).toMatch(/^#VALUE! Row 1, column 2: .* Change the time unit\.$/);
+  });
+});
+
+describe("sentences of answers that do not exist", () => {
+  it("says that the share is 0 at a time as in the long run", () => {
+    const sentence = "#N/A The share in these states is 0, so no rate changes it by a percentage.";
+    expect(refusal(call("ELASTICITY", PUMP, "Failed", 1, 0))).toBe(sentence);
+    expect(refusal(call("ELASTICITY", ONE_WAY, "Running"))).toBe(sentence);
+  });
+
+  it("does not ask for a start where the function has none", () => {
+    const sentence = "#N/A The long run depends on the start: {State 2}, {State 3} are never left. Only one may be.";
+    expect(refusal(call("INSPECTION", FORK, [["", "", ""], ["", "", ""], ["", "", ""]], 1))).toBe(sentence);
+    expect(refusal(call("LUMP", FORK, [["a", "b", "c"]], true))).toBe(sentence);
+  });
+
+  it("names the states of a table without names alike everywhere", () => {
+    const sentence = "#N/A The long run depends on the start: {State 2}, {State 3} are never left. Give a start.";
+    expect(refusal(call("UPDOWN", FORK, 1)[0][1])).toBe(sentence);
+    expect(refusal(call("STATIONARY", FORK))).toBe(sentence);
+  });
+});
+
+describe("rates at the ends of the range", () => {
+  it("keeps elasticities whose derivative leaves the number range", () => {
+    // π₁ = b/(a + b): its elasticity is −(1 − π₁) for a, 1 − π₁ for b
+    expect(call("ELASTICITY", [[0, 1e150], [1e-150, 0]], 1)).toEqual([[0, -1], [1, 0]]);
+    expect(call("COSTELASTICITY", [[0, 1e150], [1e-150, 0]], [[0, 1]])).toEqual([[0, 1e-300], [-1e-300, 0]]);
+  });
+
+  it("seeks a rate at a time only among rates that a table may have", () => {
+    expect(refusal(call("RATEFORGOAL", [[0, 1e-150], [1e-150, 0]], 1, 2, 1, 0.5, 1, 1))).toMatch(/^#N\/A No rate of this arrow gives 0\.5/);
+  });
+});
