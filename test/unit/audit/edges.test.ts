@@ -3,6 +3,7 @@ import { audit } from "../../../src/audit/audit";
 import type { SheetFacts } from "../../../src/audit/facts";
 import { kindOf } from "../../../src/audit/kind";
 import { readBody, roundingBand } from "../../../src/audit/body";
+import { findingTexts } from "../../../src/cells/sentences/findings";
 import { read } from "../../../src/table/read";
 import type { Cells, CellValue } from "../../../src/table/rate-table";
 import { codes, complaints, findingOf, headed } from "./table";
@@ -175,5 +176,26 @@ describe("a mixture of formulas and constants", () => {
     expect(findingOf(table, "pastedConstants", { facts: facts(2) })).toMatchObject({ details: { constants: 2, formulas: 10 } });
     expect(findingOf(table, "pastedConstants", { facts: facts(3) })).toBeUndefined();
     expect(findingOf(table, "pastedConstants", { facts: facts(0) })).toBeUndefined();
+  });
+  it("needs three formulas, or cells that a formula spills into", () => {
+    const small = headed("", ["A", "B"], [[null, 1], [2, null]]);
+    expect(findingOf(small, "pastedConstants", { facts: { formulas: [["", "", ""], ["", "", "=H1"], ["", "7", ""]] } })).toBeUndefined();
+    const spilled = facts(1).formulas!.map((row) => row.map((formula) => (formula === "=H1" ? "" : formula)));
+    expect(findingOf(table, "pastedConstants", { facts: { formulas: spilled } })).toMatchObject({ details: { constants: 1, formulas: 11 } });
+  });
+});
+
+describe("the question", () => {
+  it("is not asked of a table without arrows, nor of a symmetric one with a said unit", () => {
+    expect(codes(audit([[0, 0], [0, 0]], { answers: {} }))).toEqual(["noArrows"]);
+    expect(codes(audit(headed("per h", ["A", "B"], [[null, 2], [2, null]]), { answers: {} }))).toEqual(["diagonalBlank"]);
+  });
+});
+
+describe("a list among further columns", () => {
+  it("gives the three columns to take by their numbers in the range", () => {
+    const list = [["No.", "From", "To", "Unit", "Rate"], [1, "Up", "Down", "per h", 0.1], [2, "Down", "Up", "per h", 2]];
+    expect(findingTexts(findingOf(list, "listWithMore")!).remedy).toBe("Take the three columns: =CTMC.FROMLIST(CHOOSECOLS(list, 2, 3, 5)).");
+    expect(findingOf(list, "listWithMore")).toMatchObject({ details: { lines: [["column", 1, "No.", "notes"], ["column", 4, "Unit", "units"]] } });
   });
 });
