@@ -18,5 +18,5 @@ export function projectOntoGeneratorRow(row: Float64Array, diagonal: number): vo
   }
   let exit = 0;
   for (const j of others) exit += row[j] = Math.max(row[j] - lambda, 0);
-  row[diagonal] = -exit;
+  row[diagonal] = 0 - exit;
 }

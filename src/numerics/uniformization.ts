@@ -59,7 +59,8 @@ export class JumpWalk {
 
   /** No further state can be reached. */
   get complete(): boolean {
-    if (this.largestExit > 0) this.expand();
+    if (this.largestExit === 0) return true;
+    this.expand();
     return this.expanded === this.active;
   }
 
