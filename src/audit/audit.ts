@@ -65,8 +65,8 @@ const RULES: readonly Rule[] = [
   largestArrow,
 ];
 
-/** Rules that look at arrows only: all that a list of very many states is judged by. */
-const GRAPH_RULES: readonly Rule[] = [closedClasses, unreachable, noExit];
+/** Rules that look at labels and arrows only: all that a list of very many states is judged by. */
+const GRAPH_RULES: readonly Rule[] = [columnsSum, closedClasses, noTarget, meanTimes, units, horizon, unreachable, noExit];
 
 const SHEET_RULES: readonly SheetRule[] = [merged, rangeShort, hidden, manualCalculation];
 

@@ -32,6 +32,7 @@ function seemsTransposed(context: Context): Finding[] {
  * exit it may as well be a repair whose failure was forgotten.
  */
 export function finalWithoutEntry({ body, layout }: Context): number {
+  if (body.form === "list") return -1;
   for (let state = 0; state < body.size; state++) {
     if (exitsOf(body, state) < 2 || !meansFinalAmong(body.nameOf(state), layout.names ?? [])) continue;
     let entered = false;

@@ -12,9 +12,9 @@ import { meansBeginning, meansFinal } from "../words";
  * finding for all. Cells that cannot be read count as arrows.
  */
 export const unreachable: Rule = (context) => {
-  const { body, chain, kind, start } = context;
+  const { chain, kind, start } = context;
   if (kind === "columnsSum" || kind === "complement" || chain.arrowCount === 0) return [];
-  const turned = body.form === "list" ? -1 : finalWithoutEntry(context); // reported as a table that seems transposed
+  const turned = finalWithoutEntry(context); // reported as a table that seems transposed
   const unseen = (start ? beyond(context, start) : withoutEntry(context)).filter((state) => state !== turned);
   if (unseen.length === 0) return [];
   const [span, ...also] = unseen.map((state) => rowSpan(context, state));
