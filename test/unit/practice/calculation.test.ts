@@ -112,7 +112,63 @@ describe("formulas that lead back to themselves", () => {
     expect(at("C2").value).toBe("#REF!");
     expect(at("C3").value).toBe("");
   });
+
+  // What is shown follows from the contents alone: the same in whatever order they are typed, and after recalculating everything.
+  test.each<[string, Record<string, string>, Record<string, unknown>]>([
+    ["one that reads itself, in a circle with another", { A3: "=SUM(A1:D4)", C3: "=TRANSPOSE(A1:B3)" }, { A3: "#REF!", C3: "#REF!", D3: "" }],
+    ["a circle through the cells of a spill", { A3: "=E4+F1", C3: "=TRANSPOSE(A1:B3)", F1: "2" }, { A3: "#REF!", C3: "#REF!", E4: "" }],
+    ["no circle where the spill ends before", { A3: "=E5+F1", C3: "=TRANSPOSE(A1:B3)", F1: "2" }, { A3: 2, C3: 0, E3: 2 }],
+    ["a spill whose length decides", { A1: "=C4", C1: "=SEQUENCE(F1+0*A1)", F1: "3" }, { A1: 0, C1: 1, C3: 3 }],
+    ["a spill long enough", { A1: "=C4", C1: "=SEQUENCE(F1+0*A1)", F1: "4" }, { A1: "#REF!", C1: "#REF!", C3: "" }],
+    ["two circles with a cell in common", { A1: "=B1+C1", B1: "=A1", C1: "=A1", D1: "=B1" }, { A1: "#REF!", B1: "#REF!", C1: "#REF!", D1: "#REF!" }],
+    ["a circle that leads to another", { A1: "=A1+B1", B1: "=C1", C1: "=B1", D1: "=IF(F1,7,A1)", F1: "1" }, { A1: "#REF!", B1: "#REF!", C1: "#REF!", D1: 7 }],
+  ])("%s", (_, cells, expected) => {
+    for (const order of orders(Object.entries(cells))) {
+      const { book, type, value } = sheet({});
+      const shown = () => Object.fromEntries(Object.keys(expected).map((address) => [address, value(address)]));
+      for (const [address, text] of order) type({ [address]: text });
+      expect(shown()).toEqual(expected);
+      // Away and back again: each cell in turn emptied and typed anew.
+      for (const [address, text] of order) {
+        type({ [address]: "" });
+        type({ [address]: text });
+        expect(shown()).toEqual(expected);
+      }
+      book.recalculate();
+      expect(shown()).toEqual(expected);
+    }
+  });
+
+  test("a spill that gets longer or shorter makes and ends a circle", () => {
+    const { type, value } = sheet({ A1: "=C4", C1: "=SEQUENCE(F1+0*A1)", F1: "3" });
+    type({ F1: "4" });
+    expect([value("A1"), value("C1"), value("C2")]).toEqual(["#REF!", "#REF!", ""]);
+    type({ F1: "2" });
+    expect([value("A1"), value("C1"), value("C2"), value("C3")]).toEqual([0, 1, 2, ""]);
+    type({ A1: "7", F1: "4" });
+    type({ A1: "=C4", F1: "2" });
+    expect([value("A1"), value("C2"), value("C3")]).toEqual([0, 2, ""]);
+  });
+
+  test("something in the way of a spill ends the circle through it", () => {
+    const { type, value } = sheet({ A1: "=C3", C1: "=SEQUENCE(3)+0*A1" });
+    expect([value("A1"), value("C1")]).toEqual(["#REF!", "#REF!"]);
+    type({ C2: "x" });
+    expect([value("A1"), value("C1")]).toEqual([0, "#SPILL!"]);
+    type({ C2: "" });
+    expect([value("A1"), value("C1")]).toEqual(["#REF!", "#REF!"]);
+    type({ C1: "=SEQUENCE(2)+0*A1" });
+    expect([value("A1"), value("C1"), value("C2")]).toEqual([0, 1, 2]);
+    type({ C1: "=SEQUENCE(3)+0*A1" });
+    type({ C1: "=E1#" });
+    expect([value("A1"), value("C1")]).toEqual([0, "#REF!"]);
+  });
 });
+
+function orders<T>(entries: readonly T[]): T[][] {
+  if (entries.length < 2) return [[...entries]];
+  return entries.flatMap((first, at) => orders(entries.filter((_, other) => other !== at)).map((rest) => [first, ...rest]));
+}
 
 describe("spills", () => {
   test("fill, follow and shrink with their source", () => {

@@ -2,7 +2,9 @@
  * Keeps the values of all formulas right. After an edit only the formulas that follow it, directly or through others,
  * are marked and evaluated anew. Evaluation is by demand and without recursion from cell to cell: a formula that
  * meets a marked one gives way to it and comes back, so that chains of any length and references known only on
- * evaluation are handled alike, and a formula that is met again while it waits is known to lead back to itself.
+ * evaluation are handled alike. Formulas that can only wait for each other form a circle, and all of them say so
+ * (the strongly connected components of "waits for": Tarjan, Depth-first search and linear graph algorithms, SIAM
+ * J. Comput. 1, 1972), so that what is shown follows from the contents and not from the order of the edits.
  * Longer than most files, since marking, evaluating and spilling share one state.
  */
 import { cellText, columnOf, COLUMN_LIMIT, keyOf, overlap, quoteSheet, rowOf, ROW_LIMIT, type Area, type Rect } from "./address";
@@ -49,6 +51,8 @@ export class Calculation {
   private readonly volatile = new Set<FormulaCell>();
   private readonly pending = new Set<FormulaCell>();
   private readonly counted: FormulaCell[] = [];
+  /** Formulas that have been asked for and have no value yet, in the order in which they were first met. */
+  private readonly open: FormulaCell[] = [];
   /** Cells whose value changed since the last `takeChanges`. */
   private changes = new Map<string, Set<number>>();
 
@@ -148,6 +152,7 @@ export class Calculation {
 
   private drop(cell: FormulaCell): void {
     this.cancel(cell);
+    if (cell.watched) this.markFollowers(cell.watched);
     this.reshape(cell, null);
     for (const area of cell.reads) this.readers.remove(area, cell);
     this.watch(cell, null);
@@ -160,22 +165,21 @@ export class Calculation {
   private mark(cell: FormulaCell): void {
     if (cell.marked) return;
     cell.marked = true;
-    cell.prepared = false;
     this.marks.add(cell);
     this.cancel(cell);
-    this.markFollowers(cell.area);
+    this.markFollowers(cell.watched ?? cell.area);
   }
 
+  /** Whoever reads cells that a formula wants to fill follows it even while it does not fill them: once marked, it may. */
   private markFollowers(area: Area): void {
     const queue: Area[] = [area];
     for (let next = queue.pop(); next; next = queue.pop()) {
       this.readers.visit(next, (cell) => {
         if (cell.marked) return;
         cell.marked = true;
-        cell.prepared = false;
         this.marks.add(cell);
         this.cancel(cell);
-        queue.push(cell.area);
+        queue.push(cell.watched ?? cell.area);
       });
     }
   }
@@ -187,56 +191,78 @@ export class Calculation {
       stack.push(first);
       while (stack.length > 0) {
         const cell = stack[stack.length - 1]!;
-        if (!cell.marked) {
-          stack.pop();
-          cell.waiting = false;
-          continue;
-        }
-        this.step(cell, stack);
+        // A cell asked for twice stands in the stack twice; the later place has done the work.
+        if (!cell.marked || cell.parked) stack.pop();
+        else this.step(cell, stack);
       }
       if (performance.now() > deadline) return;
     }
-    for (const cell of this.counted) cell.rounds = 0;
+    for (const cell of this.counted) {
+      cell.rounds = 0;
+      cell.spilledNow = false;
+    }
     this.counted.length = 0;
   }
 
   private step(cell: FormulaCell, stack: FormulaCell[]): void {
-    cell.waiting = true;
-    if (cell.formula.strict && !cell.prepared) {
-      cell.prepared = true;
-      const first = this.markedIn(cell);
-      if (first.length > 0) return this.giveWay(first, stack);
+    if (cell.order === 0) cell.low = cell.order = this.open.push(cell);
+    const place = cell.order - 1;
+    const asked = this.attempt(cell);
+    if (asked === null) {
+      this.open.length = place;
+      return;
     }
+    let fresh = false;
+    for (const other of asked) {
+      if (other.order > 0) continue;
+      fresh = true;
+      stack.push(other);
+    }
+    if (fresh) return;
+    for (const other of asked) cell.low = Math.min(cell.low, other.low);
+    if (cell.low === cell.order) this.closeCircle(this.open.splice(place));
+    else cell.parked = true;
+  }
+
+  /** Evaluates a formula; the marked formulas that it has to wait for, null when it is finished. */
+  private attempt(cell: FormulaCell): readonly FormulaCell[] | null {
+    // What a formula names it needs, unless it chooses among its arguments: asking for all at once keeps evaluations few.
+    const asked = cell.asked ?? (cell.formula.strict ? this.markedIn(cell) : []);
+    cell.asked = asked.filter((other) => other.marked);
+    if (cell.asked.length > 0) return cell.asked;
     try {
       if (cell.rounds++ === 0) this.counted.push(cell);
-      this.finish(cell, cell.rounds > ROUND_LIMIT ? this.circle([cell]) : this.evaluate(cell));
+      this.finish(cell, cell.rounds > ROUND_LIMIT ? circular([cell]) : this.evaluate(cell));
     } catch (signal) {
-      if (signal instanceof GiveWay) return this.giveWay(signal.to, stack);
+      if (signal instanceof GiveWay) return (cell.asked = signal.to);
       if (signal === ON_ITS_WAY) this.finish(cell, BUSY);
       else if (signal instanceof RangeError) this.finish(cell, new Fault("#NUM!", "The formula is nested too deeply, or its result is too large."));
       else this.finish(cell, new Fault("#VALUE!", "The formula could not be worked out."));
     }
+    return null;
   }
 
-  private giveWay(to: readonly FormulaCell[], stack: FormulaCell[]): void {
-    const met = to.find((cell) => cell.waiting);
-    if (!met) {
-      for (const cell of to) stack.push(cell);
+  /**
+   * Formulas that wait for each other and for nothing else. Where one still fills the cells of an earlier result the circle
+   * may go with them: it is emptied and all are tried again. Otherwise all are circular, and those that spilled keep watch
+   * over the cells that they would fill.
+   */
+  private closeCircle(members: readonly FormulaCell[]): void {
+    const spills = (cell: FormulaCell) => cell.extent.rows * cell.extent.columns > 1;
+    const earlier = members.filter((cell) => spills(cell) && !cell.spilledNow);
+    if (earlier.length > 0) {
+      for (const cell of earlier) this.reshape(cell, null);
+      for (const cell of members) cell.forgetWait();
       return;
     }
-    // From the last: a cell asked for twice stands in the stack twice, and waits at the later place.
-    const round = new Set<FormulaCell>();
-    for (let at = stack.length - 1; !round.has(met); at--) if (stack[at]!.waiting && stack[at]!.marked) round.add(stack[at]!);
-    const chain = [...round].reverse();
-    const fault = this.circle(chain);
-    for (const cell of chain) this.finish(cell, fault);
-  }
-
-  private circle(chain: readonly FormulaCell[]): Fault {
-    const oneSheet = chain.every((cell) => cell.sheet === chain[0]!.sheet);
-    const name = (cell: FormulaCell) => (oneSheet ? "" : `${quoteSheet(cell.sheet.properties.name)}!`) + cellText(cell.row, cell.column);
-    const shown = chain.length > 5 ? [...chain.slice(0, 4).map(name), "…"] : chain.map(name);
-    return new Fault("#REF!", `The formula leads back to itself: ${[...shown, name(chain[0]!)].join(" → ")}.`);
+    const fault = circular(wayRound(members));
+    const wanted = members.map((cell) => (spills(cell) ? cell.area : null));
+    // All are emptied while all are still marked, so that no change of shape marks a member again.
+    for (const cell of members) this.reshape(cell, null);
+    members.forEach((cell, at) => {
+      this.finish(cell, fault);
+      this.watch(cell, wanted[at]!);
+    });
   }
 
   /** Marked formulas among the cells that a formula names. */
@@ -349,7 +375,7 @@ export class Calculation {
 
   private finish(cell: FormulaCell, result: Scalar | Grid): void {
     cell.marked = false;
-    cell.prepared = false;
+    cell.forgetWait();
     this.marks.delete(cell);
     this.note(cell.sheet, keyOf(cell.row, cell.column));
     const grid = isGrid(result) && (result.length > 1 || result[0]!.length > 1) ? result : null;
@@ -361,7 +387,7 @@ export class Calculation {
     }
     const extent: Rect = { row: cell.row, column: cell.column, rows: grid.length, columns: grid[0]!.length };
     const readsItself = cell.formula.strict && cell.reads.some((area) => area.sheet === cell.sheet.id && overlap(area, extent));
-    const refused = readsItself ? this.circle([cell]) : obstacle(cell, extent);
+    const refused = readsItself ? circular([cell]) : obstacle(cell, extent);
     if (refused) {
       cell.value = refused;
       this.reshape(cell, null);
@@ -369,6 +395,7 @@ export class Calculation {
       return;
     }
     cell.value = grid[0]![0] ?? 0;
+    cell.spilledNow = true;
     this.reshape(cell, { extent, grid });
   }
 
@@ -423,6 +450,34 @@ export class Calculation {
     if (keys) keys.add(key);
     else this.changes.set(sheet.id, new Set([key]));
   }
+}
+
+/** The shortest way from the first member, by sheet, row and column, through others back to it. */
+function wayRound(members: readonly FormulaCell[]): readonly FormulaCell[] {
+  const first = members.reduce((best, cell) => (cell.sheet === best.sheet && (cell.row - best.row || cell.column - best.column) < 0 ? cell : best));
+  const inside = new Set(members);
+  const from = new Map<FormulaCell, FormulaCell>();
+  const reached = [first];
+  for (const cell of reached) {
+    for (const next of cell.asked ?? []) {
+      if (next === first) {
+        const way = [cell];
+        for (let at = from.get(cell); at; at = from.get(at)) way.push(at);
+        return way.reverse();
+      }
+      if (!inside.has(next) || from.has(next)) continue;
+      from.set(next, cell);
+      reached.push(next);
+    }
+  }
+  return [first];
+}
+
+function circular(way: readonly FormulaCell[]): Fault {
+  const oneSheet = way.every((cell) => cell.sheet === way[0]!.sheet);
+  const name = (cell: FormulaCell) => (oneSheet ? "" : `${quoteSheet(cell.sheet.properties.name)}!`) + cellText(cell.row, cell.column);
+  const shown = way.length > 5 ? [...way.slice(0, 4).map(name), "…"] : way.map(name);
+  return new Fault("#REF!", `The formula leads back to itself: ${[...shown, name(way[0]!)].join(" → ")}.`);
 }
 
 function readGrid(sheet: Sheet, area: Rect): Grid {

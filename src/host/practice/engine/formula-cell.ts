@@ -22,9 +22,17 @@ export class FormulaCell {
   /** The area that a result fills or wants to fill, filed in the index of watchers. */
   watched: Area | null = null;
   marked = false;
-  waiting = false;
-  prepared = false;
+  /** The marked formulas that it waits for; null before the first attempt. */
+  asked: readonly FormulaCell[] | null = null;
+  /** Place among the formulas asked for, from 1; 0 when not asked for. */
+  order = 0;
+  /** The earliest place that the formulas it waits for lead back to. */
+  low = 0;
+  /** Waits only for formulas asked for earlier. */
+  parked = false;
   rounds = 0;
+  /** The cells it fills were filled in the present run. */
+  spilledNow = false;
   late: LateAnswers | null = null;
 
   constructor(
@@ -34,6 +42,12 @@ export class FormulaCell {
     readonly formula: Formula,
   ) {
     this.extent = { row, column, rows: 1, columns: 1 };
+  }
+
+  forgetWait(): void {
+    this.asked = null;
+    this.order = this.low = 0;
+    this.parked = false;
   }
 
   get area(): Area {
