@@ -4,6 +4,7 @@ import CopyPlugin from "copy-webpack-plugin";
 import { EsbuildPlugin } from "esbuild-loader";
 import HtmlWebpackPlugin from "html-webpack-plugin";
 import MiniCssExtractPlugin from "mini-css-extract-plugin";
+import TerserPlugin from "terser-webpack-plugin";
 import webpack from "webpack";
 import { BOUND_AFTER, BOUND_BEFORE } from "./scripts/bound-names.mjs";
 import { functionFiles, functionsMetadata } from "./scripts/metadata.mjs";
@@ -73,6 +74,8 @@ const functions = {
   target: ["es2022"],
   entry: { functions: "./src/functions/entry.ts" },
   output: { path: DIST, filename: "[name].js", iife: true, chunkFormat: false, chunkLoading: false },
+  // Slower than esbuild and 3 kB smaller: this script is what every workbook with a formula loads first.
+  optimization: { minimizer: [new TerserPlugin({ parallel: false, extractComments: false })] },
   plugins: [
     new webpack.optimize.LimitChunkCountPlugin({ maxChunks: 1 }),
     new webpack.BannerPlugin({ raw: true, banner: BOUND_BEFORE }),
