@@ -37,13 +37,17 @@ export class JumpWalk {
   now = new Float64Array(FIRST_ROOM);
   private next = new Float64Array(FIRST_ROOM);
   private exitShare = new Float64Array(FIRST_ROOM);
-  /** The arrows of the reached states with the new numbers of their ends: those of state i end at `arrowEnd[i]`. */
+  /** The arrows of the opened states with the new numbers of their ends: state i's from `arrowStart[i]` to `arrowEnd[i]`. */
+  private arrowStart = new Int32Array(FIRST_ROOM);
   private arrowEnd = new Int32Array(FIRST_ROOM);
   private to = new Int32Array(FIRST_ROOM);
   private share = new Float64Array(FIRST_ROOM);
   /** New number + 1 of each state, 0 where it has not been reached. */
   private readonly number: Int32Array;
-  private expanded = 0;
+  private opened = new Int32Array(FIRST_ROOM);
+  /** All states below have been opened. */
+  private allOpened = 0;
+  private arrows = 0;
 
   constructor(
     private readonly chain: SparseRates,
@@ -60,25 +64,27 @@ export class JumpWalk {
   /** No further state can be reached. */
   get complete(): boolean {
     if (this.largestExit === 0) return true;
-    this.expand();
-    return this.expanded === this.active;
+    this.openReached();
+    return this.allOpened === this.active;
   }
 
   /** One more jump. */
   jump(): void {
     this.jumps++;
     if (this.largestExit === 0) return;
-    const before = this.active;
-    this.expand();
-    const { now, next, exitShare, arrowEnd, to, share, active } = this;
+    this.openReached();
+    const { now, next, exitShare, arrowStart, arrowEnd, to, share, active } = this;
     next.fill(0, 0, active);
-    for (let i = 0, k = 0; i < before; i++) {
+    for (let i = 0; i < active; i++) {
       const held = now[i];
-      for (const end = arrowEnd[i]; k < end; k++) next[to[k]] += held * share[k];
+      if (held === 0) continue;
+      for (let k = arrowStart[i], end = arrowEnd[i]; k < end; k++) next[to[k]] += held * share[k];
     }
-    for (let i = 0; i < before; i++) {
+    for (let i = 0; i < active; i++) {
+      const held = now[i];
       const exit = exitShare[i];
-      next[i] = exit < 0.5 ? now[i] + (next[i] - now[i] * exit) : now[i] * (1 - exit) + next[i];
+      const moved = exit < 0.5 ? held + (next[i] - held * exit) : held * (1 - exit) + next[i];
+      next[i] = moved < NEVER ? 0 : moved;
     }
     this.now = next;
     this.next = now;
@@ -96,7 +102,7 @@ export class JumpWalk {
 
   /** Work of one jump, arrows and states. */
   get workPerJump(): number {
-    return this.active + (this.expanded > 0 ? this.arrowEnd[this.expanded - 1] : 0);
+    return this.active + this.arrows;
   }
 
   private reach(state: number): number {
@@ -106,32 +112,38 @@ export class JumpWalk {
       this.now = grown(this.now, room);
       this.next = grown(this.next, room);
       this.exitShare = grown(this.exitShare, room);
+      this.arrowStart = grown(this.arrowStart, room);
       this.arrowEnd = grown(this.arrowEnd, room);
+      this.opened = grown(this.opened, room);
     }
     this.order[this.active] = state;
     this.number[state] = ++this.active;
     return this.active;
   }
 
-  /** Takes in the arrows of the states reached by the last jump, and the states that they lead to. */
-  private expand(): void {
+  /** Takes in the arrows of the states that the last jump gave a probability, and the states that they lead to. */
+  private openReached(): void {
     const { chain, number, largestExit } = this;
-    let arrows = this.expanded > 0 ? this.arrowEnd[this.expanded - 1] : 0;
-    for (const end = this.active; this.expanded < end; this.expanded++) {
-      const state = this.order[this.expanded];
+    for (let i = this.allOpened, end = this.active; i < end; i++) {
+      if (this.opened[i] || this.now[i] === 0) continue;
+      const state = this.order[i];
+      const first = chain.rowStart[state];
       const last = chain.rowStart[state + 1];
-      if (arrows + last - chain.rowStart[state] > this.to.length) {
-        const room = 2 * (arrows + last - chain.rowStart[state]);
+      if (this.arrows + last - first > this.to.length) {
+        const room = 2 * (this.arrows + last - first);
         this.to = grown(this.to, room);
         this.share = grown(this.share, room);
       }
-      for (let k = chain.rowStart[state]; k < last; k++) {
-        this.to[arrows] = (number[chain.toState[k]] || this.reach(chain.toState[k])) - 1;
-        this.share[arrows++] = chain.rate[k] / largestExit;
+      this.opened[i] = 1;
+      this.arrowStart[i] = this.arrows;
+      for (let k = first; k < last; k++) {
+        this.to[this.arrows] = (number[chain.toState[k]] || this.reach(chain.toState[k])) - 1;
+        this.share[this.arrows++] = chain.rate[k] / largestExit;
       }
-      this.exitShare[this.expanded] = chain.exitRate[state] / largestExit;
-      this.arrowEnd[this.expanded] = arrows;
+      this.arrowEnd[i] = this.arrows;
+      this.exitShare[i] = chain.exitRate[state] / largestExit;
     }
+    while (this.allOpened < this.active && this.opened[this.allOpened]) this.allOpened++;
   }
 
   private normalise(): void {
@@ -143,6 +155,12 @@ export class JumpWalk {
 }
 
 const FIRST_ROOM = 64;
+
+/**
+ * A probability below this is taken for none, and its state not looked beyond: over a million jumps less than 1e-294 is lost, which
+ * an entry of 1e-280 does not notice.
+ */
+const NEVER = 1e-300;
 
 function grown<T extends Int32Array | Float64Array>(values: T, room: number): T {
   const larger = new (values.constructor as new (length: number) => T)(room);
