@@ -37,6 +37,9 @@ export const largestArrow: Rule = (context) => {
   ];
 };
 
+/** The long run of more states would take too long for a question asked at every change. */
+const MOST_STATES = 300;
+
 type Doubt = "orientation" | "amount" | "meanTime";
 
 function doubtsAbout({ body, layout, captions, chain }: Context): Doubt[] {
@@ -47,7 +50,7 @@ function doubtsAbout({ body, layout, captions, chain }: Context): Doubt[] {
   if (!ordered && !symmetric(body.values, body.size)) doubts.push("orientation");
   if (captions.some((text) => meansRate(text) && !meansProbability(text))) return doubts;
   if (doubts.length > 0) doubts.push("amount");
-  if (communicatingClasses(chain).classes.length === 1 && body.size > 1 && stationaryShares(chain)[0] < 0.5 && body.exits[0] > 1) doubts.push("meanTime");
+  if (body.size > 1 && body.size <= MOST_STATES && communicatingClasses(chain).classes.length === 1 && stationaryShares(chain)[0] < 0.5 && body.exits[0] > 1) doubts.push("meanTime");
   return doubts;
 }
 

@@ -1,6 +1,9 @@
+import { readdirSync, readFileSync } from "node:fs";
+import path from "node:path";
 import { describe, expect, it } from "vitest";
 import { audit } from "../../../../src/audit/audit";
 import { findingTexts } from "../../../../src/cells/sentences/findings";
+import { remedyTexts } from "../../../../src/cells/sentences/remedies";
 import { PROBLEM_SENTENCES, sentenceOf } from "../../../../src/cells/sentences/problems";
 import { Problem } from "../../../../src/chain/problem";
 import { read } from "../../../../src/table/read";
@@ -80,4 +83,19 @@ describe("sentences", () => {
     const list: Cells = [["A", "B", 1], ["A", "B", 2]];
     expect(findingTexts(audit(list)[0]).where).toBe("row 2 of the range");
   });
+});
+
+it("every code and remedy that a rule names has its words", () => {
+  const folder = path.resolve(import.meta.dirname, "../../../../src/audit");
+  const sources = readdirSync(folder, { recursive: true, encoding: "utf8" }).filter((name) => name.endsWith(".ts")).map((name) => readFileSync(path.join(folder, name), "utf8")).join("\n");
+  const codes = new Set([...sources.matchAll(/\b(?:code: |report\(|stop\()"(\w+)"/gu)].map((match) => match[1]));
+  const remedies = new Set([...sources.matchAll(/\bremedy: (?:\w+ \? )?"(\w+)"/gu)].map((match) => match[1]));
+  expect(codes.size).toBeGreaterThan(35);
+  expect(remedies.size).toBeGreaterThan(5);
+  for (const code of codes) {
+    if (remedies.has(code) || ["fillDiagonal", "clearDiagonal", "convertText"].includes(code)) continue;
+    const texts = findingTexts({ code, severity: "note", span: null, details: {} });
+    expect(texts.remedy.length, code).toBeGreaterThan(5);
+  }
+  for (const code of remedies) expect(remedyTexts({ code, kind: "cells", changes: [] }).label, code).not.toBe("");
 });
