@@ -1,3 +1,4 @@
+import { widthOf } from "../table/cell";
 import { Problem } from "../chain/problem";
 import { read } from "../table/read";
 import type { Cells, Layout, Reading } from "../table/rate-table";
@@ -153,7 +154,7 @@ function mayHoldMore(reading: Reading): boolean {
 
 /** The table inside a wider range: what to leave out, then its own findings, at their places in the given range. */
 function insideOf(cells: Cells, inner: Recognised, options: AuditOptions, first: Finding | undefined): Finding[] {
-  const width = Math.max(...cells.map((row) => row.length));
+  const width = widthOf(cells);
   const spanOf = (aside: Aside): Span =>
     aside.line === "row" ? { row: aside.index, column: 0, rows: 1, columns: width } : { row: 0, column: aside.index, rows: cells.length, columns: 1 };
   const about = [...totalsSelected(inner, spanOf), ...layoutAsides(inner, spanOf)].map((finding) => placed(finding, null));

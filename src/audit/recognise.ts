@@ -1,4 +1,4 @@
-import { isEmpty, isText, isVoid, nameKey, numberInText } from "../table/cell";
+import { isEmpty, isText, isVoid, nameKey, numberInText, widthOf } from "../table/cell";
 import { read } from "../table/read";
 import type { Cells, CellValue, Reading } from "../table/rate-table";
 import { textOf } from "./body";
@@ -44,7 +44,7 @@ export function recognise(cells: Cells): Recognised | null {
 
 function recogniseSquare(cells: Cells): Recognised | null {
   const rows = range(cells.length);
-  const columns = range(Math.max(0, ...cells.map((row) => row.length)));
+  const columns = range(widthOf(cells));
   const asides: Aside[] = [];
   const drop = (line: Aside["line"], index: number, role: Aside["role"], label: string): void => {
     const along = line === "row" ? columns.map((column) => cell(index, column)) : rows.map((row) => cell(row, index));
@@ -178,7 +178,7 @@ function headedColumn(cells: Cells, rows: readonly number[], columns: readonly n
 
 /** A list with From and To columns and more columns than a formula takes, or other amounts than rates. */
 function recogniseList(cells: Cells): Recognised | null {
-  const width = Math.max(0, ...cells.map((row) => row.length));
+  const width = widthOf(cells);
   if (cells.length < 2 || width < 3) return null;
   const first = cells.findIndex((row) => row.filter((value) => !isVoid(value)).length >= 3);
   if (first < 0 || first > 2) return null;

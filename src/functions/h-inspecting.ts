@@ -10,10 +10,11 @@ import { holdingTimes, jumpChain } from "../chain/jumps";
 import { Problem } from "../chain/problem";
 import { samplePath as simulate } from "../chain/sample-path";
 import { settlingTimeSteps } from "../chain/settling";
+import { isEmpty } from "../table/cell";
 import { compareTables, type CompareRow } from "../table/compare";
 import { fingerprint as fingerprintOf } from "../table/fingerprint";
 import { read } from "../table/read";
-import type { RateTable } from "../table/rate-table";
+import type { Cells, RateTable } from "../table/rate-table";
 import { ask, tableIn } from "./asking";
 import { column, square, table } from "./shapes";
 
@@ -31,8 +32,17 @@ export function check(rates: any[][], start?: any[][]): any[][] {
   return ask(null, () => findings(rates ?? [], start ?? null), (rows) => rows);
 }
 
-function findings(rates: NonNullable<Argument>, start: Argument): Answer {
+/** Rows without anything behind all that a table could need: of whole columns a million, which no rule need look at. */
+function withoutTail(cells: Cells): Cells {
+  let rows = cells.length;
+  const least = (cells[0]?.length ?? 0) + 2;
+  while (rows > least && cells[rows - 1].every(isEmpty)) rows--;
+  return rows === cells.length ? cells : cells.slice(0, rows);
+}
+
+function findings(range: Cells, start: Argument): Answer {
   try {
+    const rates = withoutTail(range);
     const reading = read(rates);
     const found = auditReading(rates, reading, { start: startFor(reading.table, start) });
     const rows = found.map((finding) => {

@@ -7,6 +7,13 @@ export function cellAt(cells: Cells, row: number, column: number): CellValue {
   return cells[row]?.[column] ?? "";
 }
 
+/** Columns of the widest row. A loop, because a whole column has more rows than a call takes arguments. */
+export function widthOf(cells: Cells): number {
+  let width = 0;
+  for (const row of cells) if (row.length > width) width = row.length;
+  return width;
+}
+
 export function isFault(cell: CellValue): cell is CellFault {
   return typeof cell === "object" && cell !== null && "fault" in cell;
 }

@@ -1,5 +1,5 @@
 import { Problem } from "../chain/problem";
-import { isVoid } from "./cell";
+import { isVoid, widthOf } from "./cell";
 import { isNumberedList, listLikeness, readList } from "./list";
 import type { Cells, Reading, RateTable } from "./rate-table";
 import { readSquare } from "./square";
@@ -23,7 +23,11 @@ export function read(cells: Cells): Reading {
 /** A list with more columns behind it, such as units or sources: they are not part of the form. */
 function tooWideList(cells: Cells): Reading | null {
   if (listLikeness(cells.map((row) => row.slice(0, 3))) !== "list") return null;
-  const column = 3 + Math.min(...cells.map((row) => row.slice(3).findIndex((cell) => !isVoid(cell))).filter((at) => at >= 0));
+  let column = widthOf(cells);
+  for (const row of cells) {
+    const filled = row.findIndex((cell, k) => k >= 3 && !isVoid(cell));
+    if (filled >= 0 && filled < column) column = filled;
+  }
   return { layout: null, problems: [new Problem("listTooWide", { column, span: [0, column, cells.length, 1] })], table: null };
 }
 

@@ -1,5 +1,5 @@
 import { Problem } from "../chain/problem";
-import { isVoid, nameKey } from "./cell";
+import { isVoid, nameKey, widthOf } from "./cell";
 import type { Cells, RateTable } from "./rate-table";
 import { readSquare } from "./square";
 
@@ -10,7 +10,7 @@ import { readSquare } from "./square";
 export function readStack(cells: Cells, phases: number): RateTable[] {
   const height = cells.length / phases;
   if (!Number.isInteger(height)) throw new Problem("stackHeight", { rows: cells.length, phases });
-  let width = Math.max(0, ...cells.map((row) => row.length));
+  let width = widthOf(cells);
   while (width > Math.max(1, height) && cells.every((row) => isVoid(row[width - 1] ?? ""))) width--;
   const tables: RateTable[] = [];
   for (let block = 0; block < phases; block++) {

@@ -1,9 +1,10 @@
+import { widthOf } from "../../table/cell";
 import type { SheetRule } from "../context";
 import type { Finding } from "../finding";
 
 /** Hidden or filtered-out rows or columns inside the range (mistake 24): they are read like any other, and nobody sees them. */
 export const hidden: SheetRule = ({ cells, facts }) => {
-  const width = Math.max(0, ...cells.map((row) => row.length));
+  const width = widthOf(cells);
   const rows = (facts.hiddenRows ?? []).filter((row) => row >= 0 && row < cells.length);
   const columns = (facts.hiddenColumns ?? []).filter((column) => column >= 0 && column < width);
   if (rows.length + columns.length === 0) return [];

@@ -1,3 +1,4 @@
+import { widthOf } from "../../table/cell";
 import type { SheetRule } from "../context";
 
 /**
@@ -5,7 +6,7 @@ import type { SheetRule } from "../context";
  * above or beside the rates do no harm.
  */
 export const merged: SheetRule = ({ cells, layout, facts }) => {
-  const width = Math.max(0, ...cells.map((row) => row.length));
+  const width = widthOf(cells);
   const body = layout?.body ?? { row: Math.min(2, cells.length), column: 1, rows: cells.length, columns: width };
   const inside = (facts.merged ?? []).filter(
     ({ row, column, rows, columns }) =>

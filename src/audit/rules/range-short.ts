@@ -1,4 +1,4 @@
-import { isText, isVoid, nameKey, numberInText } from "../../table/cell";
+import { isText, isVoid, nameKey, numberInText, widthOf } from "../../table/cell";
 import type { Cells, CellValue } from "../../table/rate-table";
 import { textOf } from "../body";
 import type { Finding } from "../finding";
@@ -14,7 +14,7 @@ export const rangeShort: SheetRule = ({ cells, layout, facts }) => {
   const around = facts.neighbours;
   if (!around || layout?.form === "list") return [];
   const rows = cells.length;
-  const columns = Math.max(0, ...cells.map((row) => row.length));
+  const columns = widthOf(cells);
   const headings = layout?.headings ?? headingsByText(cells);
   const top = headings === "both" || headings === "top" ? 1 : 0;
   const left = headings === "both" || headings === "left" ? 1 : 0;
