@@ -83,8 +83,8 @@ describe("inspection at fixed intervals", () => {
 
 describe("settling", () => {
   it("of a repairable machine: largest distance max(a, b)/(a + b) e^(−(a + b)t)", () => {
-    for (const tolerance of [0.5, 0.1, 0.01, 1e-6])
-      expectNear(settlingTime(repairable(1, 3), tolerance), Math.log(0.75 / tolerance) / 4, 1e-9 * Math.max(1, 1e-3 / tolerance));
+    for (const tolerance of [0.5, 0.1, 0.01, 1e-6, 1e-15, 1e-60, 1e-300])
+      expectNear(settlingTime(repairable(1, 3), tolerance), Math.log(0.75 / tolerance) / 4, 2e-15);
   });
 
   it("0 when every start is within the tolerance already", () => {
@@ -97,13 +97,18 @@ describe("settling", () => {
 
   it("of chains that cannot be diagonalised, and of slow ones", () => {
     // Five equal stages: the distance is what has not passed, Σ_{k<5} e^(−t) t^k/k!.
-    const t = settlingTime(line(5, 1), 0.01);
-    let term = Math.exp(-t);
-    let sum = term;
-    for (let k = 1; k < 5; k++) sum += term *= t / k;
-    expectNear(sum, 0.01, 1e-11);
+    for (const tolerance of [0.01, 1e-12, 1e-100, 1e-250]) {
+      const t = settlingTime(line(5, 1), tolerance);
+      let term = Math.exp(-t);
+      let sum = term;
+      for (let k = 1; k < 5; k++) sum += term *= t / k;
+      expectNear(sum, tolerance, 3e-14 * (10 - Math.log(tolerance)));
+    }
     const slow = Generator.fromArrows(3, [[0, 1, 1e6], [1, 0, 1e6], [1, 2, 1e-9]]);
     expectNear(settlingTime(slow, 0.1), Math.log(10) / 0.5e-9, 1e-6);
+    // all but 1e-6 is over in a millionth, the rest stays 1e12 times as long
+    const plateau = Generator.fromArrows(3, [[0, 2, 1e6], [0, 1, 1], [1, 2, 1e-6]]);
+    for (const tolerance of [1e-3, 1e-12, 1e-100]) expectNear(settlingTime(plateau, tolerance), -Math.log(tolerance) * 1e6, 1e-14);
   });
 });
 
