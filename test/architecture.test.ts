@@ -18,7 +18,7 @@ const ARROWS: Record<string, readonly string[]> = {
 
 /** Packages that a layer's own code may stand on. */
 const PACKAGES: Record<string, readonly string[]> = {
-  numerics: ["ml-matrix", "jstat"],
+  numerics: ["ml-matrix"],
   "host/practice": ["@borgar/fx", "@formulajs/formulajs", "@e965/xlsx", "ml-matrix"],
 };
 
