@@ -71,7 +71,10 @@ async function listen(server, port, tries) {
       return typeof address === "object" && address ? address.port : port;
     } catch (error) {
       const code = /** @type {NodeJS.ErrnoException} */ (error).code;
-      if ((code !== "EADDRINUSE" && code !== "EACCES") || attempt + 1 >= tries) throw error;
+      if (code !== "EADDRINUSE" && code !== "EACCES") throw error;
+      const last = port + attempt;
+      if (attempt + 1 < tries && last < 65535) continue;
+      throw Object.assign(new Error(`No port from ${port} to ${last} is free (${code}). Choose another with --port.`), { code });
     }
   }
 }

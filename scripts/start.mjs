@@ -5,9 +5,10 @@ import { serve } from "./serve.mjs";
 
 const WANTED = 5870;
 const argument = process.argv.indexOf("--port");
-const wanted = argument > 0 ? Number(process.argv[argument + 1]) : Number(process.env.PORT ?? WANTED);
+const [asked, told] = argument > 0 ? ["--port", process.argv[argument + 1] ?? ""] : ["PORT", process.env.PORT || String(WANTED)];
+const wanted = Number(told);
 if (!Number.isInteger(wanted) || wanted < 1 || wanted > 65535) {
-  console.error(`--port ${process.argv[argument + 1]}: a port is a whole number from 1 to 65535.`);
+  console.error(`${asked} "${told}": a port is a whole number from 1 to 65535.`);
   process.exit(1);
 }
 const started = performance.now();

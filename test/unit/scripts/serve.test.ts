@@ -38,9 +38,16 @@ describe("the local server", () => {
     const first = await serve({ root });
     const second = await serve({ root, port: first.port });
     expect(second.port).toBeGreaterThan(first.port);
-    await expect(serve({ root, port: first.port, tries: 1 })).rejects.toThrow(/EADDRINUSE/);
+    await expect(serve({ root, port: first.port, tries: 1 })).rejects.toThrow(`No port from ${first.port} to ${first.port} is free (EADDRINUSE). Choose another with --port.`);
     await first.close();
     await second.close();
+  });
+
+  it("looks no further than the last port there is", async () => {
+    // Whether or not another program holds it, so that the second call finds it taken.
+    const held = await serve({ root, port: 65535 }).catch(() => null);
+    await expect(serve({ root, port: 65535 })).rejects.toThrow("No port from 65535 to 65535 is free");
+    await held?.close();
   });
 });
 
