@@ -17,7 +17,10 @@ import { Stop } from "./stop";
  * a worker that runs this same script, or in slices where there is none.
  */
 
-/** How long a call may hold the sheet before it answers with a promise, and how long each later slice may. */
+/**
+ * How long a call may hold the sheet before it answers with a promise, and how long each later slice may. While longer work
+ * is under way a call gets no more than a slice: twenty such formulas at once must not add up to the host's five seconds.
+ */
 const BUDGET_MS = 250;
 const SLICE_MS = 40;
 
@@ -78,7 +81,8 @@ function answer(id: string, body: CellFunction, args: readonly Argument[], invoc
 
   const again = () => stepsOf(body, args);
   const steps = again();
-  const now = work(steps, aside.available || typeof setTimeout === "function" ? BUDGET_MS : Infinity);
+  const budget = inFlight.size > 0 ? SLICE_MS : BUDGET_MS;
+  const now = work(steps, aside.available || typeof setTimeout === "function" ? budget : Infinity);
   if (now !== undefined) {
     keep(key, args, now);
     return now;
