@@ -61,6 +61,10 @@ describe("mistake 9: an annual matrix cut into months", () => {
     expect(findingOf(headed("", names, [[0.7 ** (1 / 12), 1 - 0.7 ** (1 / 12), 0], [0.04, 0.6 ** (1 / 12), 0.96 - 0.6 ** (1 / 12)], [0, 0, 1]]), "cycleLength", { others })).toMatchObject({ details: { way: "root" } });
     expect(complaints(rooted)).not.toContain("cycleLength");
   });
+  // common practice: half-years, four-monthly periods, quarters, two months, months, four weeks, half-months, fortnights, weeks, days
+  it.each([2, 3, 4, 6, 12, 13, 24, 26, 52, 365])("knows a year cut into %d", (cycles) => {
+    expect(findingOf(monthly((value) => value / cycles), "cycleLength", { others })).toMatchObject({ details: { way: "divided", cycles } });
+  });
   it("is silent on the right twelfth, on another table, and on tables with hardly an exit", () => {
     // the monthly table whose twelfth power is the annual one, for two states: exits e with 1 − (1 − 2e)^12 = 2·0.18
     const e = (1 - 0.64 ** (1 / 12)) / 2;
