@@ -60,6 +60,25 @@ describe("the pane checks a table", () => {
     await closed(open);
   });
 
+  it("keeps its table, names and all, when steps over many cells are undone and done again", async () => {
+    const { open, sheet, pane } = await opened();
+    await sheet.sheet("Chiller rates");
+    await sheet.go("B5");
+    await pane.word("Fill the diagonal…").click();
+    await pane.word("Change 5 cells").click();
+    await sheet.shows("B5", /^-0\.026/);
+    await open.page.locator("#grid").focus();
+    await open.page.keyboard.press("Control+z");
+    await sheet.shows("B5", "");
+    await sheet.isActive("B5");
+    await open.page.keyboard.press("Control+y");
+    await sheet.shows("B5", /^-0\.026/);
+    expect(await open.page.locator("#grid [aria-selected=true]").count()).toBe(1);
+    await pane.counts("0 notes");
+    await pane.looksAt("Chiller rates A4:F9");
+    await closed(open);
+  });
+
   it("does not undo over a later change", async () => {
     const { open, sheet, pane } = await opened();
     await sheet.sheet("From a colleague");

@@ -18,6 +18,24 @@ describe("everyone can use the practice workbook", () => {
     await site.close();
   });
 
+  it("fades the line of sheets where more follow than fit, and keeps the shown one in view", async () => {
+    const { page } = sheet;
+    await sheet.sheet("Two quarters");
+    await page.locator(".sheets.more-before:not(.more-after)").waitFor();
+    await sheet.sheet("Plan");
+    await page.locator(".sheets.more-after:not(.more-before)").waitFor();
+    await sheet.sheet("Call desk");
+    await page.setViewportSize({ width: 600, height: 800 });
+    await page.waitForFunction(() => {
+      const tab = document.querySelector(".sheets [aria-selected=true]")!.getBoundingClientRect();
+      const line = document.querySelector(".sheets")!.getBoundingClientRect();
+      return tab.left >= line.left - 1 && tab.right <= line.right + 1;
+    });
+    await page.setViewportSize({ width: 1280, height: 800 });
+    await sheet.sheet("Plan");
+    await page.evaluate(() => document.getElementById("grid")!.focus());
+  });
+
   it("works with the keyboard alone: sheets, menus, completion, rename, leaving the grid", async () => {
     const { page } = sheet;
     const focused = () => page.evaluate(() => document.activeElement?.getAttribute("aria-label") ?? document.activeElement?.textContent);

@@ -79,6 +79,13 @@ describe("what the practice workbook keeps", () => {
     await second.shows("C5", "0.0500");
     await first.sheet("Chiller rates");
     await first.shows("C5", "0.0500");
+    // The tab that wrote is closed: whoever comes back to the first one works on there.
+    await other.close();
+    await opened.page.evaluate(() => dispatchEvent(new Event("focus")));
+    await opened.page.getByText("Another tab has taken over").waitFor({ state: "hidden" });
+    await first.type("C5", "0.06");
+    await first.shows("C5", "0.0600");
+    await first.kept();
     expect(opened.errors).toEqual([]);
     await opened.close();
   });

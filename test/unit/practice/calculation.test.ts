@@ -220,7 +220,7 @@ describe("errors", () => {
     const { at } = sheet({ A1: "=1+", A2: "=SUM(1,2", A3: "=1 2", A4: "=foo(" });
     for (const address of ["A1", "A2", "A3", "A4"]) {
       expect(at(address).value).toBe("#NAME?");
-      expect(at(address).sentence).toMatch(/^The formula (stops|cannot be read)/);
+      expect(at(address).sentence).toMatch(/^(A closing bracket is missing|The formula (stops|cannot be read))/);
     }
     expect(at("A1").input).toBe("=1+");
   });
@@ -244,4 +244,15 @@ test("a recalculation cut into slices ends with the same values", async () => {
   expect(book.busy).toBe(true);
   await book.whenIdle();
   expect(book.view("s1", 299, 0)).toMatchObject({ value: 300, busy: false });
+});
+
+describe("a formula that cannot be read", () => {
+  test.each([
+    ["=SUM(A1:A3", "A closing bracket is missing: 1 more is opened than closed."],
+    ['=IF(LEN("(")>0,SUM((1', "A closing bracket is missing: 3 more are opened than closed."],
+    ["=SUM(A1))", "A bracket too many is closed: 1 more is closed than opened."],
+    ["='Crew (north'!A1+", 'The formula stops at its end, after "=\'Crew (north\'!A1+": something is missing, or a mark does not belong.'],
+  ])("%s says why", (formula, sentence) => {
+    expect(sheet({ B1: formula }).at("B1")).toMatchObject({ value: "#NAME?", sentence });
+  });
 });

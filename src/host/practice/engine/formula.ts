@@ -65,8 +65,17 @@ function stopSentence(text: string, error: unknown): string {
   if (error instanceof RangeError) return "The formula is nested too deeply.";
   const offset = (error as { sourceOffset?: number }).sourceOffset;
   if (typeof offset !== "number") return error instanceof Error && error.message !== "" ? `The formula cannot be read: ${lower(error.message)}.` : "The formula cannot be read.";
+  const open = openBrackets(text);
+  if (open > 0) return `A closing bracket is missing: ${open} more ${open === 1 ? "is" : "are"} opened than closed.`;
+  if (open < 0) return `A bracket too many is closed: ${-open} more ${open === -1 ? "is" : "are"} closed than opened.`;
   if (offset >= text.length) return `The formula stops at its end, after "${tail(text)}": something is missing, or a mark does not belong.`;
   return `The formula stops at character ${offset}, after "${tail(text.slice(0, offset))}".`;
+}
+
+/** Round brackets opened and not closed, those in quotes left out. */
+function openBrackets(text: string): number {
+  const bare = text.replace(/"[^"]*("|$)|'[^']*'/g, "");
+  return bare.split("(").length - bare.split(")").length;
 }
 
 const tail = (text: string): string => (text.length > 24 ? `…${text.slice(-23)}` : text);

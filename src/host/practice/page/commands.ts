@@ -46,10 +46,11 @@ export class Commands {
     this.outlines.copy(null);
     const step = this.session.book[way]();
     this.session.say(step ? `${way === "undo" ? "Undone" : "Done again"}: ${step.label}.` : `Nothing to ${way}.`);
-    // What has changed is brought into view, unless its sheet is hidden.
+    // What has changed is brought into view, unless its sheet is hidden. Only its first cell is selected: the rectangle
+    // around scattered cells holds others, and the pane takes a selected area for the table that someone means.
     const touched = step?.touched;
     if (!touched || !this.session.book.sheets().some((sheet) => sheet.id === touched.sheet && !sheet.hidden)) return;
-    this.session.go(touched);
+    this.session.go({ ...touched, rows: 1, columns: 1 });
     this.grid.reveal(touched);
   }
 

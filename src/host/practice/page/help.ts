@@ -109,7 +109,7 @@ export class Help {
     if (!field) return;
     set(field.input, "aria-controls", entry ? "names" : null);
     set(field.input, "aria-activedescendant", entry ? `name${chosen}` : null);
-    if (entry) this.say(`${entry.name}: ${entry.description}. ${found.length} ${found.length === 1 ? "name" : "names"}, Tab takes it.`);
+    if (entry) this.say(`${entry.name}: ${entry.description.replace(/\.$/, "")}. ${found.length} ${found.length === 1 ? "name" : "names"}, Tab takes it.`);
   }
 
   private drawHint(): void {

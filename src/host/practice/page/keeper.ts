@@ -24,6 +24,8 @@ export class Keeper {
   private lastCost = 0;
   private role: Role = "reader";
   private release: (() => void) | null = null;
+  private started = false;
+  private waiting: AbortController | null = null;
   private readonly channel = new BroadcastChannel(LOCK);
   state: Keeping = "kept";
   onState: () => void = () => undefined;
@@ -37,6 +39,7 @@ export class Keeper {
     for (const event of ["change", "sheets", "store"] as const) book.on(event, () => this.later());
     addEventListener("pagehide", () => void this.now());
     document.addEventListener("visibilitychange", () => document.visibilityState === "hidden" && void this.now());
+    for (const [target, event] of [[window, "focus"], [document, "visibilitychange"]] as const) target.addEventListener(event, () => void this.inherit());
     this.channel.onmessage = (event: MessageEvent<Message>) => {
       if (event.data.kind === "stored" && this.role === "reader") void this.reload();
       else if (event.data.kind === "handOver" && this.role === "writer") void this.handOver();
@@ -48,21 +51,32 @@ export class Keeper {
   async start(): Promise<Role> {
     if (!this.storage || !navigator.locks) this.take("writer");
     else await this.request({ ifAvailable: true });
+    this.started = true;
     return this.role;
   }
 
   /** Asks the tab that writes to hand over, and takes the lock from it when it does not answer. */
   async takeOver(): Promise<void> {
     this.channel.postMessage({ kind: "handOver" } satisfies Message);
-    const patience = new AbortController();
-    const timer = setTimeout(() => patience.abort(), PATIENCE);
     try {
-      await this.request({ signal: patience.signal });
+      await this.wait();
     } catch {
-      await this.request({ steal: true });
-    } finally {
-      clearTimeout(timer);
+      if (this.role === "reader") await this.request({ steal: true });
     }
+  }
+
+  /** A tab that someone comes back to writes again where the tab that wrote has been closed. */
+  private async inherit(): Promise<void> {
+    if (!this.started || this.role === "writer" || document.visibilityState === "hidden") return;
+    await this.wait().catch(() => undefined);
+  }
+
+  /** Waits for the lock a while, in the place of an earlier wait. */
+  private async wait(): Promise<void> {
+    this.waiting?.abort();
+    const patience = (this.waiting = new AbortController());
+    const timer = setTimeout(() => patience.abort(), PATIENCE);
+    await this.request({ signal: patience.signal }).finally(() => clearTimeout(timer));
   }
 
   /** Resolves once the lock is held or known to be another tab's; the lock itself is held until `release`. */

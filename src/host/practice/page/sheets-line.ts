@@ -22,6 +22,8 @@ export class SheetsLine {
     this.tabs.addEventListener("keydown", (event) => this.key(event));
     // A wheel over more sheets than fit moves along them.
     this.tabs.addEventListener("wheel", (event) => this.tabs.scrollBy({ left: event.deltaX + event.deltaY }), { passive: true });
+    this.tabs.addEventListener("scroll", () => this.showEnds(), { passive: true });
+    new ResizeObserver(() => this.revealCurrent()).observe(this.tabs);
     session.on("sheet", () => this.draw());
     session.book.on("sheets", () => this.draw());
     this.draw();
@@ -45,9 +47,22 @@ export class SheetsLine {
           return tab;
         }),
     );
+    const current = this.revealCurrent();
+    if (hadFocus) current?.focus();
+  }
+
+  private revealCurrent(): HTMLElement | null {
     const current = this.tabs.querySelector<HTMLElement>("[aria-selected=true]");
     current?.scrollIntoView({ block: "nearest", inline: "nearest" });
-    if (hadFocus) current?.focus();
+    this.showEnds();
+    return current;
+  }
+
+  /** Where more sheets follow than fit, the line fades out. */
+  private showEnds(): void {
+    const { classList, scrollLeft, clientWidth, scrollWidth } = this.tabs;
+    classList.toggle("more-before", scrollLeft > 1);
+    classList.toggle("more-after", scrollLeft + clientWidth < scrollWidth - 1);
   }
 
   private show(id: string): void {

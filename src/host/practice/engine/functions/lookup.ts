@@ -115,7 +115,7 @@ function tableLookup(values: readonly Value[], evaluation: Evaluation, turned: b
   if (nearest instanceof Fault) return nearest;
   const column = Math.trunc(place) - 1;
   if (column < 0) return new Fault("#VALUE!", "Columns count from 1.");
-  if (column >= table[0]!.length) return new Fault("#REF!", `The table has ${table[0]!.length} ${turned ? "rows" : "columns"}; ${column + 1} is not one of them.`);
+  if (column >= table[0]!.length) return new Fault("#REF!", `The table has no ${turned ? "row" : "column"} ${column + 1}; its last is ${table[0]!.length}.`);
   const keys = table.map((row) => row[0]!);
   return overWanted(values[0]!, evaluation, (wanted) => {
     const at = nearest ? searchSorted(wanted, keys) : search(wanted, keys, 2, false);

@@ -174,7 +174,7 @@ export const tables: readonly Definition[] = [
   define("FILTER", "table, conditions, [otherwise]", "The rows or columns that meet conditions.", ([table, keep, otherwise], evaluation) => filter(table!, keep!, otherwise, evaluation)),
   ofTable("SORT", "table, [column], [order], [by column]", "A table in the order of one of its columns.", [1, 1, 0], (grid, at, order, byColumn) => {
     const rows = byColumn ? transpose(grid) : grid;
-    if (at! < 1 || at! > rows[0]!.length) return new Fault("#VALUE!", `The table has ${rows[0]!.length} columns; ${at} is not one of them.`);
+    if (at! < 1 || at! > rows[0]!.length) return new Fault("#VALUE!", `The table has no column ${at}; its last is ${rows[0]!.length}.`);
     const sorted = sortRows(rows, [{ at: (row) => rows[row]![at! - 1]!, order: order! }]);
     return byColumn && isGrid(sorted) ? transpose(sorted) : sorted;
   }),
