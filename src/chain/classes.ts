@@ -29,6 +29,8 @@ export interface Classes {
  */
 export function communicatingClasses(generator: Generator, ended?: StateSet): Classes {
   const { size, rowStart, toState } = generator;
+  if (!ended && size > 0 && generator.arrowCount === size * (size - 1))
+    return { classOf: new Int32Array(size), classes: [Int32Array.from({ length: size }, (_, i) => i)], closed: [true] };
   const { component, count } = strongComponents(size, rowStart, toState, ended);
   const numberOf = new Int32Array(count).fill(-1);
   const sizes: number[] = [];

@@ -13,10 +13,14 @@ export interface Subchain {
   readonly system: LeakSystem;
 }
 
-/** The chain watched in `members` only; every rate out of them, and `extraLeak` (a discount), is leak. */
+/** The chain watched in `members` (ascending) only; every rate out of them, and `extraLeak` (a discount), is leak. */
 export function subchain(generator: Generator, members: Int32Array, extraLeak = 0): Subchain {
   const position = new Int32Array(generator.size).fill(-1);
   members.forEach((state, at) => (position[state] = at));
+  if (members.length === generator.size) {
+    const { size, rowStart, toState, rate } = generator;
+    return { members, position, system: { size, rowStart, toState, rate, leak: new Float64Array(size).fill(extraLeak) } };
+  }
   const rowStart = new Int32Array(members.length + 1);
   const leak = new Float64Array(members.length).fill(extraLeak);
   let count = 0;

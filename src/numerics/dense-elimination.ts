@@ -1,4 +1,6 @@
 import type { Elimination, LeakSystem, Pausable } from "./leak-system";
+import { unpadded, type MatrixBlock } from "./matrix-kernel";
+import { denseKernel } from "./method-choice";
 import { scaledShares } from "./scaled-flow";
 
 /** Multiply-adds between two pauses, some 10 ms. */
@@ -19,15 +21,26 @@ const LARGE = 1e280;
  *
  * *Method*: Grassmann, Taksar & Heyman, Oper. Res. 33 (1985) 1107–1116 for the chain without leak; Alfa, Xue & Ye,
  * Math. Comp. 71 (2002) 217–236 with the leak as a column of its own. Ours takes four states
- * out of four rows at a time, eight operands for sixteen multiply-adds (2.4e9 a second against 1.2e9 row by row, n = 400).
+ * out of four rows at a time, eight operands for sixteen multiply-adds, in the dense kernel (`addRows`).
  * *Cost*: n³/3 multiply-adds, n² numbers.
  * *Accuracy*: `test/reference/battery-chain.test.ts`.
  */
-export function* eliminateDense(system: LeakSystem): Pausable<DenseElimination> {
+export function* eliminateDense(system: LeakSystem, kernel = denseKernel()): Pausable<DenseElimination> {
   const n = system.size;
-  const a = new Float64Array(n * n);
+  const work = kernel.open(n, 1);
+  try {
+    return yield* reduceAll(system, work);
+  } finally {
+    work.close();
+  }
+}
+
+function* reduceAll(system: LeakSystem, work: MatrixBlock): Pausable<DenseElimination> {
+  const { size: n, stride } = work;
+  const a = work.slots[0];
+  a.fill(0);
   for (let i = 0; i < n; i++)
-    for (let p = system.rowStart[i]; p < system.rowStart[i + 1]; p++) a[i * n + system.toState[p]] = system.rate[p];
+    for (let p = system.rowStart[i]; p < system.rowStart[i + 1]; p++) a[i * stride + system.toState[p]] = system.rate[p];
   const exit = new Float64Array(n);
   const leakShare = new Float64Array(n);
   const leaks = system.leak.slice();
@@ -38,8 +51,8 @@ export function* eliminateDense(system: LeakSystem): Pausable<DenseElimination> 
   for (let i = 0; i < n; i++) {
     const block = i - (i % BLOCK);
     const whole = block + BLOCK <= n;
-    if (i === block && whole) reduceBlock(a, n, i, leaks, leakShare);
-    exit[i] = finishRow(a, n, i, whole ? block : 0, leaks, leakShare);
+    if (i === block && whole) reduceBlock(work, i, leaks, leakShare);
+    exit[i] = finishRow(work, i, whole ? block : 0, leaks, leakShare);
     if (!(exit[i] > 0 && exit[i] < Infinity) && (i < n - 1 || exit[i] !== 0)) sound = false;
     since += i * (n - i / 2);
     if (since > SLICE) {
@@ -48,65 +61,53 @@ export function* eliminateDense(system: LeakSystem): Pausable<DenseElimination> 
       yield Math.min(1, done / total);
     }
   }
-  return new DenseElimination(system, a, exit, leakShare, sound);
+  return new DenseElimination(system, unpadded(work, 0), exit, leakShare, sound);
 }
+
+const factors = new Float64Array(BLOCK * BLOCK);
 
 /**
  * Takes the states before i out of rows i … i + 3, four states at a time. The sixteen rates into the four states come first,
  * each with what the states before it pass on; then one pass over the columns does sixteen multiply-adds for eight entries.
  */
-function reduceBlock(a: Float64Array, n: number, i: number, leaks: Float64Array, leakShare: Float64Array): void {
-  const row0 = i * n;
-  const row1 = row0 + n;
-  const row2 = row1 + n;
-  const row3 = row2 + n;
+function reduceBlock(work: MatrixBlock, i: number, leaks: Float64Array, leakShare: Float64Array): void {
+  const { size: n, stride } = work;
+  const a = work.slots[0];
   for (let k = 0; k < i; k += BLOCK) {
-    const p0 = k * n;
-    const p1 = p0 + n;
-    const p2 = p1 + n;
-    const p3 = p2 + n;
+    const p0 = k * stride + k;
+    const p1 = p0 + stride;
+    const p2 = p1 + stride;
+    const l0 = leakShare[k];
+    const l1 = leakShare[k + 1];
+    const l2 = leakShare[k + 2];
+    const l3 = leakShare[k + 3];
     let any = 0;
-    for (let row = row0; row <= row3; row += n) {
-      const c0 = a[row + k];
-      const c1 = a[row + k + 1] + c0 * a[p0 + k + 1];
-      const c2 = a[row + k + 2] + c0 * a[p0 + k + 2] + c1 * a[p1 + k + 2];
-      const c3 = a[row + k + 3] + c0 * a[p0 + k + 3] + c1 * a[p1 + k + 3] + c2 * a[p2 + k + 3];
-      a[row + k + 1] = c1;
-      a[row + k + 2] = c2;
-      a[row + k + 3] = c3;
+    for (let r = 0, at = i * stride + k; r < BLOCK; r++, at += stride) {
+      const c0 = a[at];
+      const c1 = a[at + 1] + c0 * a[p0 + 1];
+      const c2 = a[at + 2] + c0 * a[p0 + 2] + c1 * a[p1 + 2];
+      const c3 = a[at + 3] + c0 * a[p0 + 3] + c1 * a[p1 + 3] + c2 * a[p2 + 3];
+      a[at + 1] = factors[BLOCK * r + 1] = c1;
+      a[at + 2] = factors[BLOCK * r + 2] = c2;
+      a[at + 3] = factors[BLOCK * r + 3] = c3;
+      factors[BLOCK * r] = c0;
+      leaks[i + r] += c0 * l0 + c1 * l1 + (c2 * l2 + c3 * l3);
       any += c0 + c1 + c2 + c3;
     }
-    if (any === 0) continue;
-    const c00 = a[row0 + k], c01 = a[row0 + k + 1], c02 = a[row0 + k + 2], c03 = a[row0 + k + 3];
-    const c10 = a[row1 + k], c11 = a[row1 + k + 1], c12 = a[row1 + k + 2], c13 = a[row1 + k + 3];
-    const c20 = a[row2 + k], c21 = a[row2 + k + 1], c22 = a[row2 + k + 2], c23 = a[row2 + k + 3];
-    const c30 = a[row3 + k], c31 = a[row3 + k + 1], c32 = a[row3 + k + 2], c33 = a[row3 + k + 3];
-    const l0 = leakShare[k], l1 = leakShare[k + 1], l2 = leakShare[k + 2], l3 = leakShare[k + 3];
-    leaks[i] += c00 * l0 + c01 * l1 + (c02 * l2 + c03 * l3);
-    leaks[i + 1] += c10 * l0 + c11 * l1 + (c12 * l2 + c13 * l3);
-    leaks[i + 2] += c20 * l0 + c21 * l1 + (c22 * l2 + c23 * l3);
-    leaks[i + 3] += c30 * l0 + c31 * l1 + (c32 * l2 + c33 * l3);
-    for (let j = k + BLOCK; j < n; j++) {
-      const r0 = a[p0 + j];
-      const r1 = a[p1 + j];
-      const r2 = a[p2 + j];
-      const r3 = a[p3 + j];
-      a[row0 + j] += c00 * r0 + c01 * r1 + (c02 * r2 + c03 * r3);
-      a[row1 + j] += c10 * r0 + c11 * r1 + (c12 * r2 + c13 * r3);
-      a[row2 + j] += c20 * r0 + c21 * r1 + (c22 * r2 + c23 * r3);
-      a[row3 + j] += c30 * r0 + c31 * r1 + (c32 * r2 + c33 * r3);
-    }
+    if (any > 0 && k + BLOCK < n) work.addRows(0, i, k, k + BLOCK, factors);
   }
 }
 
 /** Takes the states `from … i − 1` out of row i and turns its later part into probabilities; returns its exit rate. */
-function finishRow(a: Float64Array, n: number, i: number, from: number, leaks: Float64Array, leakShare: Float64Array): number {
-  const row = i * n;
+function finishRow(work: MatrixBlock, i: number, from: number, leaks: Float64Array, leakShare: Float64Array): number {
+  const { size: n, stride } = work;
+  const a = work.slots[0];
+  const row = i * stride;
   let leak = leaks[i];
   for (let k = from; k < i; k++) {
     const c = a[row + k];
     if (c === 0) continue;
-    const pivot = k * n;
+    const pivot = k * stride;
     leak += c * leakShare[k];
     for (let j = k + 1; j < n; j++) a[row + j] += c * a[pivot + j];
   }

@@ -47,6 +47,24 @@ class JsBlock implements MatrixBlock {
     if (constant !== 0) for (let k = 0; k < out.length; k += n + 1) out[k] += constant;
   }
 
+  addRows(target: number, row: number, pivot: number, from: number, factors: Float64Array): void {
+    const n = this.size;
+    const a = this.slots[target];
+    const [c00, c01, c02, c03, c10, c11, c12, c13, c20, c21, c22, c23, c30, c31, c32, c33] = factors;
+    let row0 = row * n + from;
+    let p0 = pivot * n + from;
+    for (let j = from; j < n; j++, row0++, p0++) {
+      const r0 = a[p0];
+      const r1 = a[p0 + n];
+      const r2 = a[p0 + 2 * n];
+      const r3 = a[p0 + 3 * n];
+      a[row0] += c00 * r0 + c01 * r1 + (c02 * r2 + c03 * r3);
+      a[row0 + n] += c10 * r0 + c11 * r1 + (c12 * r2 + c13 * r3);
+      a[row0 + 2 * n] += c20 * r0 + c21 * r1 + (c22 * r2 + c23 * r3);
+      a[row0 + 3 * n] += c30 * r0 + c31 * r1 + (c32 * r2 + c33 * r3);
+    }
+  }
+
   repair(target: number): void {
     for (let i = 0; i < this.size; i++) repairRow(this.slots[target], i * this.size, this.size);
   }

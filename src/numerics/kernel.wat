@@ -140,6 +140,52 @@
       (v128.store offset=16 (local.get $source) (local.get $s1))
       (br_if $entries (i32.lt_u (local.tee $at (i32.add (local.get $at) (i32.const 32))) (local.get $bytes)))))
 
+  ;; Four rows += factors · four pivot rows, from "at" to "end" in the first of the rows; "shift" bytes from there to the first
+  ;; pivot row. The sixteen factors stand row by row. One step of state reduction, see dense-elimination.ts.
+  (func (export "addRows") (param $at i32) (param $end i32) (param $shift i32) (param $stride i32) (param $factors i32)
+    (local $row1 i32) (local $row2 i32) (local $row3 i32) (local $p0 i32) (local $p1 i32) (local $p2 i32) (local $p3 i32)
+    (local $r0 v128) (local $r1 v128) (local $r2 v128) (local $r3 v128)
+    (local.set $row1 (i32.add (local.get $at) (local.get $stride)))
+    (local.set $row2 (i32.add (local.get $row1) (local.get $stride)))
+    (local.set $row3 (i32.add (local.get $row2) (local.get $stride)))
+    (local.set $p0 (i32.add (local.get $at) (local.get $shift)))
+    (local.set $p1 (i32.add (local.get $p0) (local.get $stride)))
+    (local.set $p2 (i32.add (local.get $p1) (local.get $stride)))
+    (local.set $p3 (i32.add (local.get $p2) (local.get $stride)))
+    (loop $entries
+      (local.set $r0 (v128.load (local.get $p0)))
+      (local.set $r1 (v128.load (local.get $p1)))
+      (local.set $r2 (v128.load (local.get $p2)))
+      (local.set $r3 (v128.load (local.get $p3)))
+      (v128.store (local.get $at)
+        (f64x2.add (v128.load (local.get $at))
+          (f64x2.add
+            (f64x2.add (f64x2.mul (v128.load64_splat offset=0 (local.get $factors)) (local.get $r0)) (f64x2.mul (v128.load64_splat offset=8 (local.get $factors)) (local.get $r1)))
+            (f64x2.add (f64x2.mul (v128.load64_splat offset=16 (local.get $factors)) (local.get $r2)) (f64x2.mul (v128.load64_splat offset=24 (local.get $factors)) (local.get $r3))))))
+      (v128.store (local.get $row1)
+        (f64x2.add (v128.load (local.get $row1))
+          (f64x2.add
+            (f64x2.add (f64x2.mul (v128.load64_splat offset=32 (local.get $factors)) (local.get $r0)) (f64x2.mul (v128.load64_splat offset=40 (local.get $factors)) (local.get $r1)))
+            (f64x2.add (f64x2.mul (v128.load64_splat offset=48 (local.get $factors)) (local.get $r2)) (f64x2.mul (v128.load64_splat offset=56 (local.get $factors)) (local.get $r3))))))
+      (v128.store (local.get $row2)
+        (f64x2.add (v128.load (local.get $row2))
+          (f64x2.add
+            (f64x2.add (f64x2.mul (v128.load64_splat offset=64 (local.get $factors)) (local.get $r0)) (f64x2.mul (v128.load64_splat offset=72 (local.get $factors)) (local.get $r1)))
+            (f64x2.add (f64x2.mul (v128.load64_splat offset=80 (local.get $factors)) (local.get $r2)) (f64x2.mul (v128.load64_splat offset=88 (local.get $factors)) (local.get $r3))))))
+      (v128.store (local.get $row3)
+        (f64x2.add (v128.load (local.get $row3))
+          (f64x2.add
+            (f64x2.add (f64x2.mul (v128.load64_splat offset=96 (local.get $factors)) (local.get $r0)) (f64x2.mul (v128.load64_splat offset=104 (local.get $factors)) (local.get $r1)))
+            (f64x2.add (f64x2.mul (v128.load64_splat offset=112 (local.get $factors)) (local.get $r2)) (f64x2.mul (v128.load64_splat offset=120 (local.get $factors)) (local.get $r3))))))
+      (local.set $row1 (i32.add (local.get $row1) (i32.const 16)))
+      (local.set $row2 (i32.add (local.get $row2) (i32.const 16)))
+      (local.set $row3 (i32.add (local.get $row3) (i32.const 16)))
+      (local.set $p0 (i32.add (local.get $p0) (i32.const 16)))
+      (local.set $p1 (i32.add (local.get $p1) (i32.const 16)))
+      (local.set $p2 (i32.add (local.get $p2) (i32.const 16)))
+      (local.set $p3 (i32.add (local.get $p3) (i32.const 16)))
+      (br_if $entries (i32.lt_u (local.tee $at (i32.add (local.get $at) (i32.const 16))) (local.get $end)))))
+
   ;; Row repair of "rows" rows: see repairRow in matrix-kernel.ts.
   (func (export "repair") (param $row i32) (param $rows i32) (param $stride i32)
     (local $at i32) (local $end i32) (local $v v128) (local $largest v128) (local $sum v128)

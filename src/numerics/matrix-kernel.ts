@@ -20,6 +20,11 @@ export interface MatrixBlock {
   multiply(target: number, left: number, right: number, firstRow: number, endRow: number): void;
   /** target = constant · I + Σ coefficients[k] · slot sources[k]. `target` may be one of the sources. */
   combine(target: number, constant: number, coefficients: readonly number[], sources: readonly number[]): void;
+  /**
+   * Rows row … row + 3 of the target += factors (4 × 4, row by row) · its rows pivot … pivot + 3, in the columns from `from`, an
+   * even number below the order, on.
+   */
+  addRows(target: number, row: number, pivot: number, from: number, factors: Float64Array): void;
   /** Row repair, see `repairRow`. */
   repair(target: number): void;
   close(): void;

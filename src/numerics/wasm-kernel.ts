@@ -6,6 +6,7 @@ interface KernelExports {
   readonly memory: WebAssembly.Memory;
   multiply(c: number, a: number, b: number, packed: number, stride: number, width: number, first: number, end: number): void;
   combine(target: number, bytes: number, terms: number, termsEnd: number): void;
+  addRows(at: number, end: number, shift: number, stride: number, factors: number): void;
   repair(row: number, rows: number, stride: number): void;
 }
 
@@ -86,6 +87,13 @@ class WasmBlock implements MatrixBlock {
       const slot = this.slots[target];
       for (let i = 0; i < size; i++) slot[i * stride + i] += constant;
     }
+  }
+
+  addRows(target: number, row: number, pivot: number, from: number, factors: Float64Array): void {
+    const stride = this.stride * 8;
+    const start = this.at(target) + row * stride;
+    this.factors.set(factors);
+    this.kernel.addRows(start + from * 8, start + stride, (pivot - row) * stride, stride, this.factors.byteOffset);
   }
 
   repair(target: number): void {

@@ -1,6 +1,9 @@
 import { readFileSync } from "node:fs";
 import { describe, expect, it } from "vitest";
 import { kernelBytesText } from "../../../scripts/build-kernel.mjs";
+import { Generator } from "../../../src/chain/generator";
+import { finish } from "../../../src/chain/steps";
+import { eliminateDense } from "../../../src/numerics/dense-elimination";
 import { load, multiplySteps, repairRow, SMALLEST_NORMAL, unpadded, UNPAUSED, WORK_BETWEEN_PAUSES } from "../../../src/numerics/matrix-kernel";
 import { kernels, repeatable } from "./kernels";
 
@@ -51,6 +54,25 @@ describe.each(kernels.map((k) => [k.name, k] as const))("kernel %s", (_, kernel)
       }
       block.close();
     }
+  });
+
+  it("adds four rows to four others, from a column on and in no other place", () => {
+    const factors = Float64Array.from({ length: 16 }, (_, k) => k + 1);
+    for (const n of [8, 9, 12, 15, 50])
+      for (const [row, pivot, from] of [[4, 0, 4], [n - 4, 0, 4], [4, 0, n - (n % 2 ? 1 : 2)]]) {
+        const block = kernel.open(n, 1);
+        const values = random(n, n + row);
+        load(block, 0, values);
+        block.addRows(0, row, pivot, from, factors);
+        unpadded(block, 0).forEach((value, k) => {
+          const [i, j] = [Math.floor(k / n), k % n];
+          let expected = values[k];
+          if (i >= row && i < row + 4 && j >= from)
+            for (let c = 0; c < 4; c++) expected += factors[4 * (i - row) + c] * values[(pivot + c) * n + j];
+          expect(Math.abs(value / expected - 1)).toBeLessThan(1e-15);
+        });
+        block.close();
+      }
   });
 
   it("repairs rows as repairRow does, and leaves the padding zero", () => {
@@ -130,6 +152,17 @@ describe("row repair", () => {
 });
 
 describe("kernels side by side", () => {
+  it("eliminate alike", () => {
+    for (const n of [1, 2, 3, 4, 5, 8, 11, 50, 77]) {
+      const rates = random(n, n);
+      const { rowStart, toState, rate } = Generator.fromDense(n, rates);
+      const system = { size: n, rowStart, toState, rate, leak: Float64Array.from({ length: n }, (_, i) => (i % 3 === 0 ? 1e-6 : 0)) };
+      const w = new Float64Array(n).fill(1);
+      const [one, other] = kernels.map((kernel) => finish(eliminateDense(system, kernel)));
+      one.solve(w).forEach((x, i) => expect(Math.abs(x / other.solve(w)[i] - 1)).toBeLessThan(3e-15)); // measured 7e-16
+    }
+  });
+
   it("a block that is open is not handed out twice", () => {
     for (const kernel of kernels) {
       const one = kernel.open(4, 1);
