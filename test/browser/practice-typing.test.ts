@@ -211,6 +211,14 @@ describe("the practice workbook's sheet", () => {
     await sheet.shows("K5", "3");
   });
 
+  it("says at once when something typed takes the room of a result", async () => {
+    const { page } = sheet;
+    await sheet.type("K5", "mine");
+    await sheet.says("K3: K5 is in the way");
+    await page.keyboard.press("Control+z");
+    await sheet.shows("K5", "3");
+  });
+
   it("sets column widths by dragging, double click and keys, and hides and shows rows", async () => {
     const { page } = sheet;
     await sheet.type("A20", "a text that is longer than its column");

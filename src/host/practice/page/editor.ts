@@ -121,14 +121,18 @@ export class Editor {
   commit(): boolean {
     const { edit, session } = this;
     if (!edit) return true;
-    if (edit.text !== edit.before) {
-      const { sheet, row, column, text } = edit;
+    const { sheet, row, column, text } = edit;
+    const { book } = session;
+    const { anchor } = book.view(sheet, row, column);
+    if (text !== edit.before) {
       if (!session.perform([{ kind: "type", sheet, row, column, text }], `typing in ${cellText(row, column)}`)) return false;
       this.drafts.settle();
     } else this.drafts.drop();
     this.close();
-    // Whatever was said before is about something else by now.
-    if (edit.text !== edit.before) session.say(session.book.view(edit.sheet, edit.row, edit.column).sentence ?? "");
+    if (text === edit.before) return true;
+    // Whatever was said before is about something else by now. A result that filled the cell has lost its room there.
+    const blocked = anchor && book.view(sheet, anchor.row, anchor.column).sentence;
+    session.say(book.view(sheet, row, column).sentence ?? (blocked ? `${cellText(anchor.row, anchor.column)}: ${blocked}` : ""));
     return true;
   }
 
