@@ -214,14 +214,20 @@ function encode(found: Found): HostResult {
 
 /** A function of one value refuses by throwing: that is how its text reaches the cell on every host. */
 function single(cell: AnswerCell): HostCell {
-  const value = hostCell(cell);
-  if (typeof value === "object") throw new Refused(cell as Refusal);
-  return value;
+  const sealed = sealedCell(cell);
+  if (typeof sealed === "object") throw new Refused(sealed);
+  return sealed;
 }
 
 function hostCell(cell: AnswerCell): HostCell {
-  if (typeof cell === "number") return Number.isFinite(cell) ? cell + 0 : hostError(refusal(new Problem("valueLost", {}, "noAnswer")));
-  return typeof cell === "object" ? hostError(cell) : cell;
+  const sealed = sealedCell(cell);
+  return typeof sealed === "object" ? hostError(sealed) : sealed;
+}
+
+/** The last guard: no infinity, undefined number or minus zero reaches a sheet. */
+function sealedCell(cell: AnswerCell): AnswerCell {
+  if (typeof cell !== "number") return cell;
+  return Number.isFinite(cell) ? cell + 0 : refusal(new Problem("valueLost", {}, "noAnswer"));
 }
 
 function hostError({ refusal: kind, sentence }: Refusal): CustomFunctions.Error {

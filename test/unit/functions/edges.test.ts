@@ -28,8 +28,22 @@ describe("input at the edges of what a sheet sends", () => {
     expect(refusal(call("STAGES", staged, "A", 2, true))).toMatch(/^#VALUE! States 1 and 3 are both named/);
   });
 
+  it("answers for at most 1e12 events, instead of summing for seconds", () => {
+    expect(call("RATEINTERVAL", 1e12, 1)[0]).toHaveLength(3);
+    expect(refusal(call("RATEINTERVAL", 1e308, 1))).toBe("#VALUE! count: 1e+308 cannot be used. Enter a number from 0 to 1000000000000.");
+  });
+
   it("refuses a period that would make a rate vanish", () => {
     expect(refusal(call("FROMPROBABILITY", [[0.9, 0.1], [0, 1]], 1e308))).toMatch(/^#VALUE! Row 1, column 2: .* Change the time unit\.$/);
+  });
+});
+
+describe("one value that leaves the number range", () => {
+  it("has a sentence, too", () => {
+    const lost = "#N/A This value cannot be computed within the number range.";
+    expect(refusal(call("COSTUNTIL", ONE_WAY, 1, [[1e308, -1e308, 0]], 3))).toBe(lost);
+    expect(refusal(call("COSTUNTIL", ONE_WAY, 1, [[1e308, 1e308, 0]], 3))).toBe(lost);
+    expect(refusal(call("COSTRATE", PUMP, [[1.7e308, 1.7e308, 1.7e308]], [[0, 1e308, 1e308], [0, 0, 1e308], [1e308, 0, 0]]))).toBe(lost);
   });
 });
 
