@@ -41,6 +41,18 @@ describe("rate tables in a sheet", () => {
     expect(spans(sheet)).toEqual([[0, 0, 3, 3], [0, 4, 3, 3], [4, 0, 3, 3]]);
   });
 
+  it("are found where they touch, with any diagonal", () => {
+    const sheet: Sheet = [
+      ["", "A", "B", "", "Up", "Down"],
+      ["A", 0.9, 0.1, "Up", 0.7, 0.3],
+      ["B", 0.2, 0.8, "Down", 0.4, 0.6],
+      ["", "C", "D", "", "In", "Out"],
+      ["C", 0.5, 0.5, "In", 0.6, 0.4],
+      ["D", 0.3, 0.7, "Out", 0.1, 0.9],
+    ];
+    expect(spans(sheet)).toEqual([[0, 0, 3, 3], [0, 3, 3, 3], [3, 0, 3, 3], [3, 3, 3, 3]]);
+  });
+
   it("are found with a unit row under the headings", () => {
     expect(spans([["", "A", "B"], ["", "1/h", "1/h"], ["A", 0, 1], ["B", 2, 0]])).toEqual([[0, 0, 4, 3]]);
   });
