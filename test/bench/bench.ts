@@ -1,6 +1,6 @@
 import { execSync } from "node:child_process";
 import { writeFileSync } from "node:fs";
-import { cpus } from "node:os";
+import { cpus, loadavg } from "node:os";
 import path from "node:path";
 import { registered } from "./host";
 import "../../src/functions/entry";
@@ -177,6 +177,7 @@ const commit = execSync("git rev-parse --short HEAD", { cwd: BENCH_FOLDER }).toS
 say(`# Benchmark results\n`);
 say(`\`npm run bench -- --save\` writes this file. Medians of rounds in which the rivals take turns; a ratio above 1 means that Stayrate is faster.\n`);
 say(`- ${new Date().toISOString().slice(0, 10)}, commit ${commit}, Node ${process.versions.node}, ${cpus()[0].model.trim()}, ${cpus().length} processors`);
+say(`- load average at the start ${loadavg()[0].toFixed(1)}: above the number of processors the machine did other work too, and only the ratios mean something`);
 say(`- WebAssembly SIMD kernel: ${wasmKernel() ? "in use" : "not available here"}`);
 say(`- ${scipy ? `${scipy.versions}, one thread` : "SciPy is not installed here (Debian: apt-get install python3-scipy); its columns are empty"}`);
 await transitions(scipy);
