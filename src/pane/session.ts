@@ -1,4 +1,4 @@
-import { cellText, sameRange, within } from "./address";
+import { cellText, contains, sameRange, within } from "./address";
 import { BookWatch } from "./book-watch";
 import { unitAbove } from "./unit-above";
 import { examine, type Item, type Question } from "./examine";
@@ -26,6 +26,7 @@ const CHANGE_QUIET = 250;
  * The pane without its DOM: listens to the workbook, holds the one state, offers what a person can do.
  *
  * Nothing is written to a cell but by `applyRemedy`, `undo` and `writeCheckSheet`, each behind a button.
+ * Longer than most files, since every act and every event of the host turns the same state.
  */
 export class Session {
   private current: PaneState = START;
@@ -290,6 +291,7 @@ export class Session {
     if (!selection || sameRange(selection, this.ownSelection)) return;
     this.ownSelection = null;
     const subject = await chooseSubject(this.workbook, selection, this.aim);
+    if (subject && subject === this.aim && this.isNoTable(subject) && !contains(subject.address, selection)) return this.lookAway();
     if (subject && !sameRange(subject.address, this.aim?.address ?? null)) await this.look(subject);
   }
 
@@ -309,12 +311,20 @@ export class Session {
   private async sheetsChanged(): Promise<void> {
     await this.loadMemory();
     const names = (await this.workbook.sheets()).map((sheet) => sheet.name);
-    if (this.aim && !names.includes(this.aim.address.sheet)) {
-      this.turn++;
-      this.aim = null;
-      this.set({ subject: null, looked: null, opened: null, held: false, notice: null });
-    }
+    if (this.aim && !names.includes(this.aim.address.sheet)) this.lookAway();
     await this.cellsChanged();
+  }
+
+  /** Cells that a person selected, such as a block just pasted, and that are no table: not worth keeping once left. */
+  private isNoTable({ address, how }: Subject): boolean {
+    const { subject, looked } = this.current;
+    return how === "selection" && looked !== null && (looked.layout?.size ?? 0) === 0 && sameRange(address, subject?.address ?? null);
+  }
+
+  private lookAway(): void {
+    this.turn++;
+    this.aim = null;
+    this.set({ subject: null, looked: null, opened: null, held: false, notice: null });
   }
 
   private async look(subject: Subject): Promise<void> {

@@ -78,6 +78,16 @@ describe("what the pane looks at", () => {
     expect(place()).toBe("Other A1:C3");
   });
 
+  it("lets a selected block that is no table go once it is left", async () => {
+    const figures: Typed[][] = [[1, 2, 3], [4, 5, 6]];
+    const { place, select } = await started({ Pump: PUMP, Figures: figures });
+    await select({ sheet: "Figures", row: 0, column: 0, rows: 2, columns: 3 });
+    expect(place()).toBe("Figures A1:C2");
+    await select(cell("Figures", 1, 1));
+    expect(place()).toBe("Figures A1:C2");
+    await select(cell("Pump", 6, 6));
+    expect(place()).toBeNull();
+  });
   it("takes a selection of several cells as it is, blank margins left out", async () => {
     const { place, select } = await started();
     await select({ ...TABLE, row: 1, rows: 8, columns: 9 });

@@ -1,4 +1,7 @@
-/** The workbook: what a page or a test does with it. Sheets are addressed by their id, rows and columns from 0. */
+/**
+ * The workbook: what a page or a test does with it. Sheets are addressed by their id, rows and columns from 0.
+ * Longer than most files, since it is the engine's one door: each member is a few lines over the files beside it.
+ */
 import { columnOf, keyOf, rowOf, type Area, type Rect } from "./address";
 import { Calculation } from "./calculation";
 import type { CustomFunctionHost } from "./custom-functions";

@@ -8,6 +8,7 @@
  *
  * Browsers end an element at some height (17 million pixels in one, 33 in others). The scrolled surface therefore
  * grows with the rows in use, and where even that is too high, drawn positions are shifted against scrolled ones.
+ * Longer than most files, since drawing, scrolling and the active cell share one picture of what is in view.
  */
 import { COLUMN_LIMIT, ROW_LIMIT, cellText, columnText, type CellView } from "../engine";
 import { fitted, TextMeasure } from "./cell-text";
