@@ -26,19 +26,30 @@ export function local(name: string, work: () => unknown): Contestant {
   };
 }
 
+export interface Timing {
+  readonly median: number;
+  /** The quickest round: what the work takes when nothing else is in the way. */
+  readonly best: number;
+}
+
 /**
- * Median time of each contestant over rounds in which they take turns, so that whatever else the machine does meets all
- * alike. Long calls get fewer rounds.
+ * Times of each contestant over rounds in which they take turns, so that whatever else the machine does meets all alike. Long
+ * calls get fewer rounds.
  */
-export async function compete(contestants: readonly Contestant[], rounds = 9): Promise<number[]> {
+export async function compete(contestants: readonly Contestant[], rounds = 15): Promise<Timing[]> {
   const times: number[][] = contestants.map(() => []);
   for (let round = 0; round < rounds; round++) {
     for (let c = 0; c < contestants.length; c++) {
-      if (round >= 3 && times[c][0] > 2e6) continue;
+      if (round >= 3 && times[c][0] > 1e6) continue;
       times[c].push(await contestants[c].measure());
     }
   }
-  return times.map(median);
+  return times.map((values) => ({ median: median(values), best: Math.min(...values) }));
+}
+
+/** How many times quicker than the other, by the best rounds. */
+export function ratio(other: Timing | undefined, ours: Timing): string {
+  return other ? `${(other.best / ours.best).toPrecision(2)}×` : "–";
 }
 
 export function median(values: readonly number[]): number {
@@ -47,9 +58,10 @@ export function median(values: readonly number[]): number {
   return sorted.length % 2 ? sorted[middle] : (sorted[middle - 1] + sorted[middle]) / 2;
 }
 
-/** Three figures with a unit: 3.12 µs, 20.8 ms. */
-export function shown(microseconds: number): string {
-  if (!Number.isFinite(microseconds)) return "–";
+/** The median with three figures and a unit: 3.12 µs, 20.8 ms. */
+export function shown(timing: Timing | undefined): string {
+  if (!timing) return "–";
+  const microseconds = timing.median;
   const [value, unit] = microseconds < 1e3 ? [microseconds, "µs"] : microseconds < 1e6 ? [microseconds / 1e3, "ms"] : [microseconds / 1e6, "s"];
   return `${value.toPrecision(3)} ${unit}`;
 }
