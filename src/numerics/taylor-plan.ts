@@ -19,7 +19,7 @@ const TRUNCATION_BITS = 55;
  * @param jumps Λt, the expected number of jumps of the uniformized chain
  * @param spread Λ ÷ smallest rate where every rate off the diagonal is positive, else Infinity
  *
- * Two limits hold together. (a) x^m/(m+1)! ≤ 2^-55: the first omitted term against the diagonal.
+ * Two limits hold together. (a) x^m/(m+1)! ≤ 2^-55: the first omitted term against the diagonal (less what a scheme has of it).
  * (b) for entries reached by k jumps: of the ways to place k jumps into 2^s steps, those with more than m in one step are
  * the omitted part, at most C(k, m+1)/2^(sm) of the whole. A path has at most n − 1 jumps without loops and r in loops,
  * whose weight against the loop-free path is at most X^r/r!, X = Λt. Where X is beyond 4n, (a) asks for more squarings
@@ -77,5 +77,5 @@ function log2Factorial(k: number): number {
   return log2Factorials[k];
 }
 
-/** log2 of the largest x with x^m/(m+1)! ≤ 2^-55, for each scheme. */
-const X_LIMIT_BITS = SCHEMES.map(({ order }) => (log2Factorial(order + 1) - TRUNCATION_BITS) / order);
+/** log2 of the largest x with omitted · x^m/(m+1)! ≤ 2^-55, for each scheme. */
+const X_LIMIT_BITS = SCHEMES.map(({ order, omitted }) => (log2Factorial(order + 1) - TRUNCATION_BITS - Math.log2(omitted)) / order);

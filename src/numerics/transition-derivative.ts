@@ -3,6 +3,9 @@ import { agree, load, multiplySteps, unpadded, type MatrixBlock, type MatrixKern
 import { planTaylor } from "./taylor-plan";
 import { TAYLOR_SLOTS, taylorCoefficients, taylorStart } from "./taylor-scheme";
 
+/** The schemes for P have most of the terms beyond their order; the derivative's plain series takes so many more. */
+const FURTHER_TERMS = 8;
+
 type Steps<T> = globalThis.Generator<number, T, void>;
 
 /**
@@ -46,7 +49,7 @@ export class TransitionDerivative {
       if (further === Infinity && agree(block, now, next, unchangedTolerance(n))) further = 3;
       now = next;
     }
-    const coefficients = taylorCoefficients(order, jumps / 2 ** squarings);
+    const coefficients = taylorCoefficients(order + FURTHER_TERMS, jumps / 2 ** squarings);
     return new TransitionDerivative(n, step, powers, uniformized, coefficients, block);
   }
 
