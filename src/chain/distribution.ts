@@ -15,7 +15,7 @@ import { finish, type Steps } from "./steps";
  * @throws `timeNegative`, `timeNotFinite`, `horizonTooLong`
  *
  * *Method*: jump by jump (uniformization with full tails) or through stored squarings, whichever is cheaper;
- * `numerics/rows.ts`. *Cost*: Λt · arrows, or about (9 + log2(Λt)) n³ and log2(Λt) n² more a time. *Accuracy*: as
+ * `numerics/rows.ts`. *Cost*: Λt · arrows, or about (4 + log2(Λt)) n³ and log2(Λt) n² more a time. *Accuracy*: as
  * `transitionMatrix`, `test/reference/battery-time.test.ts`.
  *
  * @example distributions(Generator.fromArrows(2, [[0, 1, 2]]), Float64Array.of(1, 0), [0, 1]) // [[1, 0], [Math.exp(-2), -Math.expm1(-2)]]

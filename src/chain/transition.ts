@@ -16,7 +16,7 @@ import { finish, type Steps } from "./steps";
  * @throws `timeNegative`, `timeNotFinite`, `horizonTooLong`, `tooManyStates` above 1,000 states
  *
  * *Method*: Taylor series with non-negative terms, scaling and squaring, Xue & Ye 2008, with row repair (ours); see
- * `numerics/dense-transition.ts`. *Cost*: about 9 + log2(Λt) products of order n. *Accuracy*: entry by entry, relative
+ * `numerics/dense-transition.ts`. *Cost*: about 4 + log2(Λt) products of order n. *Accuracy*: entry by entry, relative
  * error at most 4e-15 (1 + |ln p|) for p ≥ 1e-280, below about 1e-290 products leave the double range;
  * `test/reference/battery-time.test.ts`.
  *

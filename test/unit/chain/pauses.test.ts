@@ -17,8 +17,7 @@ import { mask, unit } from "./closed-forms";
 
 /**
  * No question holds the thread for long: what is counted is work, not time. A multiply-add of a matrix product takes at most half a
- * nanosecond in the slower kernel, an arrow of a walk one and a half, so that WORK_BETWEEN_PAUSES is 20 ms of the former
- * and three times the latter's allowance below.
+ * nanosecond in the slower kernel, an arrow of a walk one and a half: both bounds are some 20 ms.
  */
 const MOST_PRODUCTS = 1.1 * WORK_BETWEEN_PAUSES;
 const MOST_ARROWS = 1.3e7;
