@@ -47,7 +47,7 @@ export function* inspectionSharesSteps(generator: Generator, resets: Float64Arra
     block.close();
   }
   const inspected = fromOneStep(n, seen);
-  needOneClosedClass(communicatingClasses(inspected), "severalEnds");
+  needOneClosedClass(communicatingClasses(inspected), "none");
   const after = yield* within(stationarySharesSteps(inspected), 0.5, 0.7);
   const [spent] = yield* within(occupanciesSteps(generator, after, [interval]), 0.7, 1);
   return spent.map((time) => time / interval);

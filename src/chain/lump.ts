@@ -45,7 +45,7 @@ export function lump(chain: Named, groups: readonly string[], approximate = fals
   groupOf.forEach((group, state) => members[group].push(state));
   if (!approximate) refuseUnequal(chain, members, names, into);
 
-  if (approximate) needOneClosedClass(communicatingClasses(generator), "severalEnds");
+  if (approximate) needOneClosedClass(communicatingClasses(generator), "none");
   const shares = approximate ? stationaryShares(generator) : null;
   const arrows: Arrow[] = [];
   members.forEach((states, from) => {

@@ -74,12 +74,12 @@ export function* classWeights(generator: Generator, start: Float64Array, classes
 }
 
 /**
- * Refuses a long run that depends on a start which is not given, or that nobody can give ("severalEnds").
+ * Refuses a long run that depends on a start which is not given, or that nobody can give (remedy "none").
  * @throws `severalClosedClasses`, `severalEnds` (no answer)
  */
-export function needOneClosedClass(classes: Classes, code: "severalClosedClasses" | "severalEnds" = "severalClosedClasses"): void {
+export function needOneClosedClass(classes: Classes, remedy: "giveStart" | "none" = "giveStart"): void {
   const closed = classes.classes.filter((_, c) => classes.closed[c]);
-  if (closed.length > 1) throw new Problem(code, { classes: closed.map((members) => Array.from(members)) }, "noAnswer");
+  if (closed.length > 1) throw new Problem(remedy === "none" ? "severalEnds" : "severalClosedClasses", { classes: closed.map((members) => Array.from(members)) }, "noAnswer");
 }
 
 function onlyClosedClass(classes: Classes): Float64Array {

@@ -23,7 +23,7 @@ describe("a long answer", () => {
   it("comes from a worker of functions.js, and the sheet calculates meanwhile", async () => {
     const { page } = sheet;
     const started = page.waitForEvent("worker");
-    await sheet.type("A1", "=SUM(CTMC.ELASTICITY(CTMC.BIRTHDEATH(SEQUENCE(1,70,5,0.1),SEQUENCE(1,70,1,0.3)),{1,2,3},1,4))");
+    await sheet.type("A1", "=SUM(CTMC.ELASTICITY(CTMC.BIRTHDEATH(SEQUENCE(1,130,5,0.1),SEQUENCE(1,130,1,0.3)),{1,2,3},1,4))");
     const worker = await started;
     expect(new URL(worker.url()).pathname).toMatch(/\/functions\.js$/);
     await sheet.type("C1", "=CTMC.TRANSITION({0,1;3,0},1000)");
